@@ -1,0 +1,237 @@
+"""The commands, their options and their help; what a command does is in a module it imports when it runs."""
+# ruff: noqa: PLC0415 - a command imports its stage when it runs, so that help comes at once
+# ruff: noqa: B008, PLR0917 - the way options are declared
+
+from __future__ import annotations
+
+from datetime import datetime
+from pathlib import Path
+
+import typer
+
+from shedbim.cli.guard import EXIT_CODES, guard
+from shedbim.cli.speech import say
+from shedbim.errors import OutputError
+from shedbim.outputs import OUTPUTS, SCHEMAS, chosen
+from shedbim.version import __version__
+
+__all__ = ["app"]
+
+_ONLY_NAMES = ", ".join(dict.fromkeys(word for row in OUTPUTS for word in (row.group, row.name)))
+_CODES = "\n".join(f"  {code:<5}{meaning}" for code, meaning in EXIT_CODES)
+
+app = typer.Typer(
+    name="shedbim",
+    help=f"""One short text description of a steel shed in; an open BIM model and member schedules out.
+
+\b
+Begin with a preset, change it, build it:
+  shedbim new barn.yaml --preset gable-warren
+  shedbim build barn.yaml
+
+\b
+Then look up what you can write there:
+  shedbim fields            every field, what it allows, its default
+  shedbim sections IPE      the sections of a family
+  shedbim build --help      the outputs and their options
+
+\b
+Exit codes:
+{_CODES}
+""",
+    no_args_is_help=True,
+    add_completion=False,
+    rich_markup_mode=None,
+    pretty_exceptions_enable=False,
+    context_settings={"help_option_names": ["-h", "--help"]},
+)
+
+
+def _moment(text: str) -> datetime:
+    """Give the moment of an ISO 8601 text; without a zone it is UTC."""
+    from datetime import UTC
+
+    try:
+        moment = datetime.fromisoformat(text)
+    except ValueError:
+        raise typer.BadParameter(f"{text!r} is no ISO 8601 time such as 2024-05-17T09:30:00Z") from None
+    return moment if moment.tzinfo else moment.replace(tzinfo=UTC)
+
+
+def _schema_name(text: str) -> str:
+    """Give the name of a schema as it is spelled, whatever the case it is given in."""
+    for name in SCHEMAS:
+        if text.upper() == name:
+            return name
+    raise typer.BadParameter(f"no schema {text!r}; there are: {', '.join(SCHEMAS)}")
+
+
+def _names(text: str) -> tuple[str, ...]:
+    """Give the output names in a list with commas."""
+    names = tuple(word.strip() for word in text.split(",") if word.strip())
+    try:
+        chosen(names)
+    except OutputError as refusal:
+        raise typer.BadParameter(str(refusal)) from None
+    return names
+
+
+def _version(wanted: bool) -> None:
+    if wanted:
+        say(__version__)
+        raise typer.Exit
+
+
+@app.callback()
+def _shedbim(
+    version: bool = typer.Option(
+        False, "--version", callback=_version, is_eager=True, help="Show the version."
+    ),
+) -> None:
+    pass
+
+
+@app.command(short_help="Build the model and the schedules.")
+def build(
+    file: Path = typer.Argument(..., metavar="FILE", help="The description, a YAML file."),
+    out: Path = typer.Option(
+        None, metavar="DIR", help="Folder for the outputs.  [default: outputs/<file stem>]"
+    ),
+    schema: str = typer.Option(
+        SCHEMAS[0], metavar="NAME", help=f"Schema of the model file: {', '.join(SCHEMAS)}."
+    ),
+    only: str = typer.Option("", metavar="NAMES", help=f"Only these outputs, with commas: {_ONLY_NAMES}."),
+    time_stamp: str = typer.Option("", metavar="ISO", help="Time written into the outputs.  [default: now]"),
+    json: bool = typer.Option(False, "--json", help="Print one JSON object and nothing else."),
+    quiet: bool = typer.Option(False, "--quiet", "-q", help="Print nothing but errors."),
+) -> None:
+    """Build the model and the schedules of a shed from its description.
+
+    Everything is written or nothing: a build that fails leaves the outputs of the one before as they were.
+    The same description with the same time stamp gives the same bytes.
+
+    \b
+    Examples:
+      shedbim build barn.yaml
+      shedbim build barn.yaml --out issue/P02 --schema IFC4X3_ADD2
+      shedbim build barn.yaml --only schedules,summary
+      shedbim build barn.yaml --time-stamp 2024-05-17T09:30:00Z
+      shedbim build barn.yaml --json
+    """
+    model_schema, names = _schema_name(schema), _names(only)
+    moment = _moment(time_stamp) if time_stamp else None
+    with guard():
+        from shedbim.cli.build_command import run as run_build
+
+        run_build(file, out, model_schema, names, moment, as_json=json, quiet=quiet)
+
+
+@app.command(short_help="Look up sections.")
+def sections(
+    name: list[str] = typer.Argument(
+        None, metavar="[FAMILY or DESIGNATION]", help="What to show; all families without."
+    ),
+    json: bool = typer.Option(False, "--json", help="Print one JSON object and nothing else."),
+) -> None:
+    """List the section families, the sections of one family, or all properties of one section.
+
+    \b
+    Examples:
+      shedbim sections
+      shedbim sections IPE
+      shedbim sections SHS 100x100x5
+      shedbim sections Z 200x75x20x2.5 --json
+    """
+    with guard():
+        from shedbim.cli.sections_command import run
+
+        run(" ".join(name or ()), as_json=json)
+
+
+@app.command(short_help="List what a description can say.")
+def fields(
+    name: str = typer.Argument("", metavar="[FIELD]", help="Only the fields that begin with this path."),
+    json: bool = typer.Option(False, "--json", help="Print one JSON object and nothing else."),
+) -> None:
+    """List every field of a description: what it allows and what it is when left out.
+
+    \b
+    Examples:
+      shedbim fields
+      shedbim fields purlins
+      shedbim fields frames.roof --json
+    """
+    with guard():
+        from shedbim.cli.description_commands import show_fields
+
+        show_fields(name, as_json=json)
+
+
+@app.command(short_help="Print the JSON Schema of a description.")
+def schema() -> None:
+    """Print the JSON Schema of a description, for an editor that completes and checks while you write.
+
+    \b
+    Examples:
+      shedbim schema > shed.schema.json
+    and as the first line of the description:
+      # yaml-language-server: $schema=shed.schema.json
+    """
+    with guard():
+        from shedbim.cli.description_commands import show_schema
+
+        show_schema()
+
+
+@app.command(short_help="Begin a description from a preset.")
+def new(
+    file: Path = typer.Argument(
+        ..., metavar="FILE", help="Where to write it; a file that is there is never touched."
+    ),
+    preset: str = typer.Option(
+        ..., metavar="NAME", help="The preset to begin with; `shedbim presets` lists them."
+    ),
+) -> None:
+    """Write a commented description from a preset, with a project id of its own.
+
+    \b
+    Examples:
+      shedbim presets
+      shedbim new barn.yaml --preset gable-warren
+    """
+    with guard():
+        from shedbim.cli.description_commands import write_new
+
+        write_new(file, preset)
+
+
+@app.command(short_help="List the presets.")
+def presets(
+    json: bool = typer.Option(False, "--json", help="Print one JSON object and nothing else."),
+) -> None:
+    """List the presets that a new description can begin with.
+
+    \b
+    Examples:
+      shedbim presets
+      shedbim presets --json
+    """
+    with guard():
+        from shedbim.cli.description_commands import show_presets
+
+        show_presets(as_json=json)
+
+
+@app.command("summary-keys", short_help="Explain the keys of summary.json.")
+def summary_keys() -> None:
+    """List the keys of summary.json and what each means.
+
+    \b
+    Examples:
+      shedbim summary-keys
+    """
+    with guard():
+        from shedbim.cli.tables import show_table
+        from shedbim.writers.summary_keys import KEYS
+
+        show_table(("key", "meaning"), KEYS)

@@ -1,0 +1,95 @@
+"""What ``shedbim build`` does and prints: the build, then a summary that a person or a program reads."""
+
+from __future__ import annotations
+
+import sys
+from collections.abc import Iterator
+from datetime import UTC, datetime
+from pathlib import Path
+
+from shedbim.cli.speech import complain, say, stage_line
+from shedbim.cli.tables import show_json
+from shedbim.outputs import OUTPUTS
+from shedbim.pipeline import BuildResult, build
+from shedbim.writers.imprint import CAUTIONS
+from shedbim.writers.schedules.tables import by_role
+from shedbim.writers.summary import summary
+
+__all__ = ["report", "run"]
+
+
+def run(
+    file: Path,
+    out: Path | None,
+    schema: str,
+    outputs: tuple[str, ...],
+    moment: datetime | None,
+    *,
+    as_json: bool,
+    quiet: bool,
+) -> None:
+    """Build, and print what came of it: a report, one JSON object, or nothing.
+
+    Args:
+        moment: the time stamp of the outputs; now where not given.
+
+    Raises:
+        ShedbimError: as ``pipeline.build``.
+    """
+    watched = not quiet and not as_json and sys.stderr.isatty()
+    result = build(
+        file,
+        out,
+        schema=schema,
+        outputs=outputs,
+        timestamp=moment or datetime.now(UTC),
+        progress=stage_line if watched else None,
+    )
+    if as_json:
+        files = {name: str(path) for name, path in result.files.items()}
+        show_json({**summary(result.shed, result.imprint), "files": files})
+    elif not quiet:
+        for line in report(result):
+            say(line)
+    if not quiet:
+        for warning in result.description.warnings:
+            complain(f"Warning: {warning}")
+
+
+def report(result: BuildResult) -> Iterator[str]:
+    """Give the lines a person reads after a build."""
+    shed, project = result.shed, result.shed.project
+    joints = sum(len(run.pieces) for run in shed.joints)
+    yield f"{project.number} {project.name}, revision {project.revision}".strip()
+    yield (
+        f"  {len(shed.pieces):,} pieces of {len(shed.parts):,} parts, {len(shed.assemblies):,} assemblies, "
+        f"{joints:,} joints"
+    )
+    tonnes = shed.mass / 1000
+    yield f"  {tonnes:,.2f} t of steel on {shed.footprint:,.0f} m²: {tonnes / shed.footprint:.4f} t/m²"
+    yield ""
+    table = by_role(shed)
+    for role, pieces, mass in zip(
+        table.column("role"), table.column("pieces"), table.column("mass total"), strict=True
+    ):
+        yield f"  {role:<18}{pieces:>9,}{float(mass) / 1000:>11,.2f} t"
+    yield from _listed("Left open, so by default:", [f"{field}: {value}" for field, value in shed.defaults])
+    yield from _listed("Notes:", shed.notes)
+    yield from _listed("Cautions:", CAUTIONS)
+    yield from _listed(f"Written to {result.folder}:", _file_lines(result))
+
+
+def _file_lines(result: BuildResult) -> list[str]:
+    meanings = {row.name: row.meaning for row in OUTPUTS}
+    return [
+        f"{path.name:<16}{path.stat().st_size / 1000:>10,.1f} kB  {meanings[name]}"
+        for name, path in result.files.items()
+    ]
+
+
+def _listed(heading: str, lines: list[str] | tuple[str, ...]) -> Iterator[str]:
+    """An empty line, the heading and the lines under it; nothing for no lines."""
+    if lines:
+        yield ""
+        yield heading
+        yield from (f"  {line}" for line in lines)

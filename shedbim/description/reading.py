@@ -1,0 +1,48 @@
+"""A description from a file or a text, or all that is wrong with it."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+from pydantic import ValidationError
+
+from shedbim.description.faults import capped, model_faults, placed
+from shedbim.description.models import Description
+from shedbim.description.nodes import node_tree
+from shedbim.description.partial import readable_part
+from shedbim.description.rules import broken_rules
+from shedbim.description.source import checked_text, printable, read_source
+from shedbim.errors import DescriptionError
+
+__all__ = ["read", "read_text"]
+
+
+def read(path: str | Path) -> Description:
+    """The description in a file.
+
+    Raises DescriptionError with all faults, each with its place; nothing else for whatever the file holds.
+    """
+    return read_text(read_source(Path(path)), printable(str(path)))
+
+
+def read_text(text: str, file: str = "<text>") -> Description:
+    """The description in a text; ``file`` is the name that faults carry.
+
+    Raises DescriptionError with all faults, each with its place; nothing else for whatever the text holds.
+    """
+    tree = node_tree(checked_text(text, file), file)
+    faults = list(tree.faults)
+    description: Description | None = None
+    value = tree.root.value
+    try:
+        description = Description.model_validate(value)
+        broken = broken_rules(description)
+    except ValidationError as error:
+        faults += model_faults(error, tree, file)
+        broken = broken_rules(readable_part(value), partly=True)
+    for rule in broken:
+        path = rule.field.split(".")
+        faults.append(placed(rule.message, path, tree.root, file, given=rule.given, allowed=rule.allowed))
+    if faults or description is None:
+        raise DescriptionError(capped(faults, file))
+    return description

@@ -1,0 +1,306 @@
+"""The bracing of a building: roof panels, wall tiers, the struts between them, and bottom chord ties."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from itertools import pairwise
+from math import ceil
+
+import numpy as np
+from numpy.typing import NDArray
+
+from shedbim.description.models import Description
+from shedbim.expand.bays import Bay, runs_of_bays
+from shedbim.expand.braces import BraceEnd, Panel, brace_reach, braces
+from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, STRUT_END_GAP
+from shedbim.expand.frames import Frame, post_places
+from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Member, Meets, Run
+from shedbim.expand.layout import Layout, Pitched
+from shedbim.expand.set_out import even_places
+from shedbim.expand.sticks import stick
+from shedbim.model.joints import At, JointKind
+from shedbim.model.roles import Role
+from shedbim.sections.profiles import IShape
+from shedbim.sections.section import Section
+
+__all__ = ["braced_bays", "bracing"]
+
+Array = NDArray[np.float64]
+_UP = np.array([0.0, 0.0, 1.0])
+_ACROSS = np.array([1.0, 0.0, 0.0])
+_LENGTHWISE = np.array([0.0, 1.0, 0.0])
+
+#: Greatest distance between braced bays chosen by rule (IS 800:2007 clause 3.10.2, value from memory).
+_BRACED_EVERY = 50_000.0
+#: Greatest rise of a tier of wall bracing over its bay: keeps diagonals at 55 degrees or flatter.
+_STEEPEST_TIER = 1.43
+
+
+def braced_bays(description: Description, layout: Layout) -> frozenset[int]:
+    """Give the numbers (0 for the first) of the braced bays: as named, or by rule."""
+    asked, count = description.bracing.bays, len(layout.bay_lengths)
+    if asked != "rule":
+        named = {"first": 0, "last": count - 1}
+        return frozenset(named[bay] if isinstance(bay, str) else bay - 1 for bay in asked)
+    chosen = {0, count - 1}
+    middles = (np.array(layout.grid.y[1:]) + np.array(layout.grid.y[:-1])) / 2
+    parts = ceil((middles[-1] - middles[0]) / _BRACED_EVERY - 1e-9)
+    for k in range(1, parts):
+        wanted = middles[0] + (middles[-1] - middles[0]) * k / parts
+        chosen.add(int(np.abs(middles - wanted).argmin()))
+    return frozenset(chosen)
+
+
+@dataclass(frozen=True, eq=False)
+class _Frames:
+    """The frames at the two lines of a bay."""
+
+    first: Frame
+    second: Frame
+
+    def at(self, line: int) -> Frame:
+        return self.first if line == FIRST_LINE else self.second
+
+
+def bracing(
+    description: Description, layout: Layout, inner: Frame, gables: tuple[Frame, Frame]
+) -> list[Run]:
+    """Give all bracing, struts and ties, bay by bay."""
+    braced = braced_bays(description, layout)
+
+    def frames(bay: Bay) -> _Frames:
+        return _Frames(gables[0] if bay.first else inner, gables[1] if bay.last else inner)
+
+    def plain(bay: Bay) -> Kit:
+        maker = _Maker(description, layout, frames(bay), bay.length)
+        maker.eaves_struts()
+        maker.ties()
+        return maker.kit()
+
+    def full(bay: Bay) -> Kit:
+        maker = _Maker(description, layout, frames(bay), bay.length)
+        maker.eaves_struts()
+        maker.ties()
+        maker.roof()
+        maker.walls()
+        return maker.kit()
+
+    return [
+        *runs_of_bays(layout, plain, lambda i: i not in braced),
+        *runs_of_bays(layout, full, lambda i: i in braced),
+    ]
+
+
+class _Maker:
+    """Collects the bars and joints of one kind of bay; y runs from 0 to ``length``."""
+
+    def __init__(self, description: Description, layout: Layout, frames: _Frames, length: float) -> None:
+        self.description, self.layout, self.frames, self.length = description, layout, frames, length
+        self.options = description.bracing
+        self.finish = description.finish.frames
+        self.columns = description.frames.columns.section
+        self.members: list[Member] = []
+        self.meetings: list[Meeting] = []
+
+    def kit(self) -> Kit:
+        """The kit of what was collected."""
+        return Kit(tuple(self.members), tuple(self.meetings))
+
+    def lines(self) -> Iterator[tuple[int, float, At]]:
+        """The two lines of the bay: which, its y, and the end of a strut there."""
+        yield FIRST_LINE, 0.0, At.START
+        yield SECOND_LINE, self.length, At.END
+
+    # Depth of the bracing plane
+
+    def depth(self) -> float:
+        """How far the plane of the roof bracing lies under the top line, mm.
+
+        At half the depth of the shallower steel at the bay's lines, and no brace above its top.
+        """
+        carriers = (self.frames.first.carrier, self.frames.second.carrier)
+        return max(min(c.height for c in carriers) / 2, brace_reach(self.options.roof.section))
+
+    # Struts
+
+    def strut(
+        self, name: str, role: Role, section: Section, grade: str, at: Array, carriers: Sequence[tuple[str, float]]
+    ) -> None:
+        """A strut along the building through ``at`` (3,); for each line its carrier and where the strut stops."""
+        (first, stop_first), (second, stop_second) = carriers
+        a = at + _LENGTHWISE * stop_first
+        b = at + _LENGTHWISE * (self.length - stop_second)
+        bar, place = stick(section, a, b, _UP)
+        self.members.append(Member(name, role, bar, place, grade, self.finish))
+        kind = JointKind.TIE_END if role is Role.TIE else JointKind.STRUT_END
+        for carrier, (line, y, end) in zip((first, second), self.lines(), strict=True):
+            point = at + _LENGTHWISE * y
+            self.meetings.append(Meeting(kind, (Meets(carrier, At.ALONG, line), Meets(name, end)), point))
+
+    def column_stop(self, strut: Section) -> float:
+        """Where a strut stops at a column: at its web between the flanges where it fits, else at their tips."""
+        profile = self.columns.profile
+        if isinstance(profile, IShape) and strut.width <= profile.h - 2 * profile.tf - 2 * profile.r:
+            return profile.tw / 2 + STRUT_END_GAP
+        return self.columns.width / 2 + STRUT_END_GAP
+
+    def eaves_level(self, column: int) -> float:
+        """Level of the strut at a column line: in the plane of the roof bracing, under the column's top."""
+        strut = self.options.eaves_strut.section
+        pitched = self.layout.slopes_at_column(column)
+        x = self.layout.grid.x[column]
+        in_plane = min(float(p.point(x, self.depth())[2]) for p in pitched)
+        steepest = max(abs(float(p.direction[2] / p.direction[0])) for p in pitched)
+        under = self.layout.column_top(column) - strut.height / 2 - steepest * strut.width / 2
+        return min(in_plane, under)
+
+    def eaves_struts(self) -> None:
+        """A strut at every column line: at the eaves, and in valleys."""
+        options = self.options.eaves_strut
+        stop = self.column_stop(options.section)
+        last = len(self.layout.grid.x) - 1
+        for column, letter in enumerate(self.layout.grid.letters):
+            role = Role.EAVES_STRUT if column in (0, last) else Role.VALLEY_STRUT
+            at = np.array([self.layout.grid.x[column], 0.0, self.eaves_level(column)])
+            carrier = (f"column/{letter}", stop)
+            self.strut(f"{role.word}/{letter}", role, options.section, options.grade, at, (carrier, carrier))
+
+    def ties(self) -> None:
+        """Ties between the bottom chords of two trusses, at nodes no further apart than asked."""
+        options = self.options.ties
+        trusses = zip(self.frames.first.trusses, self.frames.second.trusses, strict=False)
+        for span, (here, there) in zip(self.layout.span_names, trusses, strict=False):
+            nodes = np.array(here.bottom_nodes)
+            wanted = even_places(nodes[0], nodes[-1], options.spacing)[1:-1]
+            chosen = sorted({int(np.abs(nodes - x).argmin()) for x in wanted})
+            for node in chosen:
+                x, z = here.bottom_nodes[node], here.bottom_levels[node]
+                number = 0 if len(here.bottom_chords) == 1 or x <= self.ridge_x(span) else 1
+                stop = here.bottom_chord.width / 2 + STRUT_END_GAP
+                carriers = ((here.bottom_chords[number], stop), (there.bottom_chords[number], stop))
+                self.strut(
+                    f"bottom chord tie/{span}/{node}", Role.TIE, options.section, options.grade,
+                    np.array([x, 0.0, z]), carriers,
+                )  # fmt: skip
+
+    def ridge_x(self, span: str) -> float:
+        """x of the ridge over a span."""
+        number = self.layout.span_names.index(span)
+        return self.layout.slopes[self.layout.span_slopes(number)[0]].slope.x1
+
+    # Roof
+
+    def roof_places(self, pitched: Pitched) -> list[float]:
+        """x of the bracing nodes of a slope: over the gable posts, or in as many panels as asked."""
+        s = pitched.slope
+        if self.options.roof.panels is not None:
+            n = self.options.roof.panels
+            return [s.x0 + (s.x1 - s.x0) * k / n for k in range(n + 1)]
+        posts = [x for x in post_places(self.description, self.layout) if s.x0 + 1.0 < x < s.x1 - 1.0]
+        return [s.x0, *posts, s.x1]
+
+    def roof(self) -> None:
+        """Braces over every slope, and struts at the nodes that no column line holds."""
+        options = self.options.roof
+        for number, pitched in enumerate(self.layout.slopes):
+            places = self.roof_places(pitched)
+            for k, (x0, x1) in enumerate(pairwise(places), start=1):
+                panel = self.roof_panel(number, pitched, k, x0, x1)
+                members, meetings = braces(
+                    panel, options.pattern, options.section, Role.ROOF_BRACE, options.grade, self.finish
+                )
+                self.members += members
+                self.meetings += meetings
+            for k, x in enumerate(places[1:], start=1):
+                at_end = k == len(places) - 1
+                if not (at_end and pitched.right_column >= 0):
+                    self.roof_strut(number, pitched, k, x)
+
+    def roof_strut(self, number: int, pitched: Pitched, k: int, x: float) -> None:
+        """A strut between the frames at a bracing node; a ridge node belongs to the slope on its left."""
+        options = self.options.struts
+        at = pitched.point(x, self.depth())
+        carriers = tuple(
+            (frame.carriers[number], frame.carrier.width / 2 + STRUT_END_GAP)
+            for frame in (self.frames.first, self.frames.second)
+        )
+        self.strut(f"strut/{pitched.name}/{k}", Role.STRUT, options.section, options.grade, at, carriers)
+
+    def roof_panel(self, number: int, pitched: Pitched, k: int, x0: float, x1: float) -> Panel:
+        """One panel of roof bracing between two nodes of a slope."""
+        ends = {}
+        for line, y, _ in self.lines():
+            frame = self.frames.at(line)
+            inwards = _LENGTHWISE if line == FIRST_LINE else -_LENGTHWISE
+            for x, along_slope in ((x0, pitched.direction), (x1, -pitched.direction)):
+                column = self.column_at(x)
+                at = pitched.point(x, self.depth()) + _LENGTHWISE * y
+                if column >= 0:
+                    side, strut = max(self.columns.width, frame.carrier.width) / 2, self.options.eaves_strut.section
+                else:
+                    side, strut = frame.carrier.width / 2, self.options.struts.section
+                planes = (
+                    (at + inwards * (side + BRACE_SET_BACK), inwards),
+                    (at + along_slope * (strut.width / 2 + BRACE_SET_BACK), along_slope),
+                )
+                carrier = f"column/{self.layout.grid.letters[column]}" if column >= 0 else frame.carriers[number]
+                ends[line, x] = BraceEnd(at, Meets(carrier, At.ALONG, line), planes)
+        corners = (ends[FIRST_LINE, x0], ends[SECOND_LINE, x1], ends[FIRST_LINE, x1], ends[SECOND_LINE, x0])
+        return Panel(f"roof brace/{pitched.name}/{k}", corners, pitched.normal, turned=k % 2 == 0)
+
+    def column_at(self, x: float) -> int:
+        """The number of the column line at x, or -1."""
+        return next((i for i, line in enumerate(self.layout.grid.x) if abs(line - x) < 1e-6), -1)
+
+    # Walls
+
+    def walls(self) -> None:
+        """Braces between the columns of every braced column line, and struts between tiers."""
+        options = self.options.walls
+        last = len(self.layout.grid.x) - 1
+        for column, letter in enumerate(self.layout.grid.letters):
+            if options.lines == "outer" and column not in (0, last):
+                continue
+            x = self.layout.grid.x[column]
+            low, high = self.layout.base + BASE_NODE, self.eaves_level(column)
+            tiers = options.tiers or max(ceil((high - low) / self.length / _STEEPEST_TIER), 1)
+            levels = even_places(low, high, (high - low) / tiers)
+            for k, (z0, z1) in enumerate(pairwise(levels), start=1):
+                panel = self.wall_panel(letter, x, k, z0, z1, at_base=k == 1, at_eaves=k == tiers)
+                members, meetings = braces(
+                    panel, options.pattern, options.section, Role.WALL_BRACE, options.grade, self.finish
+                )
+                self.members += members
+                self.meetings += meetings
+            for k, z in enumerate(levels[1:-1], start=1):
+                struts = self.options.struts
+                carrier = (f"column/{letter}", self.column_stop(struts.section))
+                self.strut(
+                    f"strut/{letter}/{k}", Role.STRUT, struts.section, struts.grade,
+                    np.array([x, 0.0, z]), (carrier, carrier),
+                )  # fmt: skip
+
+    def wall_panel(
+        self, letter: str, x: float, k: int, z0: float, z1: float, *, at_base: bool, at_eaves: bool
+    ) -> Panel:
+        """One tier of wall bracing between two columns."""
+        ends = {}
+        side = self.columns.width / 2 + BRACE_SET_BACK
+        tier_half = self.options.struts.section.height / 2
+        eaves_half = self.options.eaves_strut.section.height / 2
+        for line, y, _ in self.lines():
+            inwards = _LENGTHWISE if line == FIRST_LINE else -_LENGTHWISE
+            for z, upwards in ((z0, _UP), (z1, -_UP)):
+                if z == z0 and at_base:
+                    strut = 0.0
+                else:
+                    strut = eaves_half if z == z1 and at_eaves else tier_half
+                at = np.array([x, y, z])
+                planes = (
+                    (at + inwards * side, inwards),
+                    (at + upwards * (strut + BRACE_SET_BACK if strut else 0.0), upwards),
+                )
+                ends[line, z] = BraceEnd(at, Meets(f"column/{letter}", At.ALONG, line), planes)
+        corners = (ends[FIRST_LINE, z0], ends[SECOND_LINE, z1], ends[FIRST_LINE, z1], ends[SECOND_LINE, z0])
+        return Panel(f"wall brace/{letter}/{k}", corners, _ACROSS, turned=k % 2 == 0)

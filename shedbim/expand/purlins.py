@@ -1,0 +1,157 @@
+"""Purlins on the roof surfaces, and the sag bars between them."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from itertools import pairwise
+
+import numpy as np
+
+from shedbim.description.models import Description
+from shedbim.expand.bays import Bay, runs_of_bays
+from shedbim.expand.clearances import END_PLATE
+from shedbim.expand.cold_formed import (
+    Course,
+    Stretch,
+    course_bar,
+    line_joint,
+    next_bar,
+    sag_bar,
+    sag_bar_places,
+)
+from shedbim.expand.frames import Frame
+from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Member, Meets, Run
+from shedbim.expand.layout import Layout, Pitched, Surface
+from shedbim.expand.set_out import even_places, places_over, sag_bar_rows
+from shedbim.model.joints import At, JointKind
+from shedbim.model.roles import Role
+
+__all__ = ["purlin_courses", "purlins"]
+
+_LENGTHWISE = np.array([0.0, 1.0, 0.0])
+
+
+def purlins(
+    description: Description, layout: Layout, inner: Frame, gables: tuple[Frame, Frame], verge: float
+) -> list[Run]:
+    """Give the purlins of all bays; they overhang the end frames by ``verge`` mm."""
+    courses = purlin_courses(description, layout, inner)
+
+    def kit(bay: Bay) -> Kit:
+        frames = (gables[0] if bay.first else inner, gables[1] if bay.last else inner)
+        return _bay_kit(description, layout, frames, courses, bay, verge)
+
+    return runs_of_bays(layout, kit)
+
+
+def purlin_courses(description: Description, layout: Layout, frame: Frame) -> list[tuple[Surface, list[Course]]]:
+    """Give the purlin lines of every surface, left to right, at y = 0."""
+    options = description.purlins
+    found = []
+    for surface in layout.surfaces:
+        courses = []
+        for number, x in enumerate(_places(description, layout, frame, surface), start=1):
+            pitched = surface.at(x)
+            above = options.lift + options.section.height / 2
+            courses.append(
+                Course(
+                    f"purlin/{surface.name}/{number}",
+                    pitched.point(x, 0.0) + pitched.normal * above,
+                    surface.uphill,
+                    pitched.normal,
+                    _LENGTHWISE,
+                )
+            )
+        found.append((surface, courses))
+    return found
+
+
+def _places(description: Description, layout: Layout, frame: Frame, surface: Surface) -> list[float]:
+    """x of the purlins of a surface, left to right."""
+    options = description.purlins
+    first, last = surface.slopes[0], surface.slopes[-1]
+    to_plan = float(first.direction[0])
+    start = first.slope.x0 + _offset(description, layout, first.left_column) * to_plan
+    end = last.slope.x1 - _offset(description, layout, last.right_column) * to_plan
+    spacing = options.spacing * to_plan
+    if options.set_out == "nodes":
+        nodes = [x for made in frame.trusses for x in made.top_nodes]
+        return places_over(nodes, start, end, spacing)
+    return even_places(start, end, spacing)
+
+
+def _offset(description: Description, layout: Layout, column: int) -> float:
+    options = description.purlins
+    if column < 0:
+        return options.ridge_offset
+    return options.valley_offset if layout.is_valley(column) else options.eaves_offset
+
+
+def _carrier(description: Description, layout: Layout, frame: Frame, pitched: Pitched, x: float) -> str:
+    """The piece of a frame that a purlin at x stands on: the column top next to a column line."""
+    half = description.frames.columns.section.height / 2
+    for column in (pitched.left_column, pitched.right_column):
+        if column >= 0 and abs(x - layout.grid.x[column]) < half + END_PLATE:
+            return f"column/{layout.grid.letters[column]}"
+    return frame.carriers[layout.slopes.index(pitched)]
+
+
+def _bay_kit(
+    description: Description,
+    layout: Layout,
+    frames: tuple[Frame, Frame],
+    courses: Sequence[tuple[Surface, list[Course]]],
+    bay: Bay,
+    verge: float,
+) -> Kit:
+    options = description.purlins
+    finish = description.finish.secondary
+    stretch = Stretch(
+        -verge if bay.first else options.gap / 2,
+        bay.length + verge if bay.last else bay.length - options.gap / 2,
+    )
+    members: list[Member] = []
+    meetings: list[Meeting] = []
+    for surface, lines in courses:
+        for course in lines:
+            members.append(course_bar(course, stretch, options.section, Role.PURLIN, options.grade, finish))
+            x = float(course.point[0] - course.outward[0] * (options.lift + options.section.height / 2))
+            first, second = (_carrier(description, layout, frame, surface.at(x), x) for frame in frames)
+            meetings.extend(_held(course, first, second, bay))
+    for name, lower, upper, number in _neighbours(layout, courses):
+        rows = sag_bar_rows(options.sag_bars, bay.length, layout.slopes[0].slope.pitch)
+        for row, place in enumerate(sag_bar_places(bay.length, rows), start=1):
+            member, joints = sag_bar(
+                lower, upper, place, number, options.section, options.sag_bar, f"{name}/{row}",
+                options.grade, finish,
+            )  # fmt: skip
+            members.append(member)
+            meetings.extend(joints)
+    return Kit(tuple(members), tuple(meetings))
+
+
+def _held(course: Course, first: str, second: str, bay: Bay) -> list[Meeting]:
+    """The joints of a purlin on the bay's two lines: butted inside, running through at an end frame."""
+    kind = JointKind.PURLIN_CLEAT
+    found: list[Meeting] = []
+    if bay.first:
+        found += line_joint(kind, course, Meets(first, At.ALONG, FIRST_LINE), 0.0, near=True, overhangs=True)
+    found += line_joint(
+        kind, course, Meets(second, At.ALONG, SECOND_LINE), bay.length,
+        near=False, overhangs=bay.last, following=None if bay.last else next_bar(course),
+    )  # fmt: skip
+    return found
+
+
+def _neighbours(
+    layout: Layout, courses: Sequence[tuple[Surface, list[Course]]]
+) -> list[tuple[str, Course, Course, int]]:
+    """Each pair of courses that sag bars join, with the bar's name: down each slope, and over a ridge."""
+    pairs = []
+    for surface, lines in courses:
+        for number, (a, b) in enumerate(pairwise(lines), start=1):
+            pairs.append((f"sag bar/{surface.name}/{number}", a, b, number))
+    for (left, a), (right, b) in pairwise(courses):
+        if left.slopes[-1].right_column < 0:
+            pairs.append((f"sag bar/{left.name}/ridge", a[-1], b[0], len(a)))
+    return pairs

@@ -1,0 +1,32 @@
+"""The kinds of fields a description is made of, below the roof forms, frames and all that has options."""
+
+from shedbim.fields.kind import FieldError, Kind, Options, default, left_out, nearest, required
+from shedbim.fields.lists import Labels, NumbersOr, Repeats
+from shedbim.fields.scalars import COLD_FORMED, ROLLED, Choice, Grade, Quantity, Text, Whole, WholeOr
+from shedbim.fields.sections import SHAPES, SectionOf
+from shedbim.fields.unions import OneOf, table
+
+__all__ = [
+    "COLD_FORMED",
+    "ROLLED",
+    "SHAPES",
+    "Choice",
+    "FieldError",
+    "Grade",
+    "Kind",
+    "Labels",
+    "NumbersOr",
+    "OneOf",
+    "Options",
+    "Quantity",
+    "Repeats",
+    "SectionOf",
+    "Text",
+    "Whole",
+    "WholeOr",
+    "default",
+    "left_out",
+    "nearest",
+    "required",
+    "table",
+]

@@ -1,0 +1,105 @@
+"""The kinds of output: one function and one row each."""
+# ruff: noqa: PLC0415 - a writer is imported when it writes, so that a listing or a single output starts quickly
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from difflib import get_close_matches
+from typing import TYPE_CHECKING, BinaryIO
+
+from shedbim.errors import OutputError
+
+if TYPE_CHECKING:
+    from shedbim.model.shed import Shed
+    from shedbim.writers.imprint import Imprint
+
+__all__ = ["OUTPUTS", "SCHEMAS", "Output", "chosen"]
+
+#: Schemas of the model file, the default first.
+SCHEMAS = ("IFC4", "IFC4X3_ADD2", "IFC2X3")
+
+
+@dataclass(frozen=True)
+class Output:
+    """One kind of output.
+
+    Attributes:
+        name: how it is chosen.
+        group: the name that chooses it together with its like.
+        file: its file name.
+        meaning: what is in it.
+        write: writes its bytes to a binary sink.
+    """
+
+    name: str
+    group: str
+    file: str
+    meaning: str
+    write: Callable[[Shed, Imprint, BinaryIO], None]
+
+
+def _model(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    from shedbim.writers.ifc import write
+
+    write(shed, sink, schema=imprint.schema, timestamp=imprint.stamp)
+
+
+def _members(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    from shedbim.writers.schedules.csv_text import csv_text
+    from shedbim.writers.schedules.tables import members
+
+    sink.write(csv_text(members(shed)).encode())
+
+
+def _assemblies(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    from shedbim.writers.schedules.csv_text import csv_text
+    from shedbim.writers.schedules.tables import assemblies
+
+    sink.write(csv_text(assemblies(shed)).encode())
+
+
+def _sections(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    from shedbim.writers.schedules.csv_text import csv_text
+    from shedbim.writers.schedules.tables import totals
+
+    sink.write(csv_text(totals(shed)).encode())
+
+
+def _workbook(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    from shedbim.writers.schedules.workbook import workbook_bytes
+
+    sink.write(workbook_bytes(shed, imprint))
+
+
+def _summary(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    from shedbim.writers.summary import summary_text
+
+    sink.write(summary_text(shed, imprint).encode())
+
+
+OUTPUTS: tuple[Output, ...] = (
+    Output("model", "model", "model.ifc", "the building model", _model),
+    Output("members", "schedules", "members.csv", "members by mark", _members),
+    Output("assemblies", "schedules", "assemblies.csv", "assemblies by mark", _assemblies),
+    Output(
+        "sections", "schedules", "sections.csv", "totals by section, by role and of everything", _sections
+    ),
+    Output("workbook", "schedules", "schedule.xlsx", "all schedules in one workbook that prints", _workbook),
+    Output("summary", "summary", "summary.json", "counts, masses, defaults and cautions", _summary),
+)
+
+
+def chosen(names: Sequence[str]) -> tuple[Output, ...]:
+    """Give the rows chosen by names or group names, each once and in order; no names choose all.
+
+    Raises:
+        OutputError: when a name is neither, with the names there are and the nearest one.
+    """
+    known = list(dict.fromkeys(word for row in OUTPUTS for word in (row.name, row.group)))
+    for name in names:
+        if name not in known:
+            near = get_close_matches(name, known, 1)
+            hint = f"; nearest: {near[0]}" if near else ""
+            raise OutputError(f"no output {name!r}; there are: {', '.join(sorted(known))}{hint}")
+    return tuple(row for row in OUTPUTS if not names or row.name in names or row.group in names)

@@ -1,0 +1,150 @@
+"""The order of the stages: read, expand, write. No engineering here."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from datetime import datetime
+from functools import partial
+from hashlib import sha256
+from pathlib import Path
+
+from shedbim.description import Description, read_text
+from shedbim.description.source import printable, read_source
+from shedbim.errors import OutputError
+from shedbim.expand import expand
+from shedbim.model.shed import Shed
+from shedbim.outputs import SCHEMAS, chosen
+from shedbim.saving import save
+from shedbim.writers.imprint import UNDATED, Imprint
+
+__all__ = [
+    "BuildResult",
+    "Progress",
+    "build",
+    "digest",
+    "write_model",
+    "write_outputs",
+    "write_schedules",
+    "write_summary",
+]
+
+#: Called with the name of a stage before it starts, the stages done and all stages; and once at the end.
+Progress = Callable[[str, int, int], None]
+
+_PLAIN = Imprint()
+
+
+@dataclass(frozen=True, eq=False)
+class BuildResult:
+    """What a build came to.
+
+    Attributes:
+        description: as read.
+        shed: as expanded.
+        imprint: what the outputs state of where they come from.
+        folder: where the outputs are.
+        files: path of each output by its name, in the order of the table of outputs.
+    """
+
+    description: Description
+    shed: Shed
+    imprint: Imprint
+    folder: Path
+    files: dict[str, Path]
+
+
+def build(
+    path: Path | str,
+    out: Path | str | None = None,
+    *,
+    schema: str = SCHEMAS[0],
+    outputs: Sequence[str] = (),
+    timestamp: datetime = UNDATED,
+    progress: Progress | None = None,
+) -> BuildResult:
+    """Build the outputs of a description file; all of them are written, or none.
+
+    Args:
+        path: the description.
+        out: folder of the outputs, made when it is not there; ``outputs/<file stem>`` where not given.
+        schema: of the model file, one of ``SCHEMAS``.
+        outputs: names or groups of outputs; all where not given.
+        timestamp: written into the outputs; a fixed one where not given.
+        progress: called as the work goes on.
+
+    Raises:
+        DescriptionError: when the description is refused, with all its faults.
+        OutputError: when a name of an output or a schema is unknown, or the outputs cannot be written.
+        ModelError: when the program is at fault.
+    """
+    total = 2 + len(chosen(outputs))
+    if schema not in SCHEMAS:
+        raise OutputError(f"no schema {schema!r}; there are: {', '.join(SCHEMAS)}")
+    path = Path(path)
+    folder = Path("outputs") / path.stem if out is None else Path(out)
+    tell = progress or _silent
+    tell("reading the description", 0, total)
+    text = read_source(path)
+    description = read_text(text, printable(str(path)))
+    imprint = Imprint(timestamp, schema, digest(text))
+    tell("expanding", 1, total)
+    shed = expand(description)
+    files = write_outputs(
+        shed,
+        folder,
+        outputs,
+        imprint=imprint,
+        progress=lambda name, done, _: tell(f"writing {name}", 2 + done, total),
+    )
+    tell("done", total, total)
+    return BuildResult(description, shed, imprint, folder, files)
+
+
+def write_outputs(
+    shed: Shed,
+    folder: Path | str,
+    outputs: Sequence[str] = (),
+    *,
+    imprint: Imprint = _PLAIN,
+    progress: Progress | None = None,
+) -> dict[str, Path]:
+    """Write outputs of a shed into a folder, all or none of them; give the path of each by its name.
+
+    Args:
+        folder: made when it is not there.
+        outputs: names or groups of outputs; all where not given.
+        imprint: schema, time stamp and digest that the outputs state.
+        progress: called as ``saving.save`` calls it.
+
+    Raises:
+        OutputError: when a name is unknown, or a file cannot be written; what stood there is untouched.
+    """
+    rows = chosen(outputs)
+    writers = {row.file: partial(row.write, shed, imprint) for row in rows}
+    paths = save(Path(folder), writers, progress)
+    return {row.name: path for row, path in zip(rows, paths, strict=True)}
+
+
+def write_model(shed: Shed, folder: Path | str, *, imprint: Imprint = _PLAIN) -> dict[str, Path]:
+    """Write the model file of a shed; see ``write_outputs``."""
+    return write_outputs(shed, folder, ("model",), imprint=imprint)
+
+
+def write_schedules(shed: Shed, folder: Path | str, *, imprint: Imprint = _PLAIN) -> dict[str, Path]:
+    """Write the schedules of a shed, as CSV and as a workbook; see ``write_outputs``."""
+    return write_outputs(shed, folder, ("schedules",), imprint=imprint)
+
+
+def write_summary(shed: Shed, folder: Path | str, *, imprint: Imprint = _PLAIN) -> dict[str, Path]:
+    """Write the summary of a shed; see ``write_outputs``."""
+    return write_outputs(shed, folder, ("summary",), imprint=imprint)
+
+
+def digest(text: str) -> str:
+    """Give the SHA-256 of a description's bytes in UTF-8 as 64 hexadecimal digits."""
+    return sha256(text.encode()).hexdigest()
+
+
+def _silent(stage: str, done: int, total: int) -> None:
+    """Tell nobody."""

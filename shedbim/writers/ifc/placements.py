@@ -1,0 +1,114 @@
+"""Placements as entities: equal ones are written once, however many pieces stand that way.
+
+Origins are rounded to 0.01 mm and directions to ten digits; equal placements are those that agree then.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+from numpy.typing import NDArray
+
+from shedbim.geometry.placements import Placements, compose, inverse
+from shedbim.writers.ifc.stepfile import StepFile
+from shedbim.writers.ifc.text import number, reals
+
+__all__ = ["axis2placement", "direction", "distinct_rows", "point", "relative", "write_placements"]
+
+_PER_MM = 100  # 0.01 mm
+_PER_METRE = 1000 * _PER_MM
+_PER_UNIT = 10**10
+#: Added before rounding down: takes the boundary a little off the halves, where plain numbers lie.
+_HALF = 0.501
+
+#: Odd multipliers that mix a row of integers into one; any will do, fixed ones keep the order of the file.
+_MIX = (np.uint64(0x9E3779B97F4A7C15), np.uint64(0xBF58476D1CE4E5B9))
+
+Integers = NDArray[np.int64]
+
+
+def point(step: StepFile, *coordinates: float) -> str:
+    """Write (or find) a point at ``coordinates`` in mm, two or three; give its reference."""
+    return step.share("IfcCartesianPoint", Coordinates=reals([value / 1000 for value in coordinates]))
+
+
+def direction(step: StepFile, *ratios: float) -> str:
+    """Write (or find) a unit vector of two or three ``ratios``; give its reference."""
+    # Adding zero turns -0.0 into 0.0.
+    return step.share("IfcDirection", DirectionRatios=reals([round(ratio, 10) + 0.0 for ratio in ratios]))
+
+
+def axis2placement(step: StepFile, origin: Sequence[float], axis: Sequence[float], ref: Sequence[float]) -> str:
+    """Write (or find) a placement: ``origin`` (3,) mm, ``axis`` its z and ``ref`` its x as unit vectors (3,)."""
+    return step.share(
+        "IfcAxis2Placement3D",
+        Location=point(step, *origin),
+        Axis=direction(step, *axis),
+        RefDirection=direction(step, *ref),
+    )
+
+
+def relative(outer: Placements, inner: Placements, owner: Integers) -> Placements:
+    """Give ``inner`` (n, 3, 4) seen from the row of ``outer`` (m, 3, 4) that ``owner`` (n,) names; -1: as it is."""
+    result = inner.copy()
+    owned = np.flatnonzero(owner >= 0)
+    if len(owned):
+        result[owned] = compose(inverse(outer)[owner[owned]], inner[owned])
+    return result
+
+
+def distinct_rows(rows: Integers) -> tuple[Integers, Integers]:
+    """Find equal rows of (n, k) integers: the first row of each kind, in order, and each row's kind (n,)."""
+    mixed = np.zeros(len(rows), np.uint64)
+    for column in rows.T.astype(np.uint64):
+        mixed = (mixed ^ column) * _MIX[0]
+        mixed ^= mixed >> np.uint64(29)
+        mixed *= _MIX[1]
+    _, first, kind = np.unique(mixed, return_index=True, return_inverse=True)
+    if not np.array_equal(rows[first][kind], rows):  # two kinds mixed into one number
+        _, first, kind = np.unique(rows, axis=0, return_index=True, return_inverse=True)
+    order = np.argsort(first)
+    rank = np.empty_like(order)
+    rank[order] = np.arange(len(order))
+    return first[order], rank[kind.reshape(-1)]
+
+
+def write_placements(step: StepFile, placements: Placements) -> tuple[int, Integers]:
+    """Write the distinct ones among placements (n, 3, 4), mm.
+
+    Returns:
+        The number of the first one's entity, and for each placement how many entities after that its own is.
+    """
+    origins = _rounded(placements[:, :, 3], _PER_MM)
+    turns = _rounded(placements[:, :, [2, 0]].swapaxes(1, 2).reshape(-1, 6), _PER_UNIT)
+    turn_first, turn = distinct_rows(turns)
+    axes = [
+        (direction(step, *row[:3]), direction(step, *row[3:])) for row in (turns[turn_first] / _PER_UNIT).tolist()
+    ]
+    first, kind = distinct_rows(np.column_stack([origins, turn]))
+    points = step.reserve(2 * len(first))
+    start = points + len(first)
+    line = step.template("IfcCartesianPoint", {"Coordinates": "(%s,%s,%s)"}) + step.template(
+        "IfcAxis2Placement3D", {"Location": "#%d", "Axis": "%s", "RefDirection": "%s"}
+    )
+    x, y, z = (_texts(column) for column in origins[first].T)
+    numbers = range(points, start)
+    turned = turn[first].tolist()
+    step.write(
+        line % (at, a, b, c, at + len(first), at, *axes[t])
+        for at, a, b, c, t in zip(numbers, x, y, z, turned, strict=True)
+    )
+    return start, kind
+
+
+def _rounded(values: NDArray[np.float64], scale: int) -> Integers:
+    """Round to whole multiples of 1/scale."""
+    return np.floor(values * scale + _HALF).astype(np.int64)
+
+
+def _texts(column: Integers) -> list[str]:
+    """Give the texts in metres of whole hundredths of a mm, each distinct one made once."""
+    distinct, which = np.unique(column, return_inverse=True)
+    texts = [number(value) for value in (distinct / _PER_METRE).tolist()]
+    return [texts[i] for i in which.tolist()]

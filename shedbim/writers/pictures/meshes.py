@@ -1,0 +1,68 @@
+"""The mesh of a bar and the edges a draughtsman would draw, in the bar's own frame, mm."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from shedbim.model.bars import Bar
+from shedbim.model.solids import solid
+
+__all__ = ["Mesh", "bar_mesh"]
+
+Floats = NDArray[np.float64]
+Indices = NDArray[np.int64]
+
+#: Two faces that turn by more than this meet in an edge that is drawn (30 degrees: above the steps of a
+#: round tube cut into a dozen chords or more, below the bevel of a mitred end).
+_EDGE_COSINE = float(np.cos(np.pi / 6))
+
+
+@dataclass(frozen=True, eq=False)
+class Mesh:
+    """A closed surface of triangles and its drawn edges.
+
+    Attributes:
+        points: (v, 3) float, mm.
+        triangles: (t, 3) int, indices into ``points``, anticlockwise seen from outside.
+        normals: (t, 3) float, unit, outwards.
+        edges: (e, 2) int, indices into ``points``.
+        sides: (e, 2) int, the two triangles at each edge.
+    """
+
+    points: Floats
+    triangles: Indices
+    normals: Floats
+    edges: Indices
+    sides: Indices
+
+
+def bar_mesh(bar: Bar, chord_error: float) -> Mesh:
+    """Give the mesh of a bar, its arcs cut into chords that leave them by ``chord_error`` mm at most."""
+    body = solid(bar, chord_error).to_mesh()
+    points = np.asarray(body.vert_properties, float)[:, :3]
+    triangles = np.asarray(body.tri_verts, np.int64)
+    a, b, c = points[triangles[:, 0]], points[triangles[:, 1]], points[triangles[:, 2]]
+    cross = np.cross(b - a, c - a)
+    length = np.linalg.norm(cross, axis=1)
+    sound = length > 0
+    triangles, normals = triangles[sound], cross[sound] / length[sound, None]
+    edges, sides = _edges(triangles, normals)
+    return Mesh(points, triangles, normals, edges, sides)
+
+
+def _edges(triangles: Indices, normals: Floats) -> tuple[Indices, Indices]:
+    """Pairs of points (e, 2) and of triangles (e, 2) where the surface turns sharply."""
+    halves = np.vstack([triangles[:, [0, 1]], triangles[:, [1, 2]], triangles[:, [2, 0]]])
+    owner = np.tile(np.arange(len(triangles)), 3)
+    halves = np.sort(halves, axis=1)
+    order = np.lexsort((owner, halves[:, 1], halves[:, 0]))
+    halves, owner = halves[order], owner[order]
+    # In a closed surface each edge now stands twice in a row, once for each triangle beside it.
+    twin = np.flatnonzero((halves[:-1] == halves[1:]).all(axis=1))
+    sides = np.stack([owner[twin], owner[twin + 1]], axis=1)
+    cosine = np.einsum("ij,ij->i", normals[sides[:, 0]], normals[sides[:, 1]])
+    sharp = cosine < _EDGE_COSINE
+    return halves[twin][sharp], sides[sharp]

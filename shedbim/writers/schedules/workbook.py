@@ -1,0 +1,140 @@
+"""The schedule workbook: one sheet for each schedule, and one that says what it is and what it is not.
+
+Totals and products are formulas with the values they give stored beside them; texts are never formulas.
+"""
+
+from __future__ import annotations
+
+import io
+from collections.abc import Callable
+from datetime import UTC
+
+import xlsxwriter
+from xlsxwriter.utility import xl_col_to_name
+from xlsxwriter.workbook import Workbook
+from xlsxwriter.worksheet import Worksheet
+
+from shedbim.model.shed import Shed
+from shedbim.writers.imprint import Imprint
+from shedbim.writers.schedules.about import about_lines
+from shedbim.writers.schedules.formats import Formats
+from shedbim.writers.schedules.table import Table, Total
+from shedbim.writers.schedules.tables import assemblies, by_role, by_section, members
+
+__all__ = ["SHEETS", "workbook_bytes"]
+
+#: The sheets in order; a further schedule is one function and one row here.
+SHEETS: tuple[Callable[[Shed], Table], ...] = (members, assemblies, by_section, by_role)
+
+_A4 = 9  # the paper number of ISO/IEC 29500-1, 18.3.1.63 (value from memory)
+_WIDEST = 40  # characters; longer texts wrap
+_LONGEST_TEXT = (
+    32767  # characters a cell holds (published limit of the file format's main reader, from memory)
+)
+_LONGEST_NAME = 80  # characters of the project's name in a footer, which holds 255 in all (from memory)
+
+
+def workbook_bytes(shed: Shed, imprint: Imprint) -> bytes:
+    """Give the workbook as bytes; equal input gives equal bytes."""
+    sink = io.BytesIO()
+    workbook = xlsxwriter.Workbook(
+        sink, {"in_memory": True, "strings_to_formulas": False, "strings_to_urls": False}
+    )
+    workbook.set_properties({
+        "title": f"Schedules of {shed.project.name}"[:255],
+        "comments": f"Revision {shed.project.revision}. Made by shedbim {imprint.version}."[:255],
+        "created": imprint.timestamp.astimezone(UTC).replace(tzinfo=None),
+    })  # fmt: skip
+    formats = Formats(workbook)
+    for schedule in SHEETS:
+        _write_table(workbook, schedule(shed), formats, _footer(shed))
+    _write_about(workbook, shed, imprint, formats)
+    workbook.close()
+    return sink.getvalue()
+
+
+def _write_table(workbook: Workbook, table: Table, formats: Formats, footer: str) -> None:
+    """Headings, rows, and totals below one empty line, so that sorting and filtering leave them alone."""
+    sheet = workbook.add_worksheet(table.title)
+    for place, column in enumerate(table.columns):
+        sheet.write_string(0, place, _pretty(column.heading), formats.heading(column))
+        sheet.set_column(place, place, _width(table, place))
+    for line, row in enumerate(table.rows, start=1):
+        for place, (column, cell) in enumerate(zip(table.columns, row, strict=True)):
+            style = formats.cell(column)
+            if isinstance(cell, str):
+                sheet.write_string(line, place, cell[:_LONGEST_TEXT], style)
+            elif column.product is None:
+                sheet.write_number(line, place, cell, style)
+            else:
+                sheet.write_formula(line, place, _product(table, column.product, line), style, cell)
+    last = max(len(table.rows), 1)
+    for line, total in enumerate(table.totals, start=last + 2):
+        _write_total(sheet, line, total, table, formats)
+    sheet.autofilter(0, 0, last, len(table.columns) - 1)
+    sheet.freeze_panes(1, 1)
+    _set_up_page(sheet, table.title, footer)
+    sheet.repeat_rows(0)
+
+
+def _product(table: Table, names: tuple[str, str], line: int) -> str:
+    """The formula that multiplies the cells of two columns in one line (from 0)."""
+    return "=" + "*".join(f"{xl_col_to_name(table.index(name))}{line + 1}" for name in names)
+
+
+def _write_total(sheet: Worksheet, line: int, total: Total, table: Table, formats: Formats) -> None:
+    """Write one total: of the rows the filter shows, or of those with the wanted text in one column."""
+    last = max(len(table.rows), 1) + 1
+    for place, column in enumerate(table.columns):
+        style = formats.total(column)
+        if place == 0:
+            sheet.write_string(line, 0, total.label, style)
+        elif column.summed:
+            letters = xl_col_to_name(place)
+            cells = f"{letters}2:{letters}{last}"
+            formula = f"=SUBTOTAL(109,{cells})"
+            if total.where is not None:
+                picked = xl_col_to_name(table.index(total.where[0]))
+                formula = f'=SUMIF({picked}2:{picked}{last},"{total.where[1]}",{cells})'
+            sheet.write_formula(line, place, formula, style, table.total(total, column.name))
+        else:
+            sheet.write_blank(line, place, None, style)
+
+
+def _write_about(workbook: Workbook, shed: Shed, imprint: Imprint, formats: Formats) -> None:
+    sheet = workbook.add_worksheet("About")
+    sheet.set_column(0, 0, 30)
+    sheet.set_column(1, 1, 90)
+    for line, (name, text) in enumerate(about_lines(shed, imprint)):
+        sheet.write_string(line, 0, name[:_LONGEST_TEXT], formats.label)
+        sheet.write_string(line, 1, text[:_LONGEST_TEXT], formats.wrapped)
+    _set_up_page(sheet, "About", _footer(shed))
+
+
+def _set_up_page(sheet: Worksheet, title: str, footer: str) -> None:
+    sheet.set_landscape()
+    sheet.set_paper(_A4)
+    sheet.fit_to_pages(1, 0)
+    sheet.set_margins(left=0.5, right=0.5, top=0.8, bottom=0.8)
+    sheet.set_header(f"&L&B{title}")
+    sheet.set_footer(footer)
+
+
+def _footer(shed: Shed) -> str:
+    """Project left, page in the middle, revision right; a user's own ``&`` is doubled: it starts a code."""
+    project = f"{shed.project.number} {shed.project.name}".strip()[:_LONGEST_NAME].replace("&", "&&")
+    revision = shed.project.revision[:10].replace("&", "&&")
+    return f"&L{project}&CPage &P of &N&RRevision {revision}"
+
+
+def _width(table: Table, place: int) -> float:
+    """Width of a column in characters, so that its cells and the longest word of its heading fit."""
+    column = table.columns[place]
+    cells = [column.shown(row[place]) for row in table.rows]
+    grouping = 0 if column.is_text else 3
+    longest = max((len(text) + grouping for text in cells), default=0)
+    return min(max(longest, *(len(word) for word in column.heading.split())) + 4, _WIDEST)
+
+
+def _pretty(heading: str) -> str:
+    return heading.replace("m2", "m²")

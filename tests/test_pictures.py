@@ -1,0 +1,300 @@
+"""Pictures: valid PNG, hidden surfaces, edges, framing and the named views."""
+
+from __future__ import annotations
+
+import struct
+import zlib
+
+import numpy as np
+import pytest
+from numpy.typing import NDArray
+
+from shedbim.geometry.placements import placement
+from shedbim.model.bars import Bar
+from shedbim.model.roles import Role
+from shedbim.model.shed import Assemblies, Grid, Part, Pieces, ProjectInfo, Shed
+from shedbim.sections.profiles import Flat, Pipe
+from shedbim.sections.section import Profile, Section
+from shedbim.writers.palette import PALETTE
+from shedbim.writers.pictures.meshes import bar_mesh
+from shedbim.writers.pictures.picture import picture
+from shedbim.writers.pictures.png import png
+from shedbim.writers.pictures.projection import View, box_corners, fitted
+from shedbim.writers.pictures.raster import Canvas
+from shedbim.writers.pictures.views import VIEWS, ViewError, render_view, selected
+
+FRONT = View((0.0, 1.0, 0.0))
+Pixels = NDArray[np.uint8]
+#: One piece: key, role, profile, start, end and the way its z axis leans.
+Stick = tuple[str, Role, Profile, tuple[float, ...], tuple[float, ...], tuple[float, ...]]
+
+
+def decoded(data: bytes) -> Pixels:
+    """Read a PNG (8-bit truecolour, no filters) by the letter of ISO/IEC 15948, check sums included."""
+    assert data[:8] == bytes([137, 80, 78, 71, 13, 10, 26, 10])
+    chunks, at = [], 8
+    while at < len(data):
+        (length,) = struct.unpack(">I", data[at : at + 4])
+        kind, body = data[at + 4 : at + 8], data[at + 8 : at + 8 + length]
+        (check,) = struct.unpack(">I", data[at + 8 + length : at + 12 + length])
+        assert check == zlib.crc32(kind + body)
+        chunks.append((kind, body))
+        at += 12 + length
+    assert [kind for kind, _ in chunks] == [b"IHDR", b"IDAT", b"IEND"]
+    width, height, *rest = struct.unpack(">IIBBBBB", chunks[0][1])
+    assert rest == [8, 2, 0, 0, 0]
+    rows = np.frombuffer(zlib.decompress(chunks[1][1]), np.uint8).reshape(height, 1 + 3 * width)
+    assert not rows[:, 0].any()
+    return rows[:, 1:].reshape(height, width, 3)
+
+
+def scene(*sticks: Stick) -> Shed:
+    parts, placements = [], []
+    for index, (_, role, profile, start, end, up) in enumerate(sticks):
+        name = f"section {index}"
+        length = float(np.linalg.norm(np.subtract(end, start)))
+        parts.append(
+            Part(f"{role.prefix}{index}", role, Bar(Section(name, name, profile, "test"), length), "S355", "")
+        )
+        placements.append(placement(start, np.subtract(end, start), up))
+    n = len(sticks)
+    pieces = Pieces(
+        tuple(s[0] for s in sticks), np.arange(n), np.array(placements).reshape(n, 3, 4), np.full(n, -1)
+    )
+    none = np.zeros(0, np.int64)
+    return Shed(
+        project=ProjectInfo("p", "test", "1", "P01"),
+        georeference=None,
+        grid=Grid(("A", "B"), (0.0, 9000.0), ("1", "2", "3"), (0.0, 5000.0, 12000.0)),
+        parts=tuple(parts),
+        pieces=pieces,
+        assembly_types=(),
+        assemblies=Assemblies((), none, np.zeros((0, 3, 4)), none),
+        joints=(),
+    )
+
+
+def block(key: str, role: Role, x: float, y: float, size: float) -> Stick:
+    """A cube with its least corner at (x, y, 0)."""
+    half = size / 2
+    return key, role, Flat(size, size), (x, y + half, half), (x + size, y + half, half), (0.0, 0.0, 1.0)
+
+
+def hue_of(pixels: Pixels, role: Role) -> NDArray[np.bool_]:
+    """Where a picture shows a role's colour, lit one way or another and unmixed with others."""
+    colour = np.array(PALETTE[role], float)
+    shade = pixels.astype(float) @ colour / (colour @ colour)
+    far = np.abs(pixels - shade[..., None] * colour).max(axis=-1)
+    shown: NDArray[np.bool_] = (far <= 1.0) & (shade > 0.5) & (shade <= 1.01)
+    return shown
+
+
+def test_png_holds_the_pixels_it_was_given() -> None:
+    pixels = np.random.default_rng(3).integers(0, 256, (5, 7, 3), np.uint8)
+    assert np.array_equal(decoded(png(pixels)), pixels)
+
+
+def test_the_nearer_of_two_blocks_hides_the_farther_whatever_their_order() -> None:
+    near = block("near", Role.COLUMN, 100, 0, 100)
+    far = block("far", Role.PURLIN, 0, 700, 300)
+    pictures = [
+        decoded(picture(scene(*order), FRONT, width=300, height=200)) for order in ((near, far), (far, near))
+    ]
+    assert np.array_equal(pictures[0], pictures[1])
+    scale = 200 * 0.92 / 300  # pixels per mm: the height is what binds
+    left, bottom = 150 - 150 * scale, 100 + 150 * scale
+    near_at = round(bottom - 50 * scale), round(left + 150 * scale)
+    far_at = round(bottom - 200 * scale), round(left + 150 * scale)
+    assert hue_of(pictures[0], Role.COLUMN)[near_at]
+    assert hue_of(pictures[0], Role.PURLIN)[far_at]
+    # Areas: the near block shows its whole face, the far one what is left; edges take a pixel each.
+    assert hue_of(pictures[0], Role.COLUMN).sum() == pytest.approx((100 * scale) ** 2, rel=0.08)
+    assert hue_of(pictures[0], Role.PURLIN).sum() == pytest.approx((300**2 - 100**2) * scale**2, rel=0.05)
+
+
+def test_what_lies_wholly_behind_leaves_no_trace_of_face_or_edge() -> None:
+    front, hidden = block("front", Role.COLUMN, 0, 0, 300), block("hidden", Role.PURLIN, 80, 400, 120)
+    alone = picture(scene(front), FRONT, width=300, height=200)
+    assert picture(scene(front, hidden), FRONT, width=300, height=200) == alone
+    turned = picture(scene(front, hidden), View((0.0, -1.0, 0.0)), width=300, height=200)
+    assert hue_of(decoded(turned), Role.PURLIN).any()
+
+
+def test_edges_are_dark_lines_round_a_face_and_nowhere_on_it() -> None:
+    shed = scene(block("a", Role.PURLIN, 0, 0, 300))
+    row = decoded(picture(shed, FRONT, width=300, height=200))[100].astype(int).sum(axis=1)
+    half = 150 * 200 * 0.92 / 300
+    left, right = round(150 - half), round(150 + half)
+    # The face is even. Half a pixel of edge darkens the last pixel on the face at the left, and at the
+    # right the first beyond it, which without the edge would be half face and half white or lighter.
+    assert np.ptp(row[left + 1 : right]) == 0
+    assert row[left] < 0.8 * row[150]
+    assert row[right] < 0.8 * (row[150] + 765) / 2
+    assert (row[:left] == 765).all()
+    assert (row[right + 1 :] == 765).all()
+
+
+def test_as_many_pieces_are_seen_as_are_drawn_and_only_the_chosen() -> None:
+    blocks = [block(f"b{i}", Role.COLUMN, x, 0, 100) for i, x in enumerate((0.0, 250.0, 620.0, 1000.0))]
+    shed = scene(*blocks)
+
+    def seen(pieces: list[int] | None) -> int:
+        chosen = None if pieces is None else np.array(pieces)
+        pixels = decoded(picture(shed, FRONT, pieces=chosen, width=400, height=100))
+        columns = (pixels < 255).any(axis=(0, 2)).astype(int)
+        return int((np.diff(columns, prepend=0) == 1).sum())
+
+    assert seen(None) == 4
+    assert seen([0, 2, 3]) == 3
+    assert seen([]) == 0
+
+
+def test_a_sheet_thinner_than_a_pixel_is_drawn_without_gaps() -> None:
+    rod = ("rod", Role.ROOF_BRACE, Pipe(20.0, 2.0), (0.0, 0.0, 0.0), (30000.0, 0.0, 11000.0), (0.0, 1.0, 0.0))
+    pixels = decoded(picture(scene(rod), FRONT, width=400, height=300))
+    # A quarter of a pixel or more in each column has the colour of a roof brace: as much green is missing.
+    green = (255.0 - pixels[:, :, 1]).sum(axis=0)
+    drawn = np.flatnonzero(green)
+    assert drawn[-1] - drawn[0] + 1 == len(drawn) > 360
+    assert green[drawn[1:-1]].min() > 0.25 * (255 - PALETTE[Role.ROOF_BRACE][1])
+
+
+@pytest.mark.parametrize(
+    "direction", [(0.8, 1.0, -0.62), (0.0, 1.0, 0.0), (1.0, 0.0, 0.0), (-0.3, -2.0, 0.9)]
+)
+def test_a_fitted_view_reaches_its_margins_and_not_beyond(direction: tuple[float, float, float]) -> None:
+    corners = box_corners((-300.0, 20.0, 5.0), (30000.0, 61000.0, 9500.0))
+    projected = fitted(View(direction, margin=0.05), corners, 1600, 1000).points(corners)
+    low, high = projected[:, :2].min(axis=0), projected[:, :2].max(axis=0)
+    assert (low >= (80 - 1e-6, 50 - 1e-6)).all()
+    assert (high <= (1520 + 1e-6, 950 + 1e-6)).all()
+    assert min(abs(low[0] - 80), abs(low[1] - 50)) < 1e-6
+    assert low + high == pytest.approx((1600, 1000))
+
+
+def test_front_view_has_x_to_the_right_and_z_up_and_plan_has_y_up() -> None:
+    corners = np.array([[0.0, 0, 0], [1000, 0, 0], [0, 1000, 0], [0, 0, 1000]])
+    front = fitted(selected(scene(), "front")[0], corners, 100, 100).points(corners)
+    assert front[1, 0] > front[0, 0] + 10
+    assert front[3, 1] < front[0, 1] - 10
+    assert front[2, 2] == front[0, 2] + 1000
+    plan = fitted(selected(scene(), "plan")[0], corners, 100, 100).points(corners)
+    assert plan[1, 0] > plan[0, 0] + 10
+    assert plan[2, 1] < plan[0, 1] - 10
+    assert plan[3, 2] == plan[0, 2] - 1000
+
+
+def test_placed_points_are_those_of_the_placement_projected() -> None:
+    motion = placement((100, 200, 300), (1, 2, 3), (0, 0, 1))
+    local = np.array([[10.0, 20, 30], [-4, 5, 6]])
+    projection = fitted(View((0.8, 1.0, -0.6)), local * 50, 640, 480)
+    expected = projection.points(local @ motion[:, :3].T + motion[:, 3])
+    assert projection.placed(motion[None], local)[0] == pytest.approx(expected)
+
+
+def test_two_triangles_fill_a_square_once_and_at_the_right_depth() -> None:
+    square = np.array([[10, 20, 5], [40, 20, 5], [40, 60, 9], [10, 60, 9]], float)
+    canvas = Canvas(50, 80, 0.0, 20.0)
+    canvas.triangles(square[[[0, 1, 2], [0, 2, 3]]], np.full(2, 0x112233, np.uint32))
+    # A level sheet at depth 7 cuts the sloping square where it has fallen to 7: in its middle row.
+    sheet = np.array([[0, 0, 7], [50, 0, 7], [50, 80, 7], [0, 80, 7]], float)
+    canvas.triangles(sheet[[[0, 1, 2], [0, 2, 3]]], np.full(2, 0x445566, np.uint32))
+    pixels = canvas.pixels(0xFFFFFF, 0)
+    expected = np.full((80, 50, 3), (0x44, 0x55, 0x66))
+    expected[20:40, 10:40] = (0x11, 0x22, 0x33)
+    assert np.array_equal(pixels, expected)
+
+
+def test_triangles_partly_outside_are_cut_at_the_border() -> None:
+    canvas = Canvas(30, 20, 0.0, 1.0)
+    canvas.triangles(
+        np.array([[[-500, -500, 0.5], [900, -500, 0.5], [-500, 900, 0.5]]], float), np.zeros(1, np.uint32)
+    )
+    canvas.lines(np.array([[[-1e6, 10.2, 0.1], [1e6, 10.2, 0.1]]]), np.array([0xFF0000], np.uint32))
+    pixels = canvas.pixels(0xFFFFFF, 0)
+    assert (pixels[10] == (255, 0, 0)).all()
+    assert (np.delete(pixels, 10, axis=0) == 0).all()
+
+
+def test_mesh_is_closed_and_faces_outwards_and_a_block_has_its_twelve_edges() -> None:
+    mesh = bar_mesh(Bar(Section("b", "b", Flat(80.0, 30.0), "test"), 500.0), 1.0)
+    a, b, c = np.moveaxis(mesh.points[mesh.triangles], 1, 0)
+    assert np.einsum("ij,ij->", a, np.cross(b, c)) / 6 == pytest.approx(500 * 80 * 30)
+    assert len(mesh.edges) == 12
+    lengths = np.linalg.norm(mesh.points[mesh.edges[:, 0]] - mesh.points[mesh.edges[:, 1]], axis=1)
+    assert sorted(lengths.round(6)) == [30.0] * 4 + [80.0] * 4 + [500.0] * 4
+
+
+def test_a_round_tube_has_edges_at_its_ends_only() -> None:
+    mesh = bar_mesh(Bar(Section("t", "t", Pipe(114.3, 5.0), "test"), 2000.0), 1.0)
+    along = mesh.points[mesh.edges[:, 0], 0] - mesh.points[mesh.edges[:, 1], 0]
+    assert len(mesh.edges) > 20
+    assert not along.any()
+
+
+def test_the_palette_colours_each_role_and_no_two_alike() -> None:
+    assert set(PALETTE) == set(Role)
+    colours = np.array([PALETTE[role] for role in Role], float)
+    apart = np.linalg.norm(colours[:, None] - colours[None], axis=2) + 1e9 * np.eye(len(colours))
+    assert apart.min() > 20
+
+
+UP, OUT = (0.0, 0.0, 1.0), (1.0, 0.0, 0.0)
+#: Three columns on lines of unequal bays, and a rail in each bay.
+HALL = scene(
+    *(
+        (f"{line}/column/A", Role.COLUMN, Flat(200.0, 200.0), (0.0, y, 0.0), (0.0, y, 6000.0), OUT)
+        for line, y in ((1, 0.0), (2, 5000.0), (3, 12000.0))
+    ),
+    *(
+        (f"{bay}/rail/A", Role.SIDE_RAIL, Flat(150.0, 60.0), (-200.0, y, 900.0), (-200.0, end, 900.0), UP)
+        for bay, y, end in (("1-2", 5.0, 4995.0), ("2-3", 5005.0, 11995.0))
+    ),
+)
+
+
+@pytest.mark.parametrize(
+    ("name", "argument", "pieces"),
+    [
+        ("isometric", None, [0, 1, 2, 3, 4]),
+        ("side", "2", [1, 4]),
+        ("plan", "*/rail/*", [3, 4]),
+        ("frame", "2", [1]),
+        ("bay", "1", [0, 1, 3]),
+        ("bay", "2", [1, 2, 4]),
+        ("piece", "1/column/A", [0, 3]),
+        ("place", "0,5000,900", [1, 3, 4]),
+        ("place", "0,5000,5000,50", [1]),
+    ],
+)
+def test_views_choose_their_pieces(name: str, argument: str | None, pieces: list[int]) -> None:
+    assert selected(HALL, name, argument)[1].tolist() == pieces
+
+
+@pytest.mark.parametrize("name", VIEWS)
+def test_every_view_gives_the_same_whole_picture_twice(name: str) -> None:
+    argument = {"frame": "1", "bay": "2", "piece": "1/*", "place": "0,0,900"}.get(name)
+    data = render_view(HALL, name, argument, width=160, height=100)
+    pixels = decoded(data)
+    assert pixels.shape == (100, 160, 3)
+    assert 40 < (pixels < 250).any(axis=2).sum() < 0.9 * 16000
+    assert render_view(HALL, name, argument, width=160, height=100) == data
+
+
+@pytest.mark.parametrize(
+    ("name", "argument", "told"),
+    [
+        ("top", None, "isometric, back"),
+        ("frame", "7", "lines: 1, 2, 3"),
+        ("frame", None, "lines: 1, 2, 3"),
+        ("bay", "3", "begin at 1, 2"),
+        ("piece", "2/colum/A", "nearest: 2/column/A"),
+        ("piece", None, "needs a key"),
+        ("place", "1,2", "X,Y,Z,REACH"),
+        ("place", "1,2,nan", "X,Y,Z,REACH"),
+        ("place", "0,0,0,-5", "X,Y,Z,REACH"),
+    ],
+)
+def test_what_does_not_exist_is_answered_with_what_does(name: str, argument: str | None, told: str) -> None:
+    with pytest.raises(ViewError, match=told):
+        render_view(HALL, name, argument)
