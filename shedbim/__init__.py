@@ -2,10 +2,10 @@
 
 The stages, one function each::
 
-    description = shedbim.read("barn.yaml")              # or DescriptionError with every fault
+    description = shedbim.read("store.yaml")              # or DescriptionError with every fault
     shed = shedbim.expand_description(description)       # parts, pieces, assemblies, joints
-    shedbim.write_schedules(shed, "outputs/barn")        # or write_model, write_summary, write_outputs
-    result = shedbim.build("barn.yaml", "outputs/barn")  # all of it
+    shedbim.write_schedules(shed, "outputs/store")        # or write_model, write_summary, write_outputs
+    result = shedbim.build("store.yaml", "outputs/store")  # all of it
 
 Nothing is imported before it is used, so that ``import shedbim`` is light.
 """

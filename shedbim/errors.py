@@ -37,7 +37,7 @@ class Fault:
     def __str__(self) -> str:
         """One paragraph: place, field, what is wrong, what was given, what is allowed, near names."""
         place = f"{self.file}:{self.line}:{self.column}" if self.line else self.file
-        text = f"{place}: {self.field}: {self.message}" if self.field else f"{place}: {self.message}"
+        text = ": ".join(part for part in (place, self.field, self.message) if part)
         if self.given:
             text += f"\n    given:   {self.given}"
         if self.allowed:
@@ -58,7 +58,7 @@ class DescriptionError(ShedbimError):
 
 
 class UnknownSection(ShedbimError):
-    """Raised when a designation is not in the catalogue; carries the nearest ones and, if known, the reason."""
+    """Raised when a designation is not in the catalogue; carries the nearest ones and any reason."""
 
     exit_code = 2
 

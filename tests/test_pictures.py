@@ -13,11 +13,11 @@ from shedbim.geometry.placements import placement
 from shedbim.model.bars import Bar
 from shedbim.model.roles import Role
 from shedbim.model.shed import Assemblies, Grid, Part, Pieces, ProjectInfo, Shed
-from shedbim.sections.profiles import Flat, Pipe
+from shedbim.sections.profiles import Flat, LippedZ, Pipe, Round
 from shedbim.sections.section import Profile, Section
 from shedbim.writers.palette import PALETTE
 from shedbim.writers.pictures.meshes import bar_mesh
-from shedbim.writers.pictures.picture import picture
+from shedbim.writers.pictures.picture import part_mesh, picture
 from shedbim.writers.pictures.png import png
 from shedbim.writers.pictures.projection import View, box_corners, fitted
 from shedbim.writers.pictures.raster import Canvas
@@ -149,8 +149,9 @@ def test_as_many_pieces_are_seen_as_are_drawn_and_only_the_chosen() -> None:
     assert seen([]) == 0
 
 
-def test_a_sheet_thinner_than_a_pixel_is_drawn_without_gaps() -> None:
-    rod = ("rod", Role.ROOF_BRACE, Pipe(20.0, 2.0), (0.0, 0.0, 0.0), (30000.0, 0.0, 11000.0), (0.0, 1.0, 0.0))
+@pytest.mark.parametrize("profile", [Round(16.0), Pipe(20.0, 2.0), LippedZ(200.0, 75.0, 20.0, 2.0, 4.0)])
+def test_a_bar_thinner_than_a_pixel_is_drawn_without_gaps(profile: Profile) -> None:
+    rod = ("rod", Role.ROOF_BRACE, profile, (0.0, 0.0, 0.0), (30000.0, 0.0, 11000.0), (0.0, 1.0, 0.0))
     pixels = decoded(picture(scene(rod), FRONT, width=400, height=300))
     # A quarter of a pixel or more in each column has the colour of a roof brace: as much green is missing.
     green = (255.0 - pixels[:, :, 1]).sum(axis=0)
@@ -225,8 +226,9 @@ def test_mesh_is_closed_and_faces_outwards_and_a_block_has_its_twelve_edges() ->
     assert sorted(lengths.round(6)) == [30.0] * 4 + [80.0] * 4 + [500.0] * 4
 
 
-def test_a_round_tube_has_edges_at_its_ends_only() -> None:
-    mesh = bar_mesh(Bar(Section("t", "t", Pipe(114.3, 5.0), "test"), 2000.0), 1.0)
+@pytest.mark.parametrize("profile", [Pipe(114.3, 5.0), Pipe(20.0, 2.0), Round(12.0)])
+def test_a_round_bar_has_edges_at_its_ends_only(profile: Profile) -> None:
+    mesh = part_mesh(Part("T1", Role.TIE, Bar(Section("t", "t", profile, "test"), 2000.0), "S355", ""))
     along = mesh.points[mesh.edges[:, 0], 0] - mesh.points[mesh.edges[:, 1], 0]
     assert len(mesh.edges) > 20
     assert not along.any()

@@ -6,6 +6,7 @@ import sys
 from collections.abc import Iterator
 from datetime import UTC, datetime
 from pathlib import Path
+from textwrap import wrap
 
 from shedbim.cli.speech import complain, say, stage_line
 from shedbim.cli.tables import show_json
@@ -16,6 +17,8 @@ from shedbim.writers.schedules.tables import by_role
 from shedbim.writers.summary import summary
 
 __all__ = ["report", "run"]
+
+_WIDTH = 100  # characters of a line of the report
 
 
 def run(
@@ -36,7 +39,7 @@ def run(
     Raises:
         ShedbimError: as ``pipeline.build``.
     """
-    watched = not quiet and not as_json and sys.stderr.isatty()
+    watched = not quiet and not as_json and _watched()
     result = build(
         file,
         out,
@@ -54,6 +57,11 @@ def run(
     if not quiet:
         for warning in result.description.warnings:
             complain(f"Warning: {warning}")
+
+
+def _watched() -> bool:
+    """Whether a person may be looking on."""
+    return sys.stderr.isatty()
 
 
 def report(result: BuildResult) -> Iterator[str]:
@@ -82,7 +90,7 @@ def report(result: BuildResult) -> Iterator[str]:
 def _file_lines(result: BuildResult) -> list[str]:
     meanings = {row.name: row.meaning for row in OUTPUTS}
     return [
-        f"{path.name:<16}{path.stat().st_size / 1000:>10,.1f} kB  {meanings[name]}"
+        f"{path.name:<15}{path.stat().st_size / 1000:>10,.1f} kB  {meanings[name]}"
         for name, path in result.files.items()
     ]
 
@@ -92,4 +100,5 @@ def _listed(heading: str, lines: list[str] | tuple[str, ...]) -> Iterator[str]:
     if lines:
         yield ""
         yield heading
-        yield from (f"  {line}" for line in lines)
+        for line in lines:
+            yield from wrap(line, _WIDTH, initial_indent="  ", subsequent_indent="    ")

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import asdict
+from itertools import takewhile
 from pathlib import Path
 from uuid import uuid4
 
@@ -12,27 +13,32 @@ from shedbim.description.listing import all_fields
 from shedbim.description.presets import new_description, preset_names, preset_text
 from shedbim.description.schema import json_schema
 from shedbim.errors import DescriptionError, Fault
+from shedbim.fields import nearest
 from shedbim.saving import save_new
 
 __all__ = ["show_fields", "show_presets", "show_schema", "write_new"]
 
 
 def show_fields(start: str, *, as_json: bool) -> None:
-    """Print every field whose path is ``start`` or lies under it; all for an empty one.
+    """Print every field, with its default, whose path is ``start`` or lies under it; all for an empty one.
 
     Raises:
         DescriptionError: when there is no such field.
     """
-    rows = [row for row in all_fields() if not start or f"{row.path}.".startswith(f"{start}.")]
+    every = all_fields()
+    rows = [row for row in every if not start or f"{row.path}.".startswith(f"{start}.")]
     if not rows:
-        raise DescriptionError([Fault("there is no such field; `shedbim fields` lists all", field=start)])
+        known = {".".join(row.path.split(".")[:depth]) for row in every for depth in range(1, 5)}
+        raise DescriptionError(
+            [Fault("there is no such field", field=start, nearest=nearest(start, sorted(known)))]
+        )
     if as_json:
         show_json({"fields": [asdict(row) for row in rows]})
         return
-    show_table(
-        ("field", "only with", "allowed", "when left out", "what it is"),
-        [(row.path, row.condition, row.allowed, row.default or "must be given", row.explanation) for row in rows],
-    )
+    for row in rows:
+        say(f"{row.path}: {row.default or '(must be given)'}")
+        say(f"    {row.explanation}" + (f"; only with {row.condition}" if row.condition else ""))
+        say(f"    allowed: {row.allowed}")
 
 
 def show_schema() -> None:
@@ -41,7 +47,7 @@ def show_schema() -> None:
 
 
 def show_presets(*, as_json: bool) -> None:
-    """Print the names of the presets, each with what the first comment in it says."""
+    """Print the names of the presets, each with the first sentence in it."""
     rows = [(name, _first_comment(preset_text(name))) for name in preset_names()]
     if as_json:
         show_json({"presets": [{"name": name, "meaning": meaning} for name, meaning in rows]})
@@ -62,6 +68,7 @@ def write_new(file: Path, preset: str) -> None:
 
 
 def _first_comment(text: str) -> str:
-    """The first comment of a description, without its signs."""
-    first = next((line for line in text.splitlines() if line.startswith("#")), "")
-    return first.lstrip("# ").strip()
+    """The first sentence of the comment that a description begins with."""
+    comment = takewhile(lambda line: line.startswith("#"), text.splitlines())
+    words = " ".join(line.lstrip("# ").strip() for line in comment)
+    return words.split(". ")[0].removesuffix(".")

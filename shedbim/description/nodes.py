@@ -113,7 +113,7 @@ def node_tree(text: str, file: str) -> Tree:
         line, column = (mark.line + 1, mark.column + 1) if mark else (0, 0)
         raise builder.stop(f"not readable as YAML: {_plain(error)}", line, column) from None
     except (YAMLError, ValueError, OverflowError) as error:
-        raise builder.stop(f"not readable as YAML: {printable(str(error))}", 0, 0) from None
+        raise builder.stop(f"not readable as YAML from here on: {printable(str(error))}", *builder.last) from None
     if builder.root is None:
         raise builder.stop("the text is empty", 0, 0)
     return Tree(builder.root, builder.faults)
@@ -123,6 +123,9 @@ def _plain(error: MarkedYAMLError) -> str:
     """The parser's own words on one line."""
     words = [part.strip() for part in (error.context, error.problem) if part]
     return printable(", ".join(" ".join(part.split()) for part in words))
+
+
+_NodeEvent = ScalarEvent | AliasEvent | MappingStartEvent | SequenceStartEvent
 
 
 class _Key(NamedTuple):
@@ -140,16 +143,18 @@ class _Builder:
         self.faults: list[Fault] = []
         self._open: list[Node] = []
         self._keys: list[_Key | None] = []
+        self.last = (0, 0)
         self._count = 0
         self._documents = 0
 
     def take(self, event: Event) -> None:
         """Takes the next event."""
+        self.last = _place(event)
         if isinstance(event, DocumentStartEvent):
             self._document(event)
         elif self._documents > 1:
             return
-        elif isinstance(event, ScalarEvent | AliasEvent | MappingStartEvent | SequenceStartEvent):
+        elif isinstance(event, _NodeEvent):
             self._count += 1
             line, column = _place(event)
             if self._count > MOST_NODES:
@@ -171,7 +176,7 @@ class _Builder:
                 "a directive other than %YAML 1.2", line, column, allowed="YAML 1.2 without directives"
             )
 
-    def _begin(self, event: Event, line: int, column: int) -> None:
+    def _begin(self, event: _NodeEvent, line: int, column: int) -> None:
         """A new key or value."""
         parent = self._open[-1] if self._open else None
         is_key = parent is not None and parent.fields is not None and self._keys[-1] is None
@@ -205,7 +210,7 @@ class _Builder:
         else:
             fields[key.name] = node
 
-    def _node(self, event: Event, line: int, column: int) -> Node:
+    def _node(self, event: _NodeEvent, line: int, column: int) -> Node:
         """The node of an event, without its place in the tree."""
         node = Node(line, column, key_line=line, key_column=column)
         if isinstance(event, MappingStartEvent):
@@ -219,16 +224,15 @@ class _Builder:
         node.broken = isinstance(event, AliasEvent)
         return node
 
-    def _refuse_references(self, event: Event, line: int, column: int) -> None:
+    def _refuse_references(self, event: _NodeEvent, line: int, column: int) -> None:
         """Notes anchors, aliases and tags."""
         if isinstance(event, AliasEvent):
             self._note("an alias", line, column, given=f"*{event.anchor}", allowed="each value written out")
             return
-        if getattr(event, "anchor", None):
+        if event.anchor:
             self._note("an anchor", line, column, given=f"&{event.anchor}", allowed="each value written out")
-        tag = getattr(event, "tag", None)
-        if tag:
-            self._note("a tag", line, column, given=str(tag), allowed="plain values")
+        if event.tag:
+            self._note("a tag", line, column, given=str(event.tag), allowed="plain values")
 
     def _note(self, message: str, line: int, column: int, *, given: str = "", allowed: str = "") -> None:
         if len(self.faults) < _MOST_FAULTS:

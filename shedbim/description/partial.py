@@ -3,19 +3,16 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from functools import lru_cache
-from typing import Annotated, Any, get_args
-
-from pydantic import TypeAdapter, ValidationError
+from typing import Any, get_args
 
 from shedbim.description.models import Description
 from shedbim.description.paths import target
-from shedbim.fields import Kind, OneOf, Options
+from shedbim.fields import FieldError, Kind, OneOf, Options
 
 __all__ = ["readable_part"]
 
 
-class _Nothing(Exception):
+class _UnreadableError(Exception):
     """The value of a field cannot be read."""
 
 
@@ -33,7 +30,7 @@ def _group(group: type[Options], value: Mapping[Any, Any]) -> Options:
         given = value.get(name, None if field.is_required() else field.default)
         try:
             found[name] = _value(target(field), given, field.annotation)
-        except _Nothing:
+        except _UnreadableError:
             continue
     part = group.model_construct(**found)
     for name in set(part.__dict__) - set(found):
@@ -42,26 +39,21 @@ def _group(group: type[Options], value: Mapping[Any, Any]) -> Options:
 
 
 def _value(here: Kind | OneOf | type[Options] | None, given: object, annotation: object) -> object:
-    """The value of one field; raises _Nothing."""
+    """The value of one field; raises _UnreadableError."""
     if given is None and type(None) in get_args(annotation):
         return None
     if here is None:
         return given
     if isinstance(here, Kind):
         try:
-            return _adapter(here).validate_python(given)
-        except ValidationError:
-            raise _Nothing from None
+            return here.read(given)
+        except FieldError:
+            raise _UnreadableError from None
     if not isinstance(given, Mapping):
-        raise _Nothing
+        raise _UnreadableError
     if isinstance(here, OneOf):
         kind = here.kinds.get(str(given.get(here.by)))
         if kind is None:
-            raise _Nothing
+            raise _UnreadableError
         return _group(kind, given)
     return _group(here, given)
-
-
-@lru_cache(maxsize=256)
-def _adapter(kind: Kind) -> TypeAdapter[Any]:
-    return TypeAdapter(Annotated[object, kind])

@@ -6,7 +6,7 @@ from pathlib import Path
 
 from pydantic import ValidationError
 
-from shedbim.description.faults import capped, model_faults, placed
+from shedbim.description.faults import Source, capped, model_faults
 from shedbim.description.models import Description
 from shedbim.description.nodes import node_tree
 from shedbim.description.partial import readable_part
@@ -31,18 +31,18 @@ def read_text(text: str, file: str = "<text>") -> Description:
     Raises DescriptionError with all faults, each with its place; nothing else for whatever the text holds.
     """
     tree = node_tree(checked_text(text, file), file)
-    faults = list(tree.faults)
+    source, faults = Source(tree.root, file), list(tree.faults)
     description: Description | None = None
     value = tree.root.value
     try:
         description = Description.model_validate(value)
         broken = broken_rules(description)
     except ValidationError as error:
-        faults += model_faults(error, tree, file)
+        faults += model_faults(error, source)
         broken = broken_rules(readable_part(value), partly=True)
     for rule in broken:
         path = rule.field.split(".")
-        faults.append(placed(rule.message, path, tree.root, file, given=rule.given, allowed=rule.allowed))
+        faults.append(source.fault(rule.message, path, given=rule.given, allowed=rule.allowed))
     if faults or description is None:
         raise DescriptionError(capped(faults, file))
     return description

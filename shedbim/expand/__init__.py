@@ -4,12 +4,14 @@ from __future__ import annotations
 
 import numpy as np
 
+from shedbim.description.listing import defaults_taken
 from shedbim.description.models import Description
 from shedbim.expand.assembling import assemble
 from shedbim.expand.bracing import bracing
-from shedbim.expand.frames import gable_frame, inner_frame, roof_lifts
+from shedbim.expand.frames import end_wall_face, gable_frame, inner_frame, roof_lifts
 from shedbim.expand.kits import Run
 from shedbim.expand.layout import lay_out
+from shedbim.expand.notes import notes
 from shedbim.expand.purlins import purlins
 from shedbim.expand.rails import gable_rails, rail_depth, side_rails
 from shedbim.model.shed import Georeference, ProjectInfo, Shed
@@ -26,7 +28,7 @@ def expand(description: Description) -> Shed:
     ends = (gable_frame(description, layout, outward=-1), gable_frame(description, layout, outward=1))
     numbers, y = layout.grid.numbers, np.array(layout.grid.y)
     # Purlins reach to the outer face of the gable rails, so that roof and wall sheets meet.
-    verge = description.frames.columns.section.width / 2 + rail_depth(description)
+    verge = end_wall_face(description, ends[0]) + rail_depth(description)
     runs = [
         Run(ends[0].kit, numbers[:1], y[:1]),
         Run(inner.kit, numbers[1:-1], y[1:-1]),
@@ -55,4 +57,6 @@ def expand(description: Description) -> Shed:
         assembly_types=made.assembly_types,
         assemblies=made.assemblies,
         joints=made.joints,
+        defaults=defaults_taken(description),
+        notes=notes(description),
     )

@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.expand.clearances import CROSSING_GAP, GUSSET
+from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import Meeting, Member, Meets
 from shedbim.expand.sticks import stick, stop_before
 from shedbim.model.joints import At, JointKind
@@ -130,6 +131,12 @@ def _brace(
     """One brace between two ends, its axis ``lift`` off their plane along ``up``."""
     a, b = start.point + up * lift, end.point + up * lift
     p, q = stop_before(steel.section, a, b, up, start.planes, end.planes)
+    if float((q - p) @ (b - a)) < steel.section.height * float(np.linalg.norm(b - a)):
+        field = "bracing.roof" if steel.role is Role.ROOF_BRACE else "bracing.walls"
+        raise impossible(
+            field, f"no room for a {steel.role.word} in its panel", given=steel.section.designation,
+            allowed="a smaller section, or fewer and larger panels",
+        )  # fmt: skip
     bar, place = stick(steel.section, p, q, up)
     meetings = [
         Meeting(JointKind.BRACE_GUSSET, (corner.carrier, Meets(name, at)), corner.point)

@@ -15,6 +15,7 @@ from shedbim.expand.bays import Bay, runs_of_bays
 from shedbim.expand.braces import BraceEnd, Panel, brace_reach, braces
 from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, STRUT_END_GAP
 from shedbim.expand.frames import Frame, post_places
+from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Member, Meets, Run
 from shedbim.expand.layout import Layout, Pitched
 from shedbim.expand.set_out import even_places
@@ -117,10 +118,14 @@ class _Maker:
     def depth(self) -> float:
         """How far the plane of the roof bracing lies under the top line, mm.
 
-        At half the depth of the shallower steel at the bay's lines, and no brace above its top.
+        At half the depth of the shallower steel at the bay's lines, and no brace or strut above its top.
         """
         carriers = (self.frames.first.carrier, self.frames.second.carrier)
-        return max(min(c.height for c in carriers) / 2, brace_reach(self.options.roof.section))
+        return max(
+            min(c.height for c in carriers) / 2,
+            brace_reach(self.options.roof.section),
+            self.options.struts.section.height / 2,
+        )
 
     # Struts
 
@@ -131,6 +136,8 @@ class _Maker:
         (first, stop_first), (second, stop_second) = carriers
         a = at + _LENGTHWISE * stop_first
         b = at + _LENGTHWISE * (self.length - stop_second)
+        if b[1] - a[1] < section.height:
+            raise impossible("building.bays", f"no room for a {role.word} between two frames")
         bar, place = stick(section, a, b, _UP)
         self.members.append(Member(name, role, bar, place, grade, self.finish))
         kind = JointKind.TIE_END if role is Role.TIE else JointKind.STRUT_END
@@ -156,12 +163,14 @@ class _Maker:
         return min(in_plane, under)
 
     def eaves_struts(self) -> None:
-        """A strut at every column line: at the eaves, and in valleys."""
+        """A strut at every column line: at the eaves, in valleys, and where a slope runs on over columns."""
         options = self.options.eaves_strut
         stop = self.column_stop(options.section)
         last = len(self.layout.grid.x) - 1
         for column, letter in enumerate(self.layout.grid.letters):
-            role = Role.EAVES_STRUT if column in (0, last) else Role.VALLEY_STRUT
+            role = Role.EAVES_STRUT if column in (0, last) else Role.STRUT
+            if self.layout.is_valley(column):
+                role = Role.VALLEY_STRUT
             at = np.array([self.layout.grid.x[column], 0.0, self.eaves_level(column)])
             carrier = (f"column/{letter}", stop)
             self.strut(f"{role.word}/{letter}", role, options.section, options.grade, at, (carrier, carrier))

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -41,7 +42,7 @@ class Course:
     outward: Array
     run: Array
 
-    @property
+    @cached_property
     def forwards(self) -> bool:
         """Whether the bar's own x axis runs with the line."""
         return bool(np.cross(self.open_to, self.outward) @ self.run > 0)

@@ -21,7 +21,7 @@ from shedbim.model.roles import Role
 from shedbim.roofs.slope import Slope
 from shedbim.sections.section import Section
 
-__all__ = ["Frame", "Upright", "gable_frame", "inner_frame", "post_places", "roof_lifts"]
+__all__ = ["Frame", "Upright", "end_wall_face", "gable_frame", "inner_frame", "post_places", "roof_lifts"]
 
 Array = NDArray[np.float64]
 _UP = (0.0, 0.0, 1.0)
@@ -107,8 +107,14 @@ def post_places(description: Description, layout: Layout) -> tuple[float, ...]:
     return tuple(x for x in sorted(places) if min(abs(x - line) for line in layout.grid.x) > 1.0)
 
 
+def end_wall_face(description: Description, frame: Frame) -> float:
+    """Give how far the steel of an end frame stands out from its line, mm: columns, rafters and posts."""
+    return max(description.frames.columns.section.width, frame.carrier.width) / 2
+
+
 def _columns(description: Description, layout: Layout) -> tuple[list[Member], list[Meeting]]:
     options: Columns = description.frames.columns
+    base = JointKind.FIXED_BASE if options.base == "fixed" else JointKind.PINNED_BASE
     members, meetings = [], []
     for number, (letter, x) in enumerate(zip(layout.grid.letters, layout.grid.x, strict=True)):
         met = layout.slopes_at_column(number)
@@ -121,7 +127,7 @@ def _columns(description: Description, layout: Layout) -> tuple[list[Member], li
         name = f"column/{letter}"
         members.append(Member(name, Role.COLUMN, bar, place, options.grade, description.finish.frames))
         meetings.append(
-            Meeting(JointKind.BASE, (Meets(name, At.START),), np.array([x, 0.0, layout.base]))
+            Meeting(base, (Meets(name, At.START),), np.array([x, 0.0, layout.base]))
         )
         meetings.append(Meeting(JointKind.FREE, (Meets(name, At.END),), np.array([x, 0.0, top])))
     return members, meetings
@@ -203,7 +209,7 @@ def _post(
     """A gable post, its outer face flush with the columns', its head short of the steel above."""
     gables = description.frames.gables
     section = gables.posts
-    y = outward * (description.frames.columns.section.width / 2 - section.height / 2)
+    y = outward * (end_wall_face(description, frame) - section.height / 2)
     over = [p for p in layout.slopes if p.slope.x0 - 1.0 <= x <= p.slope.x1 + 1.0]
     steel = [_underside_line(frame, layout.slopes.index(p), p) for p in over]
     level = min(z + (x - x0) * rise for x0, z, rise in steel) - POST_HEAD_GAP

@@ -18,7 +18,7 @@ from shedbim.expand.cold_formed import (
     sag_bar,
     sag_bar_places,
 )
-from shedbim.expand.frames import Frame, Upright
+from shedbim.expand.frames import Frame, Upright, end_wall_face
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Member, Meets, Run
 from shedbim.expand.layout import Layout
 from shedbim.expand.set_out import even_places, sag_bar_rows
@@ -40,8 +40,10 @@ def rail_depth(description: Description) -> float:
 def _levels(description: Description, layout: Layout, column: int) -> list[float]:
     """Levels of the rails on the side wall of a column line."""
     options = description.rails
-    first = layout.base + options.base_offset
-    return even_places(first, layout.column_top(column) - options.eaves_offset, options.spacing)
+    half = description.frames.columns.section.height / 2
+    steepest = max(abs(float(s.direction[2] / s.direction[0])) for s in layout.slopes_at_column(column))
+    top = layout.column_top(column) - half * steepest - options.eaves_offset
+    return even_places(layout.base + options.base_offset, top, options.spacing)
 
 
 def side_rails(description: Description, layout: Layout) -> list[Run]:
@@ -113,7 +115,7 @@ def _sag_bars(
 def gable_rails(description: Description, layout: Layout, frame: Frame, *, outward: int) -> Run:
     """Give the rails of one gable wall; ``outward`` is -1 on the first line and +1 on the last."""
     grid, columns, options = layout.grid, description.frames.columns.section, description.rails
-    y = outward * (columns.width / 2 + options.lift + options.section.height / 2)
+    y = outward * (end_wall_face(description, frame) + options.lift + options.section.height / 2)
     corners = [
         Upright(x, layout.column_top(i), f"column/{grid.letters[i]}") for i, x in enumerate(grid.x)
     ]

@@ -11,9 +11,10 @@ from numpy.typing import NDArray
 
 from shedbim.description.roof_systems import TrussRoof
 from shedbim.expand.clearances import END_PLATE, WEB_TO_CHORD_END
+from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import Kit, Meeting, Member, Meets
 from shedbim.expand.sticks import Planes, along, stick
-from shedbim.expand.web_ends import ChordFace, LandedWeb, WebAim, axes_miss, land
+from shedbim.expand.web_ends import ChordFace, LandedWeb, WebAim, axes_miss, fits, land
 from shedbim.geometry.placements import translation
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
@@ -222,6 +223,11 @@ class _Maker:
         groups = (self._groups(aims, _BOTTOM), self._groups(aims, _TOP))
         room = (self.ends[0] + WEB_TO_CHORD_END, self.ends[1] - WEB_TO_CHORD_END)
         landed = land(aims, groups, (room, room), self.ridge_x)
+        if not fits(aims, landed, groups, (room, room)):
+            raise impossible(
+                "frames.roof.panels", "the webs leave no gap for their welds at a node of the truss",
+                given=str(self.options.panels), allowed="fewer panels, more depth or slimmer webs",
+            )  # fmt: skip
         members, names = self._chord_members()
         web_names = self._web_names()
         for aim, at, (role, name) in zip(aims, landed, web_names, strict=True):

@@ -16,11 +16,14 @@ from numpy.typing import NDArray
 
 from shedbim.sections.section import Section
 
-__all__ = ["ChordFace", "LandedWeb", "WebAim", "axes_miss", "land"]
+__all__ = ["ChordFace", "LandedWeb", "WebAim", "axes_miss", "fits", "land"]
 
 Array = NDArray[np.float64]
 _ROUNDS = 60
 _SETTLED = 1e-9  # mm
+_TOE = 0.01  # mm: toes nearer than asked by less than this are as asked
+#: Upward part of the unit vector of the flattest web that can still be cut and welded: 15 degrees.
+_FLATTEST = 0.26
 
 
 @dataclass(frozen=True)
@@ -115,6 +118,31 @@ def land(
         if float(np.abs(at - before).max()) < _SETTLED:
             break
     return [_landed(w, *at[i]) for i, w in enumerate(webs)]
+
+
+def fits(
+    webs: Sequence[WebAim],
+    landed: Sequence[LandedWeb],
+    groups: tuple[Sequence[Sequence[int]], Sequence[Sequence[int]]],
+    chord_ends: tuple[tuple[float, float], tuple[float, float]],
+) -> bool:
+    """Whether all webs run upwards between the chords and their toes keep clear of each other and of chord ends."""
+    if any(web.direction[1] < _FLATTEST for web in landed):
+        return False
+    for chord in (0, 1):
+        toes: list[tuple[float, float, float]] = []  # left toe, right toe, wall
+        for group in groups[chord]:
+            for i in group:
+                place = (landed[i].bottom, landed[i].top)[chord][0]
+                half = _half_footprint(webs[i], landed[i].direction, chord)
+                toes.append((place - half, place + half, webs[i].section.profile.thickness))
+        if toes[0][0] < chord_ends[chord][0] - _TOE or toes[-1][1] > chord_ends[chord][1] + _TOE:
+            return False
+        runs = [webs[i].faces[chord].run for group in groups[chord] for i in group]
+        for (_, right, wall_a), (left, _, wall_b), run in zip(toes, toes[1:], runs, strict=False):
+            if left - right < (wall_a + wall_b) * run - _TOE:
+                return False
+    return True
 
 
 def _landed(web: WebAim, x_bottom: float, x_top: float) -> LandedWeb:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from collections import Counter
 from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
@@ -34,16 +35,26 @@ class ListKind(Kind):
         """The value of a single word that may stand instead of the list, or None."""
         return None
 
+    def read(self, value: object) -> object:
+        """The value from the list, up to its first fault."""
+        if isinstance(value, str) and (found := self.word(value)) is not None:
+            return found
+        return self.whole([self.item(each) for each in self._listed(value)])
+
+    def _listed(self, value: object) -> list[Any]:
+        if not isinstance(value, list | tuple):
+            raise FieldError("a list is wanted here, in square brackets", self.allowed)
+        return list(value)
+
     def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
+        """A validator as ``read``, but with the faults of all items, each at its place."""
         items = core_schema.list_schema(core_schema.no_info_plain_validator_function(self.item))
         whole = core_schema.no_info_after_validator_function(self.whole, items)
 
         def read(value: object, inner: core_schema.ValidatorFunctionWrapHandler) -> object:
             if isinstance(value, str) and (found := self.word(value)) is not None:
                 return found
-            if not isinstance(value, list | tuple):
-                raise FieldError("a list is wanted here, in square brackets", self.allowed)
-            return inner(list(value))
+            return inner(self._listed(value))
 
         return core_schema.no_info_wrap_validator_function(read, whole)
 
@@ -105,11 +116,11 @@ class Labels(ListKind):
 
     def whole(self, items: Sequence[Any]) -> tuple[str, ...]:
         """All labels; none twice."""
-        doubled = sorted({label for label in items if list(items).count(label) > 1})
-        if doubled:
-            raise FieldError(f"labels given twice: {', '.join(doubled[:5])}", self.allowed)
         if not 1 <= len(items) <= self.most:
             raise FieldError(f"{len(items)} labels", self.allowed)
+        doubled = sorted(label for label, count in Counter(items).items() if count > 1)
+        if doubled:
+            raise FieldError(f"labels given twice: {', '.join(doubled[:5])}", self.allowed)
         return tuple(items)
 
     def schema(self) -> dict[str, Any]:

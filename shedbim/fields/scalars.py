@@ -43,7 +43,7 @@ class Quantity(Kind):
         low, high = units.parse(self.low, self.measure), units.parse(self.high, self.measure)
         room = _BOUND_ROOM * max(abs(low), abs(high))
         if not low - room <= found <= high + room:
-            raise FieldError(f"out of bounds", self.allowed)
+            raise FieldError("out of bounds", self.allowed)
         return found
 
     def schema(self) -> dict[str, Any]:

@@ -139,10 +139,14 @@ class Outline:
         return self.outer.length
 
     @cached_property
+    def rim(self) -> Array:
+        """Points (m, 2) of the outer loop, arcs within a micrometre: where extremes are looked for."""
+        return self.outer.polygon(1e-3)
+
+    @cached_property
     def bounds(self) -> tuple[float, float, float, float]:
         """Least y, least z, greatest y, greatest z, mm."""
-        points = self.outer.polygon(1e-3)
-        low, high = points.min(axis=0), points.max(axis=0)
+        low, high = self.rim.min(axis=0), self.rim.max(axis=0)
         return float(low[0]), float(low[1]), float(high[0]), float(high[1])
 
     def polygons(self, chord_error: float) -> list[Array]:

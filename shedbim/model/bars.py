@@ -92,7 +92,7 @@ def bar_on_axis(section: Section, axis_length: float, start: EndCut = SQUARE, en
 
 def _points(outline: Outline, cut: EndCut) -> Array:
     """The points of an outer loop among which a cut reaches its extremes: corners, and where its planes cross."""
-    corners = outline.outer.polygon(_REACH_CHORD_ERROR)
+    corners = outline.rim
     if len(cut.slopes) == 1:
         return corners
     following = np.roll(corners, -1, axis=0)

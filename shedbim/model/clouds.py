@@ -79,7 +79,9 @@ class Cloud:
         second = np.flatnonzero(self.labels == anchors[1])
         if len(second) == 0:
             across = np.eye(3)[np.abs(arms[far]).argmin(axis=1)]
-            return np.array([placement(self.centre, arm, z) for arm, z in zip(arms[far], across, strict=True)])
+            return np.array(
+                [placement(self.centre, arm, z) for arm, z in zip(arms[far], across, strict=True)]
+            )
         axes = arms[far] / reach[far, None]
         off = np.stack([_off(arms[second], axis) for axis in axes])
         merit = np.where(off >= _FAR * off.max(), off + _ALONG * (axes @ arms[second].T), -np.inf)

@@ -25,7 +25,7 @@ from numpy.typing import ArrayLike, NDArray
 from shedbim.geometry.placements import Placements
 from shedbim.model.bars import Bar, EndCut
 from shedbim.sections.section import Section, Symmetry
-from shedbim.tolerance import NOISE, SAME_LENGTH
+from shedbim.tolerance import NOISE, SAME_LENGTH, SOLID_CHORD_ERROR
 
 __all__ = ["Congruence", "Forms", "congruence", "forms", "is_free_to_turn", "ranks", "symmetries"]
 
@@ -183,7 +183,9 @@ def _end_cut(slopes: Array, kind: int) -> EndCut:
 def _half_sizes(section: Section) -> Array:
     """How far the section reaches from its centroid along y and z (2,), mm."""
     low_y, low_z, high_y, high_z = section.outline.bounds
-    return np.array([max(-low_y, high_y), max(-low_z, high_z)])
+    half = np.array([max(-low_y, high_y), max(-low_z, high_z)])
+    # Bounds are read off chords of arcs; a round section must come out equally large both ways.
+    return np.full(2, half.max()) if np.ptp(half) < 2 * SOLID_CHORD_ERROR else half
 
 
 def _rotations(angle: ArrayLike) -> Array:

@@ -44,7 +44,9 @@ def piece_ids(project_id: str, keys: Iterable[str]) -> list[str]:
 def global_ids(project_id: str, names: Sequence[str]) -> list[str]:
     """Give the GlobalId of each name within a project, in order; equal names give equal ids."""
     scope = namespace(project_id).bytes
-    raw = bytearray().join([_PAD + sha1(scope + name.encode("utf-8", "surrogatepass")).digest()[:16] for name in names])
+    raw = bytearray().join(
+        [_PAD + sha1(scope + name.encode("utf-8", "surrogatepass")).digest()[:16] for name in names]
+    )
     raw[8::_BYTES] = raw[8::_BYTES].translate(_VERSION_5)
     raw[10::_BYTES] = raw[10::_BYTES].translate(_VARIANT)
     text = b64encode(raw).translate(_TO_IFC).decode("ascii")

@@ -22,7 +22,8 @@ class At(IntEnum):
 class JointKind(Enum):
     """A kind of meeting: the word people read, and how it will be fastened."""
 
-    BASE = ("column base", "bolted")
+    PINNED_BASE = ("pinned column base", "bolted")
+    FIXED_BASE = ("fixed column base", "bolted")
     POST_BASE = ("gable post base", "bolted")
     POST_HEAD = ("gable post head", "bolted")
     RAFTER_COLUMN = ("rafter to column", "bolted")

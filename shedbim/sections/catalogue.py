@@ -6,13 +6,13 @@ family is read when one of its sections is first asked for, and only that table.
 
 from __future__ import annotations
 
-from functools import lru_cache
+from functools import cache, lru_cache
 
 from shedbim.errors import UnknownSection
 from shedbim.sections import angles, by_dimension, channels, hollow, rolled, us_wide_flange
 from shedbim.sections.designation import LONGEST, folded, parse
 from shedbim.sections.family import Entry, Family, Size
-from shedbim.sections.nearest import distance, likeness, nearest_names, nearest_sizes
+from shedbim.sections.nearest import distance, nearest_names, nearest_sizes
 from shedbim.sections.section import Section
 
 __all__ = ["Family", "designations", "families", "section"]
@@ -64,8 +64,8 @@ def designations(family: Family | str) -> tuple[str, ...]:
 def section(designation: str) -> Section:
     """Give the section of a designation such as ``IPE 300``, ``SHS 100x100x5`` or ``Z 200x75x20x2.5``.
 
-    Case, spaces, ``×`` or ``*`` for ``x`` and trailing zeros do not matter; the section carries the designation
-    as the catalogue spells it, and equal designations give one and the same section.
+    Case, spaces, ``×`` or ``*`` for ``x`` and trailing zeros do not matter; the section carries the
+    designation as the catalogue spells it, and equal designations give one and the same section.
 
     Raises:
         UnknownSection: when there is none, with the nearest ones; also for impossible dimensions, with the
@@ -73,7 +73,9 @@ def section(designation: str) -> Section:
     """
     parsed = parse(designation)
     if parsed is None:
-        raise UnknownSection(designation, _similar(designation), reason="not a family name followed by its dimensions")
+        shown = designation if len(designation) <= LONGEST else f"{designation[:LONGEST]}…"
+        reason = "not a family name followed by its dimensions"
+        raise UnknownSection(shown, _similar(designation), reason=reason)
     name, size = parsed
     family = _BY_NAME.get(name)
     if family is None:
@@ -103,18 +105,17 @@ def _built(family_name: str, size: Size) -> Section:
     if not family.listed:
         return Section(family.designation(size), family.name, family.shape(size), family.standard)
     entry = _index(family_name)[size]
-    source = f"{family.standard}; {entry.source}"
-    return Section(family.designation(size), family.name, family.shape(entry.dimensions), source)
+    return Section(family.designation(size), family.name, family.shape(entry.dimensions), entry.source)
 
 
-@lru_cache(maxsize=None)
+@cache
 def _entries(family_name: str) -> tuple[Entry, ...]:
     """Give the listed sizes of a family; none for one made from dimensions."""
     entries = _BY_NAME[folded(family_name)].entries
     return tuple(entries()) if entries is not None else ()
 
 
-@lru_cache(maxsize=None)
+@cache
 def _index(family_name: str) -> dict[Size, Entry]:
     """Give the entry of every size, and of every other size it is known under."""
     index: dict[Size, Entry] = {}
@@ -125,22 +126,23 @@ def _index(family_name: str) -> dict[Size, Entry]:
 
 
 def _closest(name: str) -> tuple[Family, ...]:
-    """Give the families whose names look most like ``name``."""
-    return tuple(dict.fromkeys(_BY_NAME[near] for near in nearest_names(name, _BY_NAME)))
+    """Give the families whose names look most like ``name``, in the order of the table where equally like."""
+    near = nearest_names(name, _BY_NAME)
+    return tuple(dict.fromkeys(_BY_NAME[folded_name] for folded_name in near))
 
 
 def _across(candidates: tuple[Family, ...], size: Size) -> list[str]:
-    """Give the designations nearest to ``size`` in the candidates; in all listed families where there are none."""
-    found = []
-    for rank, family in enumerate(candidates or _FAMILIES):
-        count = 3 if len(candidates) == 1 else 1
-        sizes = (entry.size for entry in _entries(family.name))
-        for near in nearest_sizes(size, sizes, count):
-            found.append((round(distance(size, near), 9), rank, family.designation(near)))
+    """Give the designations nearest to ``size`` in the candidates, or in all families if there are none."""
+    count = 3 if len(candidates) == 1 else 1
+    found = [
+        (round(distance(size, near), 9), rank, family.designation(near))
+        for rank, family in enumerate(candidates or _FAMILIES)
+        for near in nearest_sizes(size, [entry.size for entry in _entries(family.name)], count)
+    ]
     return [designation for _, _, designation in sorted(found)[:5]]
 
 
 def _similar(text: str) -> list[str]:
-    """Give a few families' examples for a text that is no designation: those that it looks most like."""
-    ranked = sorted(_FAMILIES, key=lambda family: -likeness(text.upper()[:LONGEST], family.example))
-    return [family.example for family in ranked[:3]]
+    """Give an example of each of the three families that a text which is no designation looks most like."""
+    examples = {family.example.upper(): family.example for family in _FAMILIES}
+    return [examples[near] for near in nearest_names(text.upper()[:LONGEST], examples, 3, least=0.0)]

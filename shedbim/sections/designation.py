@@ -13,7 +13,9 @@ LONGEST = 60
 
 _NUMBER = r"-?[0-9]+(?:[.,][0-9]+)?|-?[.,][0-9]+"
 _TIMES = r"\s*[x×*]\s*"
-_DESIGNATION = re.compile(rf"([a-z][a-z\s]*)?((?:{_NUMBER})(?:{_TIMES}(?:{_NUMBER}))*)\s*([a-z]*)", re.IGNORECASE)
+_DESIGNATION = re.compile(
+    rf"([a-z][a-z\s]*)?((?:{_NUMBER})(?:{_TIMES}(?:{_NUMBER}))*)\s*([a-z]*)", re.IGNORECASE
+)
 
 
 def folded(name: str) -> str:

@@ -90,12 +90,21 @@ def read_rows(name: str) -> list[dict[str, str]]:
     return list(csv.DictReader(text.splitlines()))
 
 
-def table_of(name: str, columns: Sequence[str]) -> Callable[[], list[Entry]]:
-    """Give a reader of ``data/<name>.csv``, which has a ``size``, a ``source`` and the named columns in mm."""
+def table_of(name: str, columns: Sequence[str], *, unit: float = 1.0) -> Callable[[], list[Entry]]:
+    """Give a reader of ``data/<name>.csv``.
+
+    Its columns are ``size``, ``other`` (further sizes for the same section), ``source`` and those named,
+    which hold the dimensions in ``unit`` mm.
+    """
 
     def entries() -> list[Entry]:
         return [
-            Entry(sized(row["size"]), tuple(float(row[column]) for column in columns), row["source"])
+            Entry(
+                sized(row["size"]),
+                tuple(float(row[column]) * unit for column in columns),
+                row["source"],
+                tuple(sized(other) for other in row["other"].split()),
+            )
             for row in read_rows(name)
         ]
 

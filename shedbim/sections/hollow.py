@@ -1,4 +1,4 @@
-"""Square, rectangular and circular hollow sections, cold formed (EN 10219-2) and hot finished (EN 10210-2)."""
+"""Hollow sections, square, rectangular and circular: cold formed (EN 10219-2), hot finished (EN 10210-2)."""
 
 from __future__ import annotations
 

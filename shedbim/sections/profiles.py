@@ -105,7 +105,7 @@ class Angle:
 
 @dataclass(frozen=True)
 class Hollow:
-    """A square or rectangular hollow section: depth h, width b, wall t, corner radii outside ro and inside ri."""
+    """A square or rectangular hollow section: depth h, width b, wall t, corner radii outer ro, inner ri."""
 
     h: float
     b: float
@@ -157,7 +157,7 @@ class Pipe:
 
 @dataclass(frozen=True)
 class LippedC:
-    """A cold-formed lipped C: depth h, flange b, lip c, wall t, inside bend radius ri, all outside to outside."""
+    """A cold-formed lipped C: depth h, flange b, lip c, wall t, inside bend radius ri, outside dimensions."""
 
     h: float
     b: float

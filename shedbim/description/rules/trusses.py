@@ -15,7 +15,7 @@ from shedbim.webs import PATTERNS
 
 __all__ = ["RULES"]
 
-#: Angles of web to chord outside these cannot be welded all round (EN 1993-1-8 7.1.2 asks for 30 deg at least;
+#: Angles of web to chord outside these cannot be welded all round (EN 1993-1-8 7.1.2 asks for 30 deg;
 #: the wider bounds leave room for end panels, common practice).
 _FLATTEST, _STEEPEST = 20.0, 75.0
 

@@ -46,7 +46,11 @@ def body(step: StepFile, bar: Bar, profile: str) -> Body:
     result = Body(sweep, "SweptSolid")
     # Notches come last: a clipping takes a sweep or another clipping only.
     for cut, x0, facing in sorted(_cuts(bar), key=lambda each: each[0].notched):
-        result = _notched(step, result, bar, cut, x0, facing) if cut.notched else _clipped(step, result, cut, x0, facing)
+        result = (
+            _notched(step, result, bar, cut, x0, facing)
+            if cut.notched
+            else _clipped(step, result, cut, x0, facing)
+        )
     return result
 
 
@@ -106,11 +110,15 @@ def _notched(step: StepFile, whole: Body, bar: Bar, cut: EndCut, x0: float, faci
             ProfileType=enum("AREA"),
             OuterCurve=step.add("IfcPolyline", Points=listed([*outline, outline[0]])),
         ),
-        Position=axis2placement(step, (np.array([x0, 0.0, 0.0]) - reach * edge).tolist(), edge.tolist(), x.tolist()),
+        Position=axis2placement(
+            step, (np.array([x0, 0.0, 0.0]) - reach * edge).tolist(), edge.tolist(), x.tolist()
+        ),
         ExtrudedDirection=direction(step, 0.0, 0.0, 1.0),
         Depth=metres(2 * reach),
     )
-    item = step.add("IfcBooleanResult", Operator=enum("DIFFERENCE"), FirstOperand=whole.item, SecondOperand=wedge)
+    item = step.add(
+        "IfcBooleanResult", Operator=enum("DIFFERENCE"), FirstOperand=whole.item, SecondOperand=wedge
+    )
     return Body(item, "CSG")
 
 

@@ -79,7 +79,9 @@ def write_units(step: StepFile) -> tuple[str, str]:
         ("FORCEUNIT", "NEWTON", ""), ("PRESSUREUNIT", "PASCAL", ""),
     )  # fmt: skip
     si = {
-        kind: step.share("IfcSIUnit", UnitType=enum(kind), Prefix=enum(prefix) if prefix else "$", Name=enum(name))
+        kind: step.share(
+            "IfcSIUnit", UnitType=enum(kind), Prefix=enum(prefix) if prefix else "$", Name=enum(name)
+        )
         for kind, name, prefix in names
     }
     metre, kilogram = si["LENGTHUNIT"], si["MASSUNIT"]
@@ -96,7 +98,9 @@ def write_units(step: StepFile) -> tuple[str, str]:
 
 def _derived(step: StepFile, kind: str, factors: Sequence[tuple[str, int]]) -> str:
     """Write a unit that is a product of powers of others."""
-    elements = [step.share("IfcDerivedUnitElement", Unit=unit, Exponent=str(power)) for unit, power in factors]
+    elements = [
+        step.share("IfcDerivedUnitElement", Unit=unit, Exponent=str(power)) for unit, power in factors
+    ]
     return step.add("IfcDerivedUnit", Elements=listed(elements), UnitType=enum(kind))
 
 

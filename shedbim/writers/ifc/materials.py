@@ -21,7 +21,9 @@ def material(step: StepFile, grade: str) -> str:
     density = typed("IfcMassDensityMeasure", number(STEEL_DENSITY * 1e9))
     if step.schema.is_first:
         steel = step.add("IfcMaterial", Name=label(grade))
-        step.add("IfcGeneralMaterialProperties", Material=steel, MassDensity=density[density.index("(") + 1 : -1])
+        step.add(
+            "IfcGeneralMaterialProperties", Material=steel, MassDensity=density[density.index("(") + 1 : -1]
+        )
         return steel
     steel = step.add("IfcMaterial", Name=label(grade), Category=quoted("steel"))
     sets = {"Pset_MaterialCommon": one_property(step, "MassDensity", density)}
@@ -49,9 +51,14 @@ def profile_properties(step: StepFile, section: Section, profile: str) -> str:
             ProfileDefinition=profile,
             **given,
         )
-    properties = listed(one_property(step, name, typed(kind, number(value))) for name, (kind, value) in values.items())
+    properties = listed(
+        one_property(step, name, typed(kind, number(value))) for name, (kind, value) in values.items()
+    )
     return step.add(
-        "IfcProfileProperties", Name=quoted("Pset_ProfileMechanical"), Properties=properties, ProfileDefinition=profile
+        "IfcProfileProperties",
+        Name=quoted("Pset_ProfileMechanical"),
+        Properties=properties,
+        ProfileDefinition=profile,
     )
 
 
@@ -59,7 +66,9 @@ def profile_set(step: StepFile, section: Section, grade: str, profile: str, stee
     """Write the profile of a section in a grade (not in IFC2X3, which has none)."""
     name = label(section.designation)
     layer = step.add("IfcMaterialProfile", Name=name, Material=steel, Profile=profile)
-    return step.add("IfcMaterialProfileSet", Name=label(f"{section.designation} {grade}"), MaterialProfiles=f"({layer})")
+    return step.add(
+        "IfcMaterialProfileSet", Name=label(f"{section.designation} {grade}"), MaterialProfiles=f"({layer})"
+    )
 
 
 def profile_usage(step: StepFile, profiles: str) -> str:

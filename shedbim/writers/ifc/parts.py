@@ -61,7 +61,9 @@ class PartWriter:
             PredefinedType=enum(element.items[step.schema.name]),
             **inherited,
         )
-        step.rooted("IfcRelDefinesByType", f"typed/{part.mark}", RelatedObjects=listed(pieces), RelatingType=kind)
+        step.rooted(
+            "IfcRelDefinesByType", f"typed/{part.mark}", RelatedObjects=listed(pieces), RelatingType=kind
+        )
         if step.schema.is_first:
             relate_set(step, common, f"common/{part.mark}", pieces)
         relate_set(step, part_set(step, part), f"part/{part.mark}", pieces)
@@ -113,7 +115,9 @@ class PartWriter:
     def finish(self) -> None:
         """Write the materials and how all pieces and types written so far are made of them."""
         step = self._step
-        steels = {grade: material(step, grade) for grade in dict.fromkeys(grade for _, grade in self._made_of)}
+        steels = {
+            grade: material(step, grade) for grade in dict.fromkeys(grade for _, grade in self._made_of)
+        }
         outlined: dict[Section, str] = {}
         for section in dict.fromkeys(section for section, _ in self._made_of):
             outlined[section] = profile_properties(step, section, profile(step, section))

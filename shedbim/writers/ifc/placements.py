@@ -39,7 +39,9 @@ def direction(step: StepFile, *ratios: float) -> str:
     return step.share("IfcDirection", DirectionRatios=reals([round(ratio, 10) + 0.0 for ratio in ratios]))
 
 
-def axis2placement(step: StepFile, origin: Sequence[float], axis: Sequence[float], ref: Sequence[float]) -> str:
+def axis2placement(
+    step: StepFile, origin: Sequence[float], axis: Sequence[float], ref: Sequence[float]
+) -> str:
     """Write (or find) a placement: ``origin`` (3,) mm, ``axis`` its z and ``ref`` its x as unit vectors (3,)."""
     return step.share(
         "IfcAxis2Placement3D",
@@ -84,7 +86,8 @@ def write_placements(step: StepFile, placements: Placements) -> tuple[int, Integ
     turns = _rounded(placements[:, :, [2, 0]].swapaxes(1, 2).reshape(-1, 6), _PER_UNIT)
     turn_first, turn = distinct_rows(turns)
     axes = [
-        (direction(step, *row[:3]), direction(step, *row[3:])) for row in (turns[turn_first] / _PER_UNIT).tolist()
+        (direction(step, *row[:3]), direction(step, *row[3:]))
+        for row in (turns[turn_first] / _PER_UNIT).tolist()
     ]
     first, kind = distinct_rows(np.column_stack([origins, turn]))
     points = step.reserve(2 * len(first))

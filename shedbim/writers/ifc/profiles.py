@@ -115,7 +115,9 @@ def _arbitrary(step: StepFile, section: Section, shared: dict[str, str]) -> str:
     outer, *holes = [draw(step, loop) for loop in section.outline.loops]
     if not holes:
         return step.share("IfcArbitraryClosedProfileDef", **shared, OuterCurve=outer)
-    return step.share("IfcArbitraryProfileDefWithVoids", **shared, OuterCurve=outer, InnerCurves=listed(holes))
+    return step.share(
+        "IfcArbitraryProfileDefWithVoids", **shared, OuterCurve=outer, InnerCurves=listed(holes)
+    )
 
 
 def _indexed(step: StepFile, loop: Loop) -> str:

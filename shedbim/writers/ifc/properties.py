@@ -8,7 +8,7 @@ from shedbim.model.shed import AssemblyType, Part
 from shedbim.sections.section import STEEL_DENSITY
 from shedbim.writers.ifc.classes import ElementClass
 from shedbim.writers.ifc.stepfile import StepFile
-from shedbim.writers.ifc.text import TRUE, FALSE, label, listed, number, quoted, typed
+from shedbim.writers.ifc.text import FALSE, TRUE, label, listed, number, quoted, typed
 
 __all__ = [
     "assembly_set",
@@ -20,9 +20,6 @@ __all__ = [
     "quantity_set",
     "relate_set",
 ]
-
-#: Densities are asked for in kg/m³.
-DENSITY = STEEL_DENSITY * 1e9
 
 
 def identifier(text: str) -> str:

@@ -48,7 +48,9 @@ class Entity:
         unknown = given.keys() - self._defaults.keys()
         missing = [name for name in self._mandatory if given.get(name, NONE) == NONE]
         if unknown or missing:
-            wrong = [f"no attribute {name}" for name in sorted(unknown)] + [f"needs {name}" for name in sorted(missing)]
+            wrong = [f"no attribute {name}" for name in sorted(unknown)] + [
+                f"needs {name}" for name in sorted(missing)
+            ]
             raise ModelError(f"{self.name}: {'; '.join(wrong)}")
         return f"{self.name.upper()}({','.join([given.get(name, text) for name, text in self._defaults.items()])})"
 

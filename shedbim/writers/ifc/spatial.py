@@ -45,7 +45,11 @@ def write_spatial(step: StepFile, shed: Shed, contexts: Contexts, units: str) ->
         ("IfcSite", "Site", {"RefElevation": level}),
         ("IfcBuilding", info.name, {}),
         # IFC4X3 deprecates the elevation: the placement says it.
-        ("IfcBuildingStorey", "Ground floor", {} if step.schema.name == "IFC4X3_ADD2" else {"Elevation": "0."}),
+        (
+            "IfcBuildingStorey",
+            "Ground floor",
+            {} if step.schema.name == "IFC4X3_ADD2" else {"Elevation": "0."},
+        ),
     ):
         placement = step.add("IfcLocalPlacement", PlacementRelTo=placement, RelativePlacement=unturned)
         found[entity] = step.rooted(
@@ -57,7 +61,10 @@ def write_spatial(step: StepFile, shed: Shed, contexts: Contexts, units: str) ->
             **more,
         )
         step.rooted(
-            "IfcRelAggregates", f"aggregates/{entity}", RelatingObject=upper, RelatedObjects=f"({found[entity]})"
+            "IfcRelAggregates",
+            f"aggregates/{entity}",
+            RelatingObject=upper,
+            RelatedObjects=f"({found[entity]})",
         )
         upper = found[entity]
     _write_statements(step, shed, project, found["IfcSite"], found["IfcBuilding"])
@@ -126,7 +133,7 @@ def write_grid(step: StepFile, grid: Grid, contexts: Contexts, storey: Storey) -
         ContextOfItems=contexts.footprint,
         RepresentationIdentifier=quoted("FootPrint"),
         RepresentationType=quoted("GeometricCurveSet"),
-        Items=f"({step.add('IfcGeometricCurveSet', Elements=listed(curves))})",
+        Items=listed([step.add("IfcGeometricCurveSet", Elements=listed(curves))]),
     )
     unturned = axis2placement(step, (0.0, 0.0, 0.0), (0.0, 0.0, 1.0), (1.0, 0.0, 0.0))
     kind = {} if step.schema.is_first else {"PredefinedType": enum("RECTANGULAR")}

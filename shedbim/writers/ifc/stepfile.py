@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Mapping, Sequence
+from itertools import islice
 from typing import BinaryIO
 
 from shedbim.model.identity import global_ids
@@ -35,9 +36,11 @@ class StepFile:
 
     def write(self, lines: Iterable[str]) -> None:
         """Write finished lines, each with its own line end."""
-        self._lines.extend(lines)
-        if len(self._lines) >= _CHUNK:
-            self.flush()
+        stream = iter(lines)
+        while chunk := list(islice(stream, _CHUNK)):
+            self._lines += chunk
+            if len(self._lines) >= _CHUNK:
+                self.flush()
 
     def flush(self) -> None:
         """Hand to the sink what is held back."""

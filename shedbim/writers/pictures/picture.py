@@ -16,7 +16,7 @@ from shedbim.writers.pictures.png import png
 from shedbim.writers.pictures.projection import Projection, View, fitted
 from shedbim.writers.pictures.raster import Canvas
 
-__all__ = ["picture"]
+__all__ = ["part_mesh", "picture"]
 
 Floats = NDArray[np.float64]
 
@@ -24,7 +24,7 @@ Floats = NDArray[np.float64]
 _FINER = 2
 #: Arcs become chords this far off, mm, and no further than this share of a section's radius, so that the
 #: chords of a thin round bar do not turn so sharply that they are drawn as edges.
-_CHORD_ERROR, _CHORD_SHARE = 1.0, 0.03
+_CHORD_ERROR, _CHORD_SHARE = 1.0, 0.02
 _BACKGROUND, _INK = 0xFFFFFF, 0x202830
 #: Where the light stands seen from the eye: over the left shoulder (right, down, away).
 _LIGHT = np.array([-0.40, -0.62, -0.68]) / np.linalg.norm([-0.40, -0.62, -0.68])
@@ -33,6 +33,8 @@ _AMBIENT = 0.58
 #: that a building seen from afar does not go black.
 _FULL_INK_PIXELS = 40.0
 _FULL_INK, _LEAST_INK = 0.85, 0.10
+#: A bar whose section is no deeper than this many drawn pixels is drawn with its axis as a line.
+_SLENDER_PIXELS = 2.0
 #: Triangles of one batch: bounds memory.
 _AT_ONCE = 400_000
 
@@ -57,7 +59,7 @@ def picture(
     depths = corners @ projection.turn[2]
     canvas = Canvas(width * _FINER, height * _FINER, float(depths.min()), float(depths.max()))
     batches = [
-        (shed.parts[part], _mesh(shed.parts[part]), shed.pieces.placement[chosen[rows]])
+        (shed.parts[part], part_mesh(shed.parts[part]), shed.pieces.placement[chosen[rows]])
         for part, rows in _rows_by_part(shed.pieces.part[chosen])
     ]
     for part, mesh, placements in batches:
@@ -71,8 +73,8 @@ def picture(
     return png(np.rint(mean).astype(np.uint8))
 
 
-def _mesh(part: Part) -> Mesh:
-    """The mesh of a part, as coarse as a picture allows."""
+def part_mesh(part: Part) -> Mesh:
+    """Give the mesh of a part, as coarse as a picture allows."""
     section = part.bar.section
     return bar_mesh(part.bar, min(_CHORD_ERROR, _CHORD_SHARE * min(section.width, section.height) / 2))
 
@@ -102,7 +104,7 @@ def _draw_faces(
 ) -> None:
     """Draw the triangles that face the eye, and the edges between them as lines of the same colour.
 
-    The lines keep a sheet thinner than a pixel whole, where its triangles miss the pixels' centres.
+    The lines keep sheets and bars thinner than a pixel whole, where triangles miss the pixels' centres.
     """
     normals = _turned_normals(projection, mesh, placements)
     points = projection.placed(placements, mesh.points)
@@ -113,6 +115,10 @@ def _draw_faces(
     side = np.where(facing[:, mesh.sides[:, 0]], mesh.sides[:, 0], mesh.sides[:, 1])
     piece, edge = np.nonzero(np.take_along_axis(facing, side, axis=1))
     canvas.lines(points[piece[:, None], mesh.edges[edge]], colours[piece, side[piece, edge]])
+    if _depth_in_pixels(projection, part) <= _SLENDER_PIXELS:
+        axis = projection.placed(placements, np.array([[0.0, 0, 0], [part.bar.length, 0, 0]]))
+        foremost = normals[:, :, 2].argmin(axis=1)
+        canvas.lines(axis, colours[np.arange(len(axis)), foremost])
 
 
 def _draw_edges(
@@ -122,12 +128,16 @@ def _draw_edges(
     facing = _turned_normals(projection, mesh, placements)[:, :, 2] < 0
     points = projection.placed(placements, mesh.points)
     piece, edge = np.nonzero(facing[:, mesh.sides].any(axis=2))
-    section = part.bar.section
-    deep = max(section.width, section.height) * projection.scale
-    strength = max(_FULL_INK * min(deep / _FULL_INK_PIXELS, 1.0), _LEAST_INK)
+    strength = max(_FULL_INK * min(_depth_in_pixels(projection, part) / _FULL_INK_PIXELS, 1.0), _LEAST_INK)
     # An edge is sampled up to a pixel beside its own surface: as much depth is allowed.
     bias = 1.5 / projection.scale
     canvas.ink(points[piece[:, None], mesh.edges[edge]], np.full(len(piece), strength), bias)
+
+
+def _depth_in_pixels(projection: Projection, part: Part) -> float:
+    """The greater side of a part's section, drawn pixels."""
+    section = part.bar.section
+    return max(section.width, section.height) * projection.scale
 
 
 def _shades(colour: tuple[int, int, int], normals: Floats) -> NDArray[np.uint32]:

@@ -10,10 +10,8 @@ from pathlib import Path
 import typer
 
 from shedbim.cli.guard import EXIT_CODES, guard
-from shedbim.cli.speech import say
 from shedbim.errors import OutputError
 from shedbim.outputs import OUTPUTS, SCHEMAS, chosen
-from shedbim.version import __version__
 
 __all__ = ["app"]
 
@@ -26,14 +24,15 @@ app = typer.Typer(
 
 \b
 Begin with a preset, change it, build it:
-  shedbim new barn.yaml --preset gable-warren
-  shedbim build barn.yaml
+  shedbim new store.yaml --preset seed-store
+  shedbim build store.yaml
 
 \b
 Then look up what you can write there:
   shedbim fields            every field, what it allows, its default
   shedbim sections IPE      the sections of a family
   shedbim build --help      the outputs and their options
+  shedbim --version         the version of the program
 
 \b
 Exit codes:
@@ -76,21 +75,6 @@ def _names(text: str) -> tuple[str, ...]:
     return names
 
 
-def _version(wanted: bool) -> None:
-    if wanted:
-        say(__version__)
-        raise typer.Exit
-
-
-@app.callback()
-def _shedbim(
-    version: bool = typer.Option(
-        False, "--version", callback=_version, is_eager=True, help="Show the version."
-    ),
-) -> None:
-    pass
-
-
 @app.command(short_help="Build the model and the schedules.")
 def build(
     file: Path = typer.Argument(..., metavar="FILE", help="The description, a YAML file."),
@@ -112,11 +96,11 @@ def build(
 
     \b
     Examples:
-      shedbim build barn.yaml
-      shedbim build barn.yaml --out issue/P02 --schema IFC4X3_ADD2
-      shedbim build barn.yaml --only schedules,summary
-      shedbim build barn.yaml --time-stamp 2024-05-17T09:30:00Z
-      shedbim build barn.yaml --json
+      shedbim build store.yaml
+      shedbim build store.yaml --out issue/P02 --schema IFC4X3_ADD2
+      shedbim build store.yaml --only schedules,summary
+      shedbim build store.yaml --time-stamp 2024-05-17T09:30:00Z
+      shedbim build store.yaml --json
     """
     model_schema, names = _schema_name(schema), _names(only)
     moment = _moment(time_stamp) if time_stamp else None
@@ -197,7 +181,7 @@ def new(
     \b
     Examples:
       shedbim presets
-      shedbim new barn.yaml --preset gable-warren
+      shedbim new store.yaml --preset seed-store
     """
     with guard():
         from shedbim.cli.description_commands import write_new
