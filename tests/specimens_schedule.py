@@ -54,7 +54,7 @@ def shed(**changes: object) -> Shed:
             np.array([-1, -1, 0, 1]),
         ),
         "joints": (
-            _joints(JointKind.BASE, [[0], [1], [6], [7]], [0.0, 0.0, 0.0, 0.0]),
+            _joints(JointKind.PINNED_BASE, [[0], [1], [6], [7]], [0.0, 0.0, 0.0, 0.0]),
             _joints(JointKind.NODE, [[2, 3, 4], [8, 9, 10]], [12.5, -17.25]),
         ),
         "defaults": (("frames.columns.grade", "S355"), ("purlins.gap", "6 mm")),

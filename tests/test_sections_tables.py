@@ -182,7 +182,9 @@ def test_mass_agrees_with_the_nominal_mass_in_the_name(family: str, share: float
         ("HF SHS 160x160x12.5", 1.5, 1.0),
     ],
 )
-def test_corner_radii_change_at_the_limits_of_the_standard(designation: str, outer: float, inner: float) -> None:
+def test_corner_radii_change_at_the_limits_of_the_standard(
+    designation: str, outer: float, inner: float
+) -> None:
     found = section(designation)
     t = float(designation.rsplit("x", 1)[1])
     exact = 4 * t * (160 - t) - (4 - pi) * ((outer * t) ** 2 - (inner * t) ** 2)
