@@ -128,6 +128,8 @@ def parse(text: str, measure: Measure) -> float:
 
 def _unsigned(body: str, measure: Measure) -> float:
     """The value of a text without sign, possibly infinite."""
+    if _BARE.fullmatch(body):
+        raise QuantityError("a bare number: the unit is missing", measure.allowed)
     if measure.slopes and (ratio := _RATIO.fullmatch(body)):
         return _ratio(float(ratio[1]), float(ratio[2]), measure)
     if measure is LENGTH and (both := _FEET_INCHES.fullmatch(body)):
@@ -139,8 +141,6 @@ def _unsigned(body: str, measure: Measure) -> float:
         if unit in measure.units:
             return amount * measure.units[unit]
         raise QuantityError(f"{unit[:12]!r} is no unit of {measure.name}", measure.allowed)
-    if _BARE.fullmatch(body):
-        raise QuantityError("a bare number: the unit is missing", measure.allowed)
     if _NOT_A_NUMBER.match(body):
         raise QuantityError(f"not a finite {measure.name}", measure.allowed)
     if _COMMA.search(body):

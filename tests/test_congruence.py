@@ -44,11 +44,11 @@ PROFILES: dict[str, Profile] = {
 }
 SECTIONS = {name: Section(name, name, profile, "test") for name, profile in PROFILES.items()}
 ROUND = {"CHS", "RD"}
-#: Of each section by hand: turns about the axis, and mirror axes (their angles from y, degrees) that allow flips.
+#: Of each section by hand: turns about the axis, and mirror axes that allow flips (degrees from y).
 TURNS = {"I": 2, "U": 1, "SHS": 4, "RHS": 2, "L": 1, "L unequal": 1, "C": 1, "Z": 2, "FL": 2, "SQ": 4}
 MIRRORS = {
-    "I": (0, 90), "U": (0,), "SHS": (0, 45, 90, 135), "RHS": (0, 90), "L": (45,), "L unequal": (), "C": (0,), "Z": (),
-    "FL": (0, 90), "SQ": (0, 45, 90, 135),
+    "I": (0, 90), "U": (0,), "SHS": (0, 45, 90, 135), "RHS": (0, 90), "L": (45,), "L unequal": (),
+    "C": (0,), "Z": (), "FL": (0, 90), "SQ": (0, 45, 90, 135),
 }  # fmt: skip
 #: Solids are compared with arcs this near to true; see ``apart``.
 CHORD = 0.02
@@ -153,7 +153,7 @@ def allowed_change(draw: st.DrawFn, bar: Bar) -> Bar:
     return swapped(seen) if draw(st.booleans()) else seen
 
 
-@settings(max_examples=120, deadline=None)
+@settings(max_examples=100, deadline=None)
 @given(st.data())
 def test_a_bar_turned_or_flipped_is_the_same_shape(data: st.DataObject) -> None:
     bar = data.draw(bars())
@@ -174,7 +174,7 @@ def test_a_bar_turned_or_flipped_is_the_same_shape(data: st.DataObject) -> None:
         assert cut.notched == same.notched
 
 
-@settings(max_examples=120, deadline=None)
+@settings(max_examples=80, deadline=None)
 @given(st.data())
 def test_a_mirrored_bar_is_another_shape_unless_some_motion_lays_it_on_the_first(data: st.DataObject) -> None:
     name = data.draw(st.sampled_from(list(SECTIONS)))

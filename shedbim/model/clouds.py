@@ -103,8 +103,8 @@ class Cloud:
 def match(cloud: Cloud, other: Cloud, tolerance: float = SAME_PLACE) -> Placements | None:
     """Give a rigid motion (3, 4) of ``cloud`` onto ``other``, or None where there is none.
 
-    It brings every point to within ``tolerance`` mm of another one with the same label, no two to the same.
-    The identity is given wherever it does so.
+    It brings every point to within ``tolerance`` mm of one of the other cloud with the same label, and leaves
+    none of those without one. The identity is given wherever it does so.
     """
     if not np.array_equal(cloud.labels, other.labels):
         return None
@@ -117,9 +117,8 @@ def match(cloud: Cloud, other: Cloud, tolerance: float = SAME_PLACE) -> Placemen
         if pairs is None:
             continue
         # The frame hangs on two points; the motion on all of them.
-        target = other.points[pairs]
-        motion = _fit(cloud.points, target)
-        if np.linalg.norm(apply(motion, cloud.points) - target, axis=1).max() <= tolerance:
+        motion = _fit(cloud.points, other.points[pairs])
+        if _pairs(apply(motion, cloud.points), cloud, other, tolerance) is not None:
             return motion
     return None
 
@@ -152,15 +151,14 @@ def _signature(cloud: Cloud, places: Ints) -> bytes:
 def _pairs(points: Array, cloud: Cloud, other: Cloud, reach: float) -> Ints | None:
     """For each of ``points`` (n, 3) the row of the nearest one of ``other`` with its label, or None.
 
-    None where one has none within ``reach`` mm or where two share one.
+    None where a point of either cloud has none of the other within ``reach`` mm.
     """
     found = np.empty(len(points), np.int64)
     for block in cloud.blocks:
         apart = np.linalg.norm(points[block, None] - other.points[None, block], axis=2)
-        nearest = apart.argmin(axis=1)
-        if apart.min(axis=1).max() > reach or len(np.unique(nearest)) < len(nearest):
+        if max(apart.min(axis=1).max(), apart.min(axis=0).max()) > reach:
             return None
-        found[block] = block.start + nearest
+        found[block] = block.start + apart.argmin(axis=1)
     return found
 
 

@@ -134,12 +134,12 @@ def _closest(name: str) -> tuple[Family, ...]:
 def _across(candidates: tuple[Family, ...], size: Size) -> list[str]:
     """Give the designations nearest to ``size`` in the candidates, or in all families if there are none."""
     count = 3 if len(candidates) == 1 else 1
-    found = [
-        (round(distance(size, near), 9), rank, family.designation(near))
+    found = sorted(
+        (round(distance(size, near), 9), rank, family.designation(_index(family.name)[near].size))
         for rank, family in enumerate(candidates or _FAMILIES)
-        for near in nearest_sizes(size, [entry.size for entry in _entries(family.name)], count)
-    ]
-    return [designation for _, _, designation in sorted(found)[:5]]
+        for near in nearest_sizes(size, _index(family.name), count)
+    )
+    return list(dict.fromkeys(designation for _, _, designation in found))[:5]
 
 
 def _similar(text: str) -> list[str]:

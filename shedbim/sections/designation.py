@@ -14,7 +14,8 @@ LONGEST = 60
 _NUMBER = r"-?[0-9]+(?:[.,][0-9]+)?|-?[.,][0-9]+"
 _TIMES = r"\s*[x×*]\s*"
 _DESIGNATION = re.compile(
-    rf"([a-z][a-z\s]*)?((?:{_NUMBER})(?:{_TIMES}(?:{_NUMBER}))*)\s*([a-z]*)", re.IGNORECASE
+    rf"(?:([a-z][a-z\s]*)(?:(?<=[a-z])-)?)?((?:{_NUMBER})(?:{_TIMES}(?:{_NUMBER}))*)\s*([a-z]*)",
+    re.IGNORECASE,
 )
 
 
@@ -26,15 +27,15 @@ def folded(name: str) -> str:
 def parse(text: str) -> tuple[str, Size] | None:
     """Give the folded family name and the size, or None where the text is no designation at all.
 
-    Case, spaces, ``×`` or ``*`` for ``x``, a decimal comma and trailing zeros do not matter, and a letter
-    that follows the depth, as EN 10365 writes ``HE 300 B``, is taken into the name.
+    Case, spaces, ``×`` or ``*`` for ``x``, a decimal comma and trailing zeros do not matter, nor does a hyphen
+    straight behind the name; a letter that follows the depth, as EN 10365 writes ``HE 300 B``, is taken into
+    the name.
     """
     if len(text) > LONGEST:
         return None
     match = _DESIGNATION.fullmatch(text.strip())
     if match is None:
         return None
-    # The name must not swallow the sign between two numbers: "x" never ends a name here.
     name, numbers, suffix = match.group(1) or "", match.group(2), match.group(3)
     size = tuple(float(part.replace(",", ".")) for part in re.split(_TIMES, numbers, flags=re.IGNORECASE))
     return folded(name + suffix), size

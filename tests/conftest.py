@@ -1,0 +1,36 @@
+"""What all tests share: the cast as fixtures, and a steady profile for random examples."""
+
+from __future__ import annotations
+
+import cast
+
+import pytest
+from hypothesis import HealthCheck, settings
+
+# The same examples in every run, so that a run that fails can be repeated; slow machines are no failure.
+settings.register_profile(
+    "steady",
+    derandomize=True,
+    deadline=None,
+    database=None,
+    suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large],
+)
+settings.load_profile("steady")
+
+
+@pytest.fixture(scope="session", params=cast.CAST)
+def specimen(request) -> str:
+    """Give the name of each specimen of the cast."""
+    return request.param
+
+
+@pytest.fixture(scope="session")
+def description(specimen):
+    """Give the description of each specimen."""
+    return cast.described(specimen)
+
+
+@pytest.fixture(scope="session")
+def shed(specimen):
+    """Give the building of each specimen."""
+    return cast.shed_of(specimen)

@@ -1,0 +1,306 @@
+"""What holds in every building: each function gives what is wrong with a Shed, nothing where all is well.
+
+A second opinion: only the finished tables of the Shed are looked at, and the description for its sections.
+"""
+
+from __future__ import annotations
+
+from collections import Counter
+from collections.abc import Iterator
+
+import numpy as np
+from scipy.spatial import cKDTree
+
+from shedbim.description.models import Description
+from shedbim.geometry.placements import apply, compose, inverse
+from shedbim.model.joints import At, JointKind, JointRun
+from shedbim.model.roles import Role
+from shedbim.model.shed import Shed
+from shedbim.model.solids import solid
+from shedbim.sections.section import STEEL_DENSITY
+from shedbim.tolerance import SAME_LENGTH, SAME_PLACE
+
+__all__ = [
+    "RULES",
+    "Bars",
+    "bars_end_in_joints",
+    "broken",
+    "carriers_are_near",
+    "eccentricities_are_true",
+    "equal_assemblies_are_equal",
+    "joints_are_at_ends",
+    "keys_are_unique",
+    "masses_add_up",
+    "tables_are_sound",
+]
+
+#: Work points hang on stock bars; a part may be this much shorter, in the middle of them.
+_SLACK = SAME_LENGTH / 2 + 1e-6
+
+
+class Bars:
+    """The pieces of a shed as columns of n rows: where their axes begin and end, their sizes, their roles."""
+
+    def __init__(self, shed: Shed) -> None:
+        part, placement = shed.pieces.part, shed.pieces.placement
+        axis = np.array([p.bar.axis for p in shed.parts])[part]
+        bounds = np.array([p.bar.section.outline.bounds for p in shed.parts])[part]
+        length = np.array([p.bar.length for p in shed.parts])[part]
+        self.x = placement[:, :, 0]
+        #: (n, 2, 3): the axis where it enters and where it leaves the steel.
+        self.ends = placement[:, None, :, 3] + axis[:, :, None] * self.x[:, None, :]
+        #: (n, 3) each: the corners of the box that a bar fills in its own frame.
+        self.low = np.column_stack([np.zeros(len(part)), bounds[:, 0], bounds[:, 1]])
+        self.high = np.column_stack([length, bounds[:, 2], bounds[:, 3]])
+        self.size = np.array([max(p.bar.section.width, p.bar.section.height) for p in shed.parts])[part]
+        self.height = np.array([p.bar.section.height for p in shed.parts])[part]
+        self.width = np.array([p.bar.section.width for p in shed.parts])[part]
+        self.role = [shed.parts[i].role for i in part.tolist()]
+        self._placement = placement
+
+    def outside(self, pieces: np.ndarray, points: np.ndarray) -> np.ndarray:
+        """How far points (m, 3) lie outside the boxes of pieces (m,), mm."""
+        placement = self._placement[pieces]
+        local = np.einsum("mji,mj->mi", placement[:, :, :3], points - placement[:, :, 3])
+        beyond = np.maximum(np.maximum(self.low[pieces] - local, local - self.high[pieces]), 0.0)
+        return np.linalg.norm(beyond, axis=1)
+
+
+def keys_are_unique(shed: Shed, _: Description) -> Iterator[str]:
+    """Every piece has one key, and every assembly."""
+    for what, keys in (("piece", shed.pieces.keys), ("assembly", shed.assemblies.keys)):
+        for key, count in Counter(keys).items():
+            if count > 1 or not key:
+                yield f"{count} of {what} {key!r}"
+
+
+def tables_are_sound(shed: Shed, _: Description) -> Iterator[str]:
+    """Columns are as long as each other, indices point somewhere, placements are rigid motions."""
+    n, pieces, groups = len(shed.pieces.keys), shed.pieces, shed.assemblies
+    if not len(pieces.part) == len(pieces.placement) == len(pieces.assembly) == n:
+        yield "columns of unequal length"
+    if set(pieces.part.tolist()) != set(range(len(shed.parts))):
+        yield "a part without pieces or a piece without a part"
+    if pieces.assembly.min() < -1 or pieces.assembly.max() >= len(groups):
+        yield "a piece in an assembly that does not exist"
+    if (groups.parent >= np.arange(len(groups))).any():
+        yield "an assembly before the one it belongs to"
+    if set(groups.type.tolist()) != set(range(len(shed.assembly_types))):
+        yield "an assembly type without assemblies"
+    for placement in (pieces.placement, groups.placement):
+        turn = placement[:, :, :3]
+        if np.abs(turn @ np.swapaxes(turn, 1, 2) - np.eye(3)).max() > 1e-9 or (np.linalg.det(turn) < 0).any():
+            yield "a placement that is no rigid motion"
+    marks = Counter([*(p.mark for p in shed.parts), *(t.mark for t in shed.assembly_types)])
+    yield from (f"mark {mark} twice" for mark, count in marks.items() if count > 1)
+
+
+def bars_end_in_joints(shed: Shed, _: Description) -> Iterator[str]:
+    """Each end of each piece is in exactly one joint, or declared free exactly once."""
+    taken = np.zeros((len(shed.pieces), 2), int)
+    for run in shed.joints:
+        for end in (At.START, At.END):
+            np.add.at(taken[:, end], run.pieces[run.at == end], 1)
+    for piece, end in np.argwhere(taken != 1).tolist():
+        yield f"{shed.pieces.keys[piece]}: {('start', 'end')[end]} in {taken[piece, end]} joints"
+
+
+def joints_are_at_ends(shed: Shed, description: Description) -> Iterator[str]:
+    """The work point of a joint at an end of a piece lies near that end of it."""
+    bars = Bars(shed)
+    for run in shed.joints:
+        reach = _end_reach(run, bars, description)
+        for column in range(run.pieces.shape[1]):
+            pieces, at = run.pieces[:, column], run.at[:, column]
+            rows = np.flatnonzero(at != At.ALONG)
+            away = np.linalg.norm(bars.ends[pieces[rows], at[rows]] - run.points[rows], axis=1)
+            for row in rows[away > reach[rows] + _SLACK]:
+                key, far = shed.pieces.keys[pieces[row]], float(away[rows == row][0])
+                yield f"{run.kind.word} of {key}: {far:.1f} mm from its end, at most {reach[row]:.1f}"
+
+
+def _end_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarray:
+    """How far an end may lie from the work point of each joint of a run (m,), mm."""
+    first = run.pieces[:, 0]
+    columns = description.frames.columns.section
+    purlins, rails, bracing = description.purlins, description.rails, description.bracing
+    plain = {
+        # The axis ends at the work point itself.
+        JointKind.BASE: 0.0,
+        JointKind.POST_BASE: 0.0,
+        JointKind.CHORD_COLUMN: 0.0,
+        JointKind.CHORD_RIDGE: 0.0,
+        JointKind.SAG_BAR_END: 0.0,
+        JointKind.FREE: 0.0,
+        # A post stands off the frame's plane by half the frame at most.
+        JointKind.POST_HEAD: max(columns.width, columns.height, float(bars.width.max())) / 2,
+        # Half the gap; at a gable a purlin runs on past the frame, at a corner a rail to the column's edge.
+        JointKind.PURLIN_CLEAT: purlins.gap / 2,
+        JointKind.RAIL_CLEAT: max(rails.gap, columns.width, columns.height) / 2,
+    }
+    if run.kind in plain:
+        return np.full(len(run.points), plain[run.kind])
+    slope = np.array([1 / np.hypot(*d[[0, 2]]) if d[0] == 0 else np.hypot(*d[[0, 2]]) / abs(d[0]) for d in bars.x])
+    if run.kind is JointKind.RAFTER_COLUMN:  # half the column and a 20 mm end plate, along the slope
+        return (columns.height / 2 + 20.0) * slope[run.pieces[:, 1]]
+    if run.kind is JointKind.APEX:  # a 20 mm end plate, along the slope
+        return 20.0 * slope[run.pieces].max(axis=1)
+    if run.kind in (JointKind.STRUT_END, JointKind.TIE_END):  # half the steel at the line and a 10 mm gap
+        return np.maximum(bars.width[first], 0.0) / 2 + 10.0
+    if run.kind is JointKind.NODE:  # half the chord along the web, and the width of what lands beside it
+        webs = run.pieces[:, 1:]
+        return bars.height[first] + 2.0 * bars.height[webs].sum(axis=1)
+    brace = bars.size[run.pieces[:, -1]]
+    if run.kind is JointKind.BRACE_GUSSET:
+        # Past half the steel on either side, the set-back of 20 mm and the brace's own corner, all along a
+        # diagonal that may lie at 20 degrees to one of them: three times their sum.
+        beside = max(bracing.struts.section.width, bracing.eaves_strut.section.width, *bars.width[first])
+        return 3.0 * (beside / 2 + 20.0 + brace)
+    if run.kind is JointKind.BRACE_CROSSING:  # half the tube that passes and a gap of 20 mm, likewise
+        return 3.0 * (20.0 + brace)
+    raise AssertionError(f"no bound for {run.kind}")
+
+
+def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
+    """What carries a joint, and what else runs through it, is at its work point."""
+    bars = Bars(shed)
+    purlins, rails, bracing = description.purlins, description.rails, description.bracing
+    off_plane = max(bracing.roof.section.width, bracing.walls.section.width) + 5.0
+    reach = {
+        # The work point lies on the axis of the purlin or rail, which is lifted off its carrier.
+        JointKind.PURLIN_CLEAT: purlins.lift + purlins.section.height / 2,
+        JointKind.RAIL_CLEAT: rails.lift + rails.section.height / 2,
+        # The carrier ends an end plate of 20 mm away, or is above the head of a post by a gap of 25 mm.
+        JointKind.CHORD_COLUMN: 20.0,
+        JointKind.POST_HEAD: 25.0 / np.cos(max(abs(_pitch(x)) for x in bars.x)),
+        # Angles stand on either side of the gusset's plane.
+        JointKind.BRACE_CROSSING: off_plane,
+    }
+    for run in shed.joints:
+        for column in range(run.pieces.shape[1]):
+            pieces = run.pieces[:, column]
+            rows = np.flatnonzero(run.at[:, column] == At.ALONG)
+            away = bars.outside(pieces[rows], run.points[rows])
+            bound = reach.get(run.kind, 0.0)
+            for row, far in zip(rows, away, strict=True):
+                if far > bound + _SLACK:
+                    key = shed.pieces.keys[pieces[row]]
+                    yield f"{run.kind.word} on {key}: {far:.1f} mm away from it, at most {bound:.1f}"
+
+
+def _pitch(x: np.ndarray) -> float:
+    """Angle of an axis in the frame's plane to the horizontal, as far as it is one of a roof, rad."""
+    return float(np.arcsin(np.clip(x[2], -1, 1))) if abs(x[0]) > 0.4 else 0.0
+
+
+def masses_add_up(shed: Shed, _: Description) -> Iterator[str]:
+    """A part weighs what its solid weighs, and a shed what its pieces weigh."""
+    for part in shed.parts:
+        meshed = solid(part.bar, 0.005).volume() * STEEL_DENSITY
+        if abs(meshed / part.bar.mass - 1) > 1e-3:
+            yield f"{part.mark}: {part.bar.mass:.3f} kg, its solid {meshed:.3f} kg"
+    total = sum(shed.parts[i].bar.mass for i in shed.pieces.part.tolist())
+    if abs(total / shed.mass - 1) > 1e-9:
+        yield f"the pieces weigh {total:.1f} kg, the shed {shed.mass:.1f} kg"
+
+
+def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
+    """Assemblies of one type hold the same parts, each corner of their steel in the same place."""
+    groups, pieces = shed.assemblies, shed.pieces
+    members: list[list[int]] = [[] for _ in groups.keys]
+    for piece, group in enumerate(pieces.assembly.tolist()):
+        if group >= 0:
+            members[group].append(piece)
+    corners = {i: _corners(shed, i) for i in np.unique(pieces.part[pieces.assembly >= 0]).tolist()}
+    seen: dict[int, list[tuple[np.ndarray, np.ndarray]]] = {}
+    clouds: dict[int, cKDTree] = {}
+    for group, kind in enumerate(groups.type.tolist()):
+        parts = pieces.part[members[group]]
+        back = inverse(groups.placement[group])
+        here = compose(back, pieces.placement[members[group]])
+        known = seen.setdefault(kind, [])
+        if any(np.array_equal(p, parts) and np.abs(h - here).max(initial=0.0) < 1e-6 for p, h in known):
+            continue
+        known.append((parts, here))
+        if not len(parts):
+            continue
+        cloud = np.concatenate([apply(at, corners[p]) for p, at in zip(parts.tolist(), here, strict=True)])
+        if sorted(known[0][0].tolist()) != sorted(parts.tolist()):
+            yield f"{groups.keys[group]} holds other parts than its like"
+        elif len(known) == 1:
+            clouds[kind] = cKDTree(cloud)
+        else:
+            other = clouds[kind]
+            away = max(other.query(cloud)[0].max(), cKDTree(cloud).query(other.data)[0].max())
+            if away > SAME_PLACE + SAME_LENGTH + _CORNERS:
+                yield f"{groups.keys[group]} differs from its like by {away:.2f} mm"
+
+
+#: Half the distance of two points of a polygon drawn for the widest tube: a tube may be turned by this much.
+_CORNERS = 2.0
+
+
+def _corners(shed: Shed, part: int) -> np.ndarray:
+    """The corners of a part's solid (n, 3), mm."""
+    return np.asarray(solid(shed.parts[part].bar).to_mesh().vert_properties, float)[:, :3]
+
+
+def eccentricities_are_true(shed: Shed, _: Description) -> Iterator[str]:
+    """The eccentricity of a truss node is how far, measured upright, its webs' axes cross off the chord's."""
+    bars = Bars(shed)
+    chords = [i for i, role in enumerate(bars.role) if role in (Role.TOP_CHORD, Role.BOTTOM_CHORD)]
+    continues: dict[int, int] = {}
+    for run in shed.joints:
+        if run.kind is JointKind.CHORD_RIDGE:
+            continues |= dict(run.pieces.tolist()) | dict(run.pieces[:, ::-1].tolist())
+    assert chords
+    for run in shed.joints:
+        if run.kind is not JointKind.NODE:
+            continue
+        for pieces, stated in zip(run.pieces.tolist(), run.eccentricity.tolist(), strict=True):
+            lengths = [pieces[0], continues.get(pieces[0], pieces[0])]
+            misses = _misses(bars, lengths, pieces[1:])
+            worst = max(misses, key=abs, default=0.0)
+            if abs(abs(worst) - abs(stated)) > 1e-3:
+                yield f"node on {shed.pieces.keys[pieces[0]]}: {stated:.2f} mm stated, {worst:.2f} mm found"
+
+
+def _misses(bars: Bars, chords: list[int], webs: list[int]) -> list[float]:
+    """How far each two neighbouring webs of a node cross above the axis of the chord, mm."""
+    lines = [(bars.ends[i, 0][[0, 2]], bars.x[i][[0, 2]]) for i in webs]
+    middles = [bars.ends[i].mean(axis=0)[0] for i in webs]
+    lines = [line for _, line in sorted(zip(middles, lines, strict=True), key=lambda pair: pair[0])]
+    found = []
+    for (p, d), (q, e) in zip(lines, lines[1:], strict=False):
+        crossing = p + d * np.linalg.solve(np.column_stack([d, -e]), q - p)[0]
+        found.append(float(crossing[1]) - _level(bars, chords, float(crossing[0])))
+    return found
+
+
+def _level(bars: Bars, chords: list[int], x: float) -> float:
+    """Level of the axis of a chord of one or two lengths at x, mm: the length that x falls in, or the nearer."""
+
+    def beyond(i: int) -> float:
+        low, high = sorted(bars.ends[i, :, 0])
+        return max(low - x, x - high, 0.0)
+
+    nearest = min(chords, key=beyond)
+    (x0, _, z0), (x1, _, z1) = bars.ends[nearest]
+    return float(z0 + (z1 - z0) * (x - x0) / (x1 - x0))
+
+
+RULES = (
+    keys_are_unique,
+    tables_are_sound,
+    bars_end_in_joints,
+    joints_are_at_ends,
+    carriers_are_near,
+    masses_add_up,
+    equal_assemblies_are_equal,
+    eccentricities_are_true,
+)
+
+
+def broken(shed: Shed, description: Description) -> list[str]:
+    """Give what breaks any of the rules."""
+    return [f"{rule.__name__}: {finding}" for rule in RULES for finding in rule(shed, description)]
