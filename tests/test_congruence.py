@@ -110,14 +110,15 @@ def swapped(bar: Bar) -> Bar:
 
 def apart(one: Manifold, other: Manifold, bar: Bar) -> bool:
     """Whether two solids differ by more than the facets of their arcs and the noise can explain."""
-    if abs(one.volume() - other.volume()) > 0.01 * bar.volume:
+    boxes = np.abs(np.subtract(one.bounding_box(), other.bounding_box()))
+    if boxes.max() > 0.5 or abs(one.volume() - other.volume()) > 0.01 * bar.volume:
         return True
     facets = (
         CHORD * bar.section.outline.outer_perimeter * 2 * bar.length
         if bar.section.designation in ROUND
         else 0.0
     )
-    return (one - other).volume() + (other - one).volume() > facets + 1e-5 * bar.volume
+    return bool((one - other).volume() + (other - one).volume() > facets + 1e-5 * bar.volume)
 
 
 def carries(motion: np.ndarray, inner: Bar, outer: Bar) -> bool:
@@ -142,22 +143,22 @@ def every_motion(bar: Bar) -> list[np.ndarray]:
     return found
 
 
-def allowed_change(draw: st.DrawFn, bar: Bar) -> Bar:
+def allowed_change(data: st.DataObject, bar: Bar) -> Bar:
     name = bar.section.designation
     if name in ROUND:
-        seen = turned(bar, draw(st.floats(0, 6.28)))
-        return flipped(seen, 0.0) if draw(st.booleans()) else seen
-    seen = turned(bar, 2 * pi / TURNS[name] * draw(st.integers(0, TURNS[name] - 1)))
-    if MIRRORS[name] and draw(st.booleans()):
-        seen = flipped(seen, np.radians(draw(st.sampled_from(MIRRORS[name]))))
-    return swapped(seen) if draw(st.booleans()) else seen
+        seen = turned(bar, data.draw(st.floats(0, 6.28)))
+        return flipped(seen, 0.0) if data.draw(st.booleans()) else seen
+    seen = turned(bar, 2 * pi / TURNS[name] * data.draw(st.integers(0, TURNS[name] - 1)))
+    if MIRRORS[name] and data.draw(st.booleans()):
+        seen = flipped(seen, np.radians(data.draw(st.sampled_from(MIRRORS[name]))))
+    return swapped(seen) if data.draw(st.booleans()) else seen
 
 
 @settings(max_examples=100, deadline=None)
 @given(st.data())
 def test_a_bar_turned_or_flipped_is_the_same_shape(data: st.DataObject) -> None:
     bar = data.draw(bars())
-    other = allowed_change(data.draw, bar)
+    other = allowed_change(data, bar)
     found = congruence([bar, other], [0, 0])
     assert len(found.shapes) == 1
     assert found.shape_of.tolist() == [0, 0]
@@ -174,7 +175,7 @@ def test_a_bar_turned_or_flipped_is_the_same_shape(data: st.DataObject) -> None:
         assert cut.notched == same.notched
 
 
-@settings(max_examples=80, deadline=None)
+@settings(max_examples=60, deadline=None)
 @given(st.data())
 def test_a_mirrored_bar_is_another_shape_unless_some_motion_lays_it_on_the_first(data: st.DataObject) -> None:
     name = data.draw(st.sampled_from(list(SECTIONS)))

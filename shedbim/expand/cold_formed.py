@@ -9,7 +9,7 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from shedbim.expand.kits import HERE, NEXT_BAY, SECOND_LINE, Meeting, Member, Meets
+from shedbim.expand.kits import HERE, NEXT_BAY, Meeting, Member, Meets
 from shedbim.expand.sticks import along, stick
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
@@ -50,12 +50,10 @@ class Course:
 
 @dataclass(frozen=True)
 class Stretch:
-    """From where to where a bar runs along its line, mm, and whether it overhangs at either end."""
+    """From where to where a bar runs along its line, mm."""
 
     start: float
     end: float
-    free_start: bool = False
-    free_end: bool = False
 
 
 def course_bar(
@@ -82,20 +80,22 @@ def line_joint(
     place: float,
     *,
     near: bool,
-    overhangs: bool,
+    overhang: float = 0.0,
     following: Meets | None = None,
 ) -> list[Meeting]:
     """Give the joint of a course with what carries it at ``place`` along the line, and a free end beyond it.
 
     Args:
         near: whether it is the end where the bar begins along its line.
+        overhang: how far the bar runs on beyond the carrier, mm.
         following: the next bar of the course, butted here.
     """
     own_end = _near_end(course) if near else _far_end(course)
     point = course.point + course.run * place
-    if overhangs:
+    if overhang:
         held = Meeting(kind, (carrier, Meets(course.name, At.ALONG)), point)
-        return [held, Meeting(JointKind.FREE, (Meets(course.name, own_end),), point)]
+        beyond = point + course.run * (-overhang if near else overhang)
+        return [held, Meeting(JointKind.FREE, (Meets(course.name, own_end),), beyond)]
     pieces = (carrier, Meets(course.name, own_end))
     return [Meeting(kind, pieces if following is None else (*pieces, following), point)]
 
@@ -103,11 +103,6 @@ def line_joint(
 def next_bar(course: Course) -> Meets:
     """Give the piece that continues a course in the next bay, by the end that is butted."""
     return Meets(course.name, _near_end(course), NEXT_BAY)
-
-
-def on_second_line(name: str) -> Meets:
-    """Give a piece of the frame on the bay's second line."""
-    return Meets(name, At.ALONG, SECOND_LINE)
 
 
 def web_faces(section: Section) -> tuple[float, float]:

@@ -99,12 +99,14 @@ def gable_frame(description: Description, layout: Layout, *, outward: int) -> Fr
 def post_places(description: Description, layout: Layout) -> tuple[float, ...]:
     """Give x of the gable posts: every slope in equal parts no longer than the greatest post spacing."""
     spacing = description.frames.gables.post_spacing
-    places: set[float] = set()
+    places: list[float] = []
     for pitched in layout.slopes:
         s = pitched.slope
         parts = ceil((s.x1 - s.x0) / spacing - 1e-9)
-        places.update(s.x0 + (s.x1 - s.x0) * k / parts for k in range(parts + 1))
-    return tuple(x for x in sorted(places) if min(abs(x - line) for line in layout.grid.x) > 1.0)
+        places.extend(s.x0 + (s.x1 - s.x0) * k / parts for k in range(1, parts))
+        if pitched.right_column < 0:
+            places.append(s.x1)
+    return tuple(places)
 
 
 def end_wall_face(description: Description, frame: Frame) -> float:

@@ -117,7 +117,7 @@ def _bay_kit(
             members.append(course_bar(course, stretch, options.section, Role.PURLIN, options.grade, finish))
             x = float(course.point[0] - course.outward[0] * (options.lift + options.section.height / 2))
             first, second = (_carrier(description, layout, frame, surface.at(x), x) for frame in frames)
-            meetings.extend(_held(course, first, second, bay))
+            meetings.extend(_held(course, first, second, bay, verge))
     for name, lower, upper, number in _neighbours(layout, courses):
         rows = sag_bar_rows(options.sag_bars, bay.length, layout.slopes[0].slope.pitch)
         for row, place in enumerate(sag_bar_places(bay.length, rows), start=1):
@@ -130,15 +130,15 @@ def _bay_kit(
     return Kit(tuple(members), tuple(meetings))
 
 
-def _held(course: Course, first: str, second: str, bay: Bay) -> list[Meeting]:
+def _held(course: Course, first: str, second: str, bay: Bay, verge: float) -> list[Meeting]:
     """The joints of a purlin on the bay's two lines: butted inside, running through at an end frame."""
     kind = JointKind.PURLIN_CLEAT
     found: list[Meeting] = []
     if bay.first:
-        found += line_joint(kind, course, Meets(first, At.ALONG, FIRST_LINE), 0.0, near=True, overhangs=True)
+        found += line_joint(kind, course, Meets(first, At.ALONG, FIRST_LINE), 0.0, near=True, overhang=verge)
     found += line_joint(
         kind, course, Meets(second, At.ALONG, SECOND_LINE), bay.length,
-        near=False, overhangs=bay.last, following=None if bay.last else next_bar(course),
+        near=False, overhang=verge if bay.last else 0.0, following=None if bay.last else next_bar(course),
     )  # fmt: skip
     return found
 

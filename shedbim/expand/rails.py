@@ -79,10 +79,10 @@ def _side_kit(description: Description, layout: Layout, bay: Bay) -> Kit:
             members.append(_rail(description, course, stretch, Role.SIDE_RAIL))
             if bay.first:
                 held = Meets(carrier, At.ALONG, FIRST_LINE)
-                meetings += line_joint(JointKind.RAIL_CLEAT, course, held, 0.0, near=True, overhangs=False)
+                meetings += line_joint(JointKind.RAIL_CLEAT, course, held, 0.0, near=True)
             meetings += line_joint(
                 JointKind.RAIL_CLEAT, course, Meets(carrier, At.ALONG, SECOND_LINE), bay.length,
-                near=False, overhangs=False, following=None if bay.last else next_bar(course),
+                near=False, following=None if bay.last else next_bar(course),
             )  # fmt: skip
         places = sag_bar_places(bay.length, sag_bar_rows(options.sag_bars, bay.length))
         bars, joints = _sag_bars(description, courses, places, f"rail sag bar/{letter}")
@@ -151,7 +151,7 @@ def gable_rails(description: Description, layout: Layout, frame: Frame, *, outwa
             for upright, near in ((left, True), (right, False)):
                 held = Meets(upright.name, At.ALONG, FIRST_LINE)
                 meetings += line_joint(
-                    JointKind.RAIL_CLEAT, course, held, upright.x, near=near, overhangs=False
+                    JointKind.RAIL_CLEAT, course, held, upright.x, near=near
                 )
         rows = sag_bar_rows(options.sag_bars, x1 - x0)
         places = [x0 + place for place in sag_bar_places(x1 - x0, rows)]

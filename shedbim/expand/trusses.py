@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from math import cos, tan
+from math import atan, cos, tan
 
 import numpy as np
 from numpy.typing import NDArray
@@ -51,16 +51,20 @@ class Truss:
     bottom_chord: Section
 
 
-def _bottom_pitch(options: TrussRoof, slope: Slope) -> float:
-    """Signed pitch of the bottom chord under a slope."""
+def _bottom_pitches(options: TrussRoof, slopes: Sequence[Slope]) -> list[float]:
+    """Signed pitch of the bottom chord under each slope of a span.
+
+    Under unequal slopes it is everywhere the same share of the roof's, so that both lengths meet at the ridge.
+    """
     if options.shape == "parallel":
-        return slope.pitch
-    return options.bottom_pitch if slope.rises else -options.bottom_pitch
+        return [s.pitch for s in slopes]
+    share = tan(options.bottom_pitch) / tan(abs(slopes[0].pitch))
+    return [atan(share * tan(s.pitch)) for s in slopes]
 
 
 def _bottom_rise(options: TrussRoof, slopes: Sequence[Slope]) -> float:
     """Axis of the bottom chord above the underside at the column line: its half depth on the steepest slope."""
-    return options.bottom_chord.height / 2 / min(cos(_bottom_pitch(options, s)) for s in slopes)
+    return options.bottom_chord.height / 2 / min(cos(pitch) for pitch in _bottom_pitches(options, slopes))
 
 
 def truss_lifts(options: TrussRoof, slopes: Sequence[Slope]) -> list[float]:
@@ -111,13 +115,13 @@ class _Maker:
         """The straight lengths of one chord, left to right."""
         rise = _bottom_rise(self.options, self.slopes)
         faces = []
-        for s in self.slopes:
+        for s, bottom_pitch in zip(self.slopes, _bottom_pitches(self.options, self.slopes), strict=True):
             low_x, low_z = (s.x0, s.z0) if s.rises else (s.x1, s.z1)
             axis = self.eaves + low_z + rise
             if which == _BOTTOM:
                 faces.append(
                     ChordFace(
-                        s.x0, s.x1, low_x, axis, tan(_bottom_pitch(self.options, s)),
+                        s.x0, s.x1, low_x, axis, tan(bottom_pitch),
                         self.options.bottom_chord.height / 2, 1,
                     )
                 )  # fmt: skip

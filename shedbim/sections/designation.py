@@ -27,7 +27,7 @@ def folded(name: str) -> str:
 def parse(text: str) -> tuple[str, Size] | None:
     """Give the folded family name and the size, or None where the text is no designation at all.
 
-    Case, spaces, ``×`` or ``*`` for ``x``, a decimal comma and trailing zeros do not matter, nor does a hyphen
+    Case, spaces, ``×`` or ``*`` for ``x``, a decimal comma and trailing zeros do not matter, nor a hyphen
     straight behind the name; a letter that follows the depth, as EN 10365 writes ``HE 300 B``, is taken into
     the name.
     """

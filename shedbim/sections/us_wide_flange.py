@@ -16,7 +16,7 @@ def shape(dimensions: Size) -> IShape:
     The root radius is k - tf, with the k that the properties are computed with (kdes).
     """
     d, bf, tw, tf, k = dimensions
-    return IShape(d, bf, tw, tf, k)
+    return IShape(d, bf, tw, tf, k - tf)
 
 
 FAMILIES = (

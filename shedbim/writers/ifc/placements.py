@@ -11,7 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.geometry.placements import Placements, compose, inverse
-from shedbim.writers.ifc.stepfile import StepFile
+from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
 from shedbim.writers.ifc.text import number, reals
 
 __all__ = ["axis2placement", "direction", "distinct_rows", "point", "relative", "write_placements"]
@@ -86,22 +86,19 @@ def write_placements(step: StepFile, placements: Placements) -> tuple[int, Integ
     turns = _rounded(placements[:, :, [2, 0]].swapaxes(1, 2).reshape(-1, 6), _PER_UNIT)
     turn_first, turn = distinct_rows(turns)
     axes = [
-        (direction(step, *row[:3]), direction(step, *row[3:]))
+        f"{direction(step, *row[:3])},{direction(step, *row[3:])}"
         for row in (turns[turn_first] / _PER_UNIT).tolist()
     ]
     first, kind = distinct_rows(np.column_stack([origins, turn]))
-    points = step.reserve(2 * len(first))
-    start = points + len(first)
-    line = step.template("IfcCartesianPoint", {"Coordinates": "(%s,%s,%s)"}) + step.template(
-        "IfcAxis2Placement3D", {"Location": "#%d", "Axis": "%s", "RefDirection": "%s"}
-    )
-    x, y, z = (_texts(column) for column in origins[first].T)
-    numbers = range(points, start)
-    turned = turn[first].tolist()
-    step.write(
-        line % (at, a, b, c, at + len(first), at, *axes[t])
-        for at, a, b, c, t in zip(numbers, x, y, z, turned, strict=True)
-    )
+    count = len(first)
+    points = step.reserve(2 * count)
+    start = points + count
+    template = step.template("IfcCartesianPoint", Coordinates=f"({SLOT},{SLOT},{SLOT})")
+    template += step.template("IfcAxis2Placement3D", Location=f"#{SLOT}", Axis=f"{SLOT}")
+    numbers = numbered(points, count)
+    turned = [axes[t] for t in turn[first].tolist()]
+    coordinates = [_texts(column) for column in origins[first].T]
+    step.fill(template, numbers, *coordinates, numbered(start, count), numbers, turned)
     return start, kind
 
 

@@ -2,17 +2,25 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping, Sequence
-from itertools import islice
+from collections.abc import Iterable, Sequence
+from itertools import chain, islice, repeat
 from typing import BinaryIO
 
 from shedbim.model.identity import global_ids
 from shedbim.writers.ifc.schema import Schema
 from shedbim.writers.ifc.text import NONE, quoted
 
-__all__ = ["StepFile"]
+__all__ = ["SLOT", "StepFile", "numbered"]
+
+#: Stands in a template where each line has a text of its own; no escaped string holds it.
+SLOT = "\0"
 
 _CHUNK = 4000  # lines held before they go to the sink
+
+
+def numbered(first: int, count: int) -> list[str]:
+    """Give ``count`` numbers from ``first`` on as texts."""
+    return [str(number) for number in range(first, first + count)]
 
 
 class StepFile:
@@ -34,13 +42,11 @@ class StepFile:
         self._lines: list[str] = []
         self._known: dict[str, str] = {}
 
-    def write(self, lines: Iterable[str]) -> None:
+    def write(self, lines: Sequence[str]) -> None:
         """Write finished lines, each with its own line end."""
-        stream = iter(lines)
-        while chunk := list(islice(stream, _CHUNK)):
-            self._lines += chunk
-            if len(self._lines) >= _CHUNK:
-                self.flush()
+        self._lines += lines
+        if len(self._lines) >= _CHUNK:
+            self.flush()
 
     def flush(self) -> None:
         """Hand to the sink what is held back."""
@@ -78,15 +84,28 @@ class StepFile:
         """Write an entity with a GlobalId and an owner; ``name`` is its stable name within the project."""
         return self.add(entity, GlobalId=quoted(self.ids([name])[0]), OwnerHistory=self.owner, **given)
 
-    def template(self, entity: str, slots: Mapping[str, str], **fixed: str) -> str:
-        """Give a line of many: a ``%`` format that takes the number, then the slots in the schema's order.
+    def template(self, entity: str, *slots: str, **given: str) -> str:
+        """Give a line that is to be written many times, with ``SLOT`` where each time something else stands.
 
         Args:
             entity: name as the schema spells it.
-            slots: attribute name to its own ``%`` format; the owner of rooted entities is filled in.
-            fixed: attribute name to the text all lines share.
+            slots: attributes that are nothing but a slot.
+            given: attribute name to its text, which may hold slots. The first slot of a line is the entity's
+                own number, the others follow in the schema's order; the owner of rooted entities is filled in.
         """
-        given = {name: text.replace("%", "%%") for name, text in fixed.items()} | dict(slots)
-        if "GlobalId" in given:
-            given["OwnerHistory"] = self.owner
-        return f"#%d={self.schema.text(entity, given)};\n"
+        texts = given | dict.fromkeys(slots, SLOT)
+        if "GlobalId" in texts:
+            texts["OwnerHistory"] = self.owner
+        return f"#{SLOT}={self.schema.text(entity, texts)};\n"
+
+    def fill(self, template: str, *columns: Iterable[str]) -> None:
+        """Write a template once for each row of ``columns``, of which there is one for each slot."""
+        first, *between = template.split(SLOT)
+        # Text and columns take turns; joining them all at once is the fastest way to fill a template.
+        turns = [repeat(first)]
+        for column, text in zip(columns, between, strict=True):
+            turns += [column, repeat(text)]
+        rows = zip(*turns)  # noqa: B905 - the constant texts never end
+        while chunk := "".join(chain.from_iterable(islice(rows, _CHUNK))):
+            self.write([chunk])
+            self.flush()

@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from math import isfinite
 
 from shedbim.errors import ModelError
 
-__all__ = ["FALSE", "NONE", "TRUE", "enum", "label", "listed", "metres", "number", "quoted", "reals", "typed"]
+__all__ = ["FALSE", "NONE", "TRUE", "enum", "label", "labels", "listed", "metres", "number", "quoted", "reals", "typed"]
 
 NONE = "$"
 TRUE = ".T."
@@ -23,9 +23,14 @@ _SIGNIFICANT = 12
 
 def quoted(text: str) -> str:
     """Give a string of any text: quotes and backslashes doubled, all but printable ASCII as code points."""
-    if text.isascii() and text.isprintable() and "'" not in text and "\\" not in text:
+    if _is_plain(text):
         return f"'{text}'"
     return f"'{_SPECIAL.sub(_escaped, text)}'"
+
+
+def _is_plain(text: str) -> bool:
+    """Whether a text may stand in a string as it is."""
+    return text.isascii() and text.isprintable() and "'" not in text and "\\" not in text
 
 
 def _escaped(match: re.Match[str]) -> str:
@@ -43,6 +48,14 @@ def _escaped(match: re.Match[str]) -> str:
 def label(text: str) -> str:
     """Give a string for an IfcLabel or IfcIdentifier, cut to the length they may have."""
     return quoted(text if len(text) <= _LABEL_LENGTH else text[: _LABEL_LENGTH - 1] + "…")
+
+
+def labels(texts: Sequence[str]) -> list[str]:
+    """Give many strings for IfcLabel or IfcIdentifier; quick where all of them are plain."""
+    joined = "".join(texts)
+    if _is_plain(joined) and max(map(len, texts), default=0) <= _LABEL_LENGTH:
+        return [f"'{text}'" for text in texts]
+    return [label(text) for text in texts]
 
 
 def number(value: float) -> str:
