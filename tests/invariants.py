@@ -149,15 +149,15 @@ def _end_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarra
         return bars.width[first] / 2 + 10.0
     if run.kind is JointKind.NODE:  # half the chord along the web, and the width of what lands beside it
         webs = run.pieces[:, 1:]
-        return bars.height[first] + 2.0 * bars.height[webs].sum(axis=1)
+        return bars.height[first] + bars.height[webs].sum(axis=1)
     brace = bars.size[last]
     if run.kind is JointKind.BRACE_GUSSET:
         # Past half the steel on either side, the set-back of 20 mm and the brace's own corner, all along a
-        # diagonal that may lie at 20 degrees to one of them: three times their sum.
+        # diagonal that may lie at 30 degrees to one of them: twice their sum.
         beside = max(bracing.struts.section.width, bracing.eaves_strut.section.width, *bars.width[first])
-        return 3.0 * (beside / 2 + 20.0 + brace)
+        return 2.0 * (beside / 2 + 20.0 + brace)
     if run.kind is JointKind.BRACE_CROSSING:  # half the tube that passes and a gap of 20 mm, likewise
-        return 3.0 * (20.0 + brace)
+        return 2.0 * (20.0 + brace)
     raise AssertionError(f"no bound for {run.kind}")
 
 

@@ -119,7 +119,14 @@ def test_defaults_taken_are_what_the_user_left_open() -> None:
     assert taken["bracing.struts.section"] == "CHS 88.9x4"
     assert taken["building.roof.pitch_right"] == "as pitch"
     assert taken["finish.secondary"] == "galvanized"
-    for given in ("purlins.spacing", "site", "site.level", "project.id", "frames.columns.base", "bracing.bays"):
+    for given in (
+        "purlins.spacing",
+        "site",
+        "site.level",
+        "project.id",
+        "frames.columns.base",
+        "bracing.bays",
+    ):
         assert given not in taken
 
 
@@ -153,7 +160,11 @@ def test_a_default_can_be_written_as_the_list_shows_it() -> None:
     """Each default is put in the user's own words: written out, it reads as the default."""
     text = changed("joinery-workshop", ("spacing: 1.55 m", "spacing: 1.8 m"))
     shown = dict(defaults_taken(read_text(text)))
-    words = [f"{name}: {shown[f'rails.{name}']}" for name in ("grade", "eaves_offset", "gap", "lift", "sag_bars")]
-    written = text.replace("  base_offset: 450 mm", "\n".join(f"  {line}" for line in ["base_offset: 450 mm", *words]))
+    words = [
+        f"{name}: {shown[f'rails.{name}']}" for name in ("grade", "eaves_offset", "gap", "lift", "sag_bars")
+    ]
+    written = text.replace(
+        "  base_offset: 450 mm", "\n".join(f"  {line}" for line in ["base_offset: 450 mm", *words])
+    )
     assert read_text(written) == read_text(text)
     assert "rails.gap" not in dict(defaults_taken(read_text(written)))

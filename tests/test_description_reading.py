@@ -102,7 +102,9 @@ def test_a_bare_number_where_a_unit_is_due_is_told_so(written: str) -> None:
     assert "for example 6 m" in fault.allowed
 
 
-@pytest.mark.parametrize("written", [".nan", "nan m", ".inf", "-.inf", "inf m", "1e99 m", "1e999 m", "-8 m", "0 m"])
+@pytest.mark.parametrize(
+    "written", [".nan", "nan m", ".inf", "-.inf", "inf m", "1e99 m", "1e999 m", "-8 m", "0 m"]
+)
 def test_lengths_that_are_not_finite_or_out_of_bounds_are_refused(written: str) -> None:
     fault = only_fault(changed("seed-store", ("eaves: 8 m", f"eaves: {written}")))
     assert fault.field == "building.eaves"
@@ -122,12 +124,18 @@ def test_lengths_that_are_not_finite_or_out_of_bounds_are_refused(written: str) 
 def test_a_group_that_does_not_say_its_kind_is_told_the_kinds(
     written: str, message: str, near: tuple[str, ...]
 ) -> None:
-    found = [f for f in faults(changed("seed-store", ("form: gable", written))) if f.field == "building.roof.form"]
-    assert [(f.message, f.nearest, f.allowed) for f in found] == [(message, near, "gable | mono-pitch | flat")]
+    found = [
+        f for f in faults(changed("seed-store", ("form: gable", written))) if f.field == "building.roof.form"
+    ]
+    assert [(f.message, f.nearest, f.allowed) for f in found] == [
+        (message, near, "gable | mono-pitch | flat")
+    ]
 
 
 def test_the_other_faults_of_a_group_of_unknown_kind_are_told_as_well() -> None:
-    text = changed("seed-store", ("system: rafter", "system: rafters"), ("rafter: IPE 300", "rafter: IPE 305"))
+    text = changed(
+        "seed-store", ("system: rafter", "system: rafters"), ("rafter: IPE 300", "rafter: IPE 305")
+    )
     found = faults(text.replace("posts: IPE 240", "post: IPE 240"))
     assert [f.field for f in found] == ["frames.gables.system", "frames.gables.rafter", "frames.gables.post"]
     assert found[1].nearest[0] == "IPE 300"
@@ -148,15 +156,30 @@ def test_the_other_faults_of_a_group_of_unknown_kind_are_told_as_well() -> None:
         ("building.bays[1]", "[7 m, 8 x 5.75 m, 7 m]", "[7 m, 0 x 6 m]", "0 repeats"),
         ("frames.roof.panels", "panels: 12", "panels: 12.0", "not a whole number"),
         ("frames.roof.panels", "panels: 12", "panels: 62", "out of bounds"),
-        ("frames.roof.top_chord", "SHS 150x150x8", "CHS 139.7x5", "a section of a shape that cannot be used here"),
+        (
+            "frames.roof.top_chord",
+            "SHS 150x150x8",
+            "CHS 139.7x5",
+            "a section of a shape that cannot be used here",
+        ),
         ("frames.columns.grade", "grade: S355", "grade: S335", "not a grade of this kind of steel"),
         ("purlins.section", "Z 200x75x20x2.5", "IPE 200", "a section of a shape that cannot be used here"),
         ("bracing.bays", "[first, last]", "[]", "the list is empty"),
         ("bracing.bays", "[first, last]", "[2, 2]", "an item is given twice"),
         ("bracing.bays[1]", "[first, last]", "[first, lats]", "not a whole number"),
         ("project.name", "Saltmarsh Seed Store", '""', "the text is empty"),
-        ("project.name", "Saltmarsh Seed Store", '"a\\u0007b"', "a control character or a line break in the text"),
-        ("project.name", "Saltmarsh Seed Store", '"a\\nb"', "a control character or a line break in the text"),
+        (
+            "project.name",
+            "Saltmarsh Seed Store",
+            '"a\\u0007b"',
+            "a control character or a line break in the text",
+        ),
+        (
+            "project.name",
+            "Saltmarsh Seed Store",
+            '"a\\nb"',
+            "a control character or a line break in the text",
+        ),
         ("project.name", "Saltmarsh Seed Store", "x" * 101, "the text has 101 letters"),
         ("site.crs", '"EPSG:25832"', "25832", "the text does not have the right form"),
     ],
@@ -196,7 +219,9 @@ def test_an_alias_is_one_fault_and_its_value_none() -> None:
 
 def test_yaml_1_2_is_read_as_it_is_meant() -> None:
     """Words that YAML 1.1 reads as truth values stay words; the 1.2 directive is allowed."""
-    text = "%YAML 1.2\n---\n" + changed("seed-store", ("Saltmarsh Seed Store", "No"), ("revision: P01", "revision: on"))
+    text = "%YAML 1.2\n---\n" + changed(
+        "seed-store", ("Saltmarsh Seed Store", "No"), ("revision: P01", "revision: on")
+    )
     project = read_text(text).project
     assert (project.name, project.revision) == ("No", "on")
 
@@ -266,7 +291,9 @@ def test_windows_line_ends_and_a_byte_order_mark_change_nothing(tmp_path: Path) 
         (b"#" * (MOST_BYTES + 1), "bytes", 0),
     ],
 )
-def test_a_file_that_is_no_short_text_is_refused(content: bytes, word: str, line: int, tmp_path: Path) -> None:
+def test_a_file_that_is_no_short_text_is_refused(
+    content: bytes, word: str, line: int, tmp_path: Path
+) -> None:
     path = tmp_path / "shed.yaml"
     path.write_bytes(content)
     with pytest.raises(DescriptionError) as caught:

@@ -108,12 +108,16 @@ def node_tree(text: str, file: str) -> Tree:
     try:
         for event in YAML(typ="safe", pure=True).parse(text):
             builder.take(event)
+            if builder.documents > 1:
+                break
     except MarkedYAMLError as error:
         mark = error.problem_mark or error.context_mark
         line, column = (mark.line + 1, mark.column + 1) if mark else (0, 0)
         raise builder.stop(f"not readable as YAML: {_plain(error)}", line, column) from None
     except (YAMLError, ValueError, OverflowError) as error:
-        raise builder.stop(f"not readable as YAML from here on: {printable(str(error))}", *builder.last) from None
+        raise builder.stop(
+            f"not readable as YAML from here on: {printable(str(error))}", *builder.last
+        ) from None
     if builder.root is None:
         raise builder.stop("the text is empty", 0, 0)
     return Tree(builder.root, builder.faults)
@@ -145,15 +149,13 @@ class _Builder:
         self._keys: list[_Key | None] = []
         self.last = (0, 0)
         self._count = 0
-        self._documents = 0
+        self.documents = 0
 
     def take(self, event: Event) -> None:
         """Takes the next event."""
         self.last = _place(event)
         if isinstance(event, DocumentStartEvent):
             self._document(event)
-        elif self._documents > 1:
-            return
         elif isinstance(event, _NodeEvent):
             self._count += 1
             line, column = _place(event)
@@ -167,9 +169,9 @@ class _Builder:
             self._keys.pop()
 
     def _document(self, event: DocumentStartEvent) -> None:
-        self._documents += 1
+        self.documents += 1
         line, column = _place(event)
-        if self._documents > 1:
+        if self.documents > 1:
             self._note("a second document in one file", line, column, allowed="one document without ---")
         if event.version not in {None, (1, 2)} or event.tags:
             self._note(

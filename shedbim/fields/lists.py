@@ -23,6 +23,11 @@ _REPEAT = re.compile(r"\s*([0-9]{1,6})\s*[x×*]\s+?(.+)|\s*([0-9]{1,6})\s*[x×*]
 class ListKind(Kind):
     """A list whose items are read one by one, each with its own faults, and then as a whole."""
 
+    @property
+    def longest(self) -> int:
+        """No list with more items than this can be right, so that its items need not be read."""
+        raise NotImplementedError
+
     def item(self, value: object) -> Any:
         """One item as read; raises FieldError."""
         raise NotImplementedError
@@ -44,6 +49,8 @@ class ListKind(Kind):
     def _listed(self, value: object) -> list[Any]:
         if not isinstance(value, list | tuple):
             raise FieldError("a list is wanted here, in square brackets", self.allowed)
+        if len(value) > self.longest:
+            raise FieldError(f"{len(value)} items in the list", self.allowed)
         return list(value)
 
     def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
@@ -72,6 +79,11 @@ class Repeats(ListKind):
         """Bounds of an item and of the number of items."""
         each = f"lengths of {self.low} to {self.high}, repeats as 8 x 6 m"
         return f"a list of {each}, 1 to {self.most} in all"
+
+    @property
+    def longest(self) -> int:
+        """As many as there may be in all."""
+        return self.most
 
     def item(self, value: object) -> tuple[int, float]:
         """The number of repeats and the length, mm."""
@@ -110,6 +122,11 @@ class Labels(ListKind):
         """The form of a label."""
         return f"a list of labels, one for each line ({self._LABEL.allowed})"
 
+    @property
+    def longest(self) -> int:
+        """As many as there may be lines."""
+        return self.most
+
     def item(self, value: object) -> str:
         """One label."""
         return self._LABEL.read(value)
@@ -147,6 +164,11 @@ class NumbersOr(ListKind):
     def allowed(self) -> str:
         """The words and the bounds."""
         return f"{self.rule!r}, or a list of {' | '.join(self.words)} | a number, {self.low} to {self.high}"
+
+    @property
+    def longest(self) -> int:
+        """Each number and each word once."""
+        return self.high - self.low + 1 + len(self.words)
 
     def word(self, value: object) -> object | None:
         """The rule."""

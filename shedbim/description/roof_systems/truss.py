@@ -31,7 +31,8 @@ class TrussRoof(RoofSystem):
         "distance of the chord axes, measured upright; of a pitched truss at the eaves"
     )
     bottom_pitch: Annotated[float, Quantity(units.ANGLE, "0 deg", "45 deg")] = default(
-        "0 deg", "pitch of the bottom chord of a pitched truss, under the left-hand slope where the slopes differ"
+        "0 deg",
+        "pitch of the bottom chord of a pitched truss, under the left-hand slope where the slopes differ",
     )
     top_chord: Annotated[Section, _CHORD] = required("section of the top chord")
     bottom_chord: Annotated[Section, _CHORD] = required("section of the bottom chord")

@@ -6,7 +6,7 @@ one run, because everything else refers to them: small numbers make a small file
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -20,19 +20,15 @@ from shedbim.writers.ifc.context import Contexts
 from shedbim.writers.ifc.parts import Mapped, PartWriter, shape_representation
 from shedbim.writers.ifc.placements import relative, write_placements
 from shedbim.writers.ifc.spatial import Storey
-from shedbim.writers.ifc.stepfile import StepFile
-from shedbim.writers.ifc.text import enum, label, listed, quoted
+from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
+from shedbim.writers.ifc.text import enum, label, labels, listed, quoted
 
 __all__ = ["Numbering", "number_pieces", "write_assemblies", "write_pieces", "write_tree"]
 
 Integers = NDArray[np.int64]
 
-#: A piece to be written: its number, its owner's placement, the number it lies at, its GlobalId, its name.
-Row = tuple[int, str, int, str, str]
-
 _MAPPED = "MappedRepresentation"
-_ELEMENT_SLOTS = {"GlobalId": "'%s'", "Name": "%s", "ObjectPlacement": "#%d"}
-_ENTITIES = 4  # of a piece besides itself where it has a shape of its own
+_ELEMENT = {"GlobalId": f"'{SLOT}'", "ObjectPlacement": f"#{SLOT}"}
 
 
 @dataclass(frozen=True, eq=False)
@@ -42,17 +38,18 @@ class Numbering:
     Attributes:
         order: (n,) the pieces in the order of their entities, which is that of their parts.
             starts: (p + 1,) where in ``order`` the pieces of each part begin, and the end.
-        references: n texts, in the order of the pieces.
+        in_order: n references, in the order of ``order``.
+        references: n references, in the order of the pieces.
     """
 
     order: Integers
     starts: list[int]
+    in_order: list[str]
     references: list[str]
 
-    def of_part(self, part: int) -> list[int]:
-        """Give the pieces of a part."""
-        found: list[int] = self.order[self.starts[part] : self.starts[part + 1]].tolist()
-        return found
+    def of_part(self, part: int) -> list[str]:
+        """Give the references of the pieces of a part."""
+        return self.in_order[self.starts[part] : self.starts[part + 1]]
 
 
 def number_pieces(shed: Shed) -> Numbering:
@@ -69,10 +66,11 @@ def number_pieces(shed: Shed) -> Numbering:
         if len(set(names)) < len(names):
             raise ModelError(f"two {what} of one name")
     order = np.argsort(shed.pieces.part, kind="stable")
-    numbers = np.empty(len(order), np.int64)
-    numbers[order] = np.arange(1, len(order) + 1)
+    ranks = np.empty_like(order)
+    ranks[order] = np.arange(len(order))
     starts = np.concatenate([[0], np.cumsum(shed.quantities)]).tolist()
-    return Numbering(order, starts, [f"#{number}" for number in numbers.tolist()])
+    in_order = [f"#{number}" for number in range(1, len(order) + 1)]
+    return Numbering(order, starts, in_order, [in_order[rank] for rank in ranks.tolist()])
 
 
 def write_assemblies(step: StepFile, shed: Shed, storey: Storey) -> tuple[list[str], list[str]]:
@@ -111,67 +109,52 @@ def write_assemblies(step: StepFile, shed: Shed, storey: Storey) -> tuple[list[s
 
 
 def write_pieces(
-    step: StepFile,
-    shed: Shed,
-    numbering: Numbering,
-    contexts: Contexts,
-    placements: Sequence[str],
-    storey: Storey,
+    step: StepFile, shed: Shed, numbering: Numbering, contexts: Contexts, outer: Sequence[str]
 ) -> None:
-    """Write parts and pieces, part by part; ``placements`` are those of the assemblies."""
-    pieces = shed.pieces
+    """Write parts and pieces, part by part; ``outer`` are the placements of the assemblies, then the storey's."""
+    pieces, order = shed.pieces, numbering.order.tolist()
     start, kinds = write_placements(
         step, relative(shed.assemblies.placement, pieces.placement, pieces.assembly)
     )
-    kind = kinds.tolist()
-    # The last of these is the storey's, which is where index -1 leads.
-    outer = [*placements, storey.placement]
-    owners = [outer[assembly] for assembly in pieces.assembly.tolist()]
-    names = [label(key) for key in pieces.keys]
-    ids = piece_ids(shed.project.id, pieces.keys)
+    keys = [pieces.keys[i] for i in order]
+    # Index -1, a loose piece, leads to the last one: the storey's.
+    owners = [outer[i] for i in pieces.assembly[numbering.order].tolist()]
+    places = [f"#{start + kind}" for kind in kinds[numbering.order].tolist()]
+    columns = (owners, places, numbered(1, len(keys)), piece_ids(shed.project.id, keys), labels(keys))
+    write_part_pieces = _write_owned_shapes if step.schema.is_first else _write_shared_shape
     parts = PartWriter(step, contexts)
-    for index, part in enumerate(shed.parts):
-        members = numbering.of_part(index)
-        if not members:
-            continue
-        mapped = parts.write(part, [numbering.references[i] for i in members])
-        numbers = range(numbering.starts[index] + 1, numbering.starts[index + 1] + 1)
-        rows = [
-            (number, owners[i], start + kind[i], ids[i], names[i])
-            for number, i in zip(numbers, members, strict=True)
-        ]
-        lines = _owned_shapes if step.schema.is_first else _shared_shape
-        step.write(lines(step, contexts, mapped, label(part.mark), rows))
+    for part, first, last in zip(shed.parts, numbering.starts, numbering.starts[1:], strict=False):
+        if first < last:
+            mapped = parts.write(part, numbering.in_order[first:last])
+            write_part_pieces(
+                step, contexts, mapped, label(part.mark), [column[first:last] for column in columns]
+            )
     parts.finish()
 
 
-def _shared_shape(
-    step: StepFile, contexts: Contexts, mapped: Mapped, tag: str, rows: Sequence[Row]
-) -> Iterator[str]:
-    """Give the lines of the pieces of a part, which share one shape."""
-    shape = step.add(
-        "IfcProductDefinitionShape",
-        Representations=listed(
-            shape_representation(step, context, identifier, _MAPPED, item)
-            for context, identifier, item in _representations(contexts, mapped)
-        ),
-    )
-    line = _local_line(step) + step.template(
-        mapped.element.entity, _ELEMENT_SLOTS, Representation=shape, Tag=tag
-    )
-    first = step.reserve(len(rows))
-    for local, (number, owner, placement, global_id, name) in enumerate(rows, first):
-        yield line % (local, owner, placement, number, global_id, name, local)
+def _write_shared_shape(
+    step: StepFile, contexts: Contexts, mapped: Mapped, tag: str, columns: Sequence[Sequence[str]]
+) -> None:
+    """Write the pieces of a part, which share one shape; ``columns`` are those of ``write_pieces``."""
+    shown = [
+        shape_representation(step, context, identifier, _MAPPED, item)
+        for context, identifier, item in _representations(contexts, mapped)
+    ]
+    shape = step.add("IfcProductDefinitionShape", Representations=listed(shown))
+    template = step.template("IfcLocalPlacement", "PlacementRelTo", "RelativePlacement")
+    template += step.template(mapped.element.entity, "Name", **_ELEMENT, Representation=shape, Tag=tag)
+    owners, places, elements, ids, names = columns
+    local = numbered(step.reserve(len(names)), len(names))
+    step.fill(template, local, owners, places, elements, ids, names, local)
 
 
-def _owned_shapes(
-    step: StepFile, contexts: Contexts, mapped: Mapped, tag: str, rows: Sequence[Row]
-) -> Iterator[str]:
-    """Give the lines of the pieces of a part, each with a shape of its own, as IFC2X3 wants it."""
-    held = "".join(
+def _write_owned_shapes(
+    step: StepFile, contexts: Contexts, mapped: Mapped, tag: str, columns: Sequence[Sequence[str]]
+) -> None:
+    """Write the pieces of a part, each with a shape of its own, as IFC2X3 wants it."""
+    template = "".join(
         step.template(
             "IfcShapeRepresentation",
-            {},
             ContextOfItems=context,
             RepresentationIdentifier=quoted(identifier),
             RepresentationType=quoted(_MAPPED),
@@ -179,38 +162,22 @@ def _owned_shapes(
         )
         for context, identifier, item in _representations(contexts, mapped)
     )
-    shape = step.template("IfcProductDefinitionShape", {"Representations": "(#%d,#%d)"})
-    element = step.template(
+    template += step.template("IfcProductDefinitionShape", Representations=f"(#{SLOT},#{SLOT})")
+    template += step.template("IfcLocalPlacement", "PlacementRelTo", "RelativePlacement")
+    template += step.template(
         mapped.element.entity,
-        _ELEMENT_SLOTS | {"Representation": "#%d"},
+        "Name",
+        **_ELEMENT,
+        Representation=f"#{SLOT}",
         Tag=tag,
         ObjectType=label(mapped.element.named or mapped.element.items[step.schema.name]),
     )
-    line = held + shape + _local_line(step) + element
-    first = step.reserve(_ENTITIES * len(rows))
-    for at, (number, owner, placement, global_id, name) in enumerate(rows):
-        axis = first + _ENTITIES * at
-        body, whole, local = axis + 1, axis + 2, axis + 3
-        yield line % (
-            axis,
-            body,
-            whole,
-            axis,
-            body,
-            local,
-            owner,
-            placement,
-            number,
-            global_id,
-            name,
-            local,
-            whole,
-        )
-
-
-def _local_line(step: StepFile) -> str:
-    """Give the template of a piece's placement: its number, its owner's reference, the number it lies at."""
-    return step.template("IfcLocalPlacement", {"PlacementRelTo": "%s", "RelativePlacement": "#%d"})
+    owners, places, elements, ids, names = columns
+    count = len(names)
+    axis, body, shape, local = (numbered(step.reserve(count), count) for _ in range(4))
+    step.fill(
+        template, axis, body, shape, axis, body, local, owners, places, elements, ids, names, local, shape
+    )  # fmt: skip
 
 
 def _representations(contexts: Contexts, mapped: Mapped) -> tuple[tuple[str, str, str], ...]:
@@ -233,13 +200,11 @@ def write_tree(
         RelatedElements=listed(loose),
         RelatingStructure=storey.itself,
     )
-    line = step.template(
-        "IfcRelAggregates", {"GlobalId": "'%s'", "RelatingObject": "%s", "RelatedObjects": "(%s)"}
-    )
     filled = [i for i, members in enumerate(inside) if members]
-    ids = step.ids([f"aggregates/assembly/{shed.assemblies.keys[i]}" for i in filled])
-    first = step.reserve(len(filled))
-    step.write(
-        line % (first + at, global_id, assemblies[i], ",".join(inside[i]))
-        for at, (i, global_id) in enumerate(zip(filled, ids, strict=True))
+    step.fill(
+        step.template("IfcRelAggregates", "RelatingObject", GlobalId=f"'{SLOT}'", RelatedObjects=f"({SLOT})"),
+        numbered(step.reserve(len(filled)), len(filled)),
+        step.ids([f"aggregates/assembly/{shed.assemblies.keys[i]}" for i in filled]),
+        [assemblies[i] for i in filled],
+        [",".join(inside[i]) for i in filled],
     )

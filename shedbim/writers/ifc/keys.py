@@ -11,8 +11,8 @@ from collections.abc import Sequence
 from shedbim.model.shed import Shed
 from shedbim.writers.ifc.elements import Numbering
 from shedbim.writers.ifc.properties import assembly_set, identifier, one_property, property_set, relate_set
-from shedbim.writers.ifc.stepfile import StepFile
-from shedbim.writers.ifc.text import label, listed, quoted
+from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
+from shedbim.writers.ifc.text import labels, quoted
 
 __all__ = ["write_assembly_sets", "write_full_keys", "write_split_keys"]
 
@@ -70,27 +70,29 @@ def write_full_keys(step: StepFile, shed: Shed, numbering: Numbering) -> None:
             zip(shed.assemblies.keys, shed.assemblies.type.tolist(), strict=True)
         )
     }
-    sets = step.ids([f"Shedbim_Piece/{key}" for key in keys])
-    relations = step.ids([f"defines/piece/{key}" for key in keys])
-    first = step.reserve(3 * len(keys))
-    line = (
-        step.template("IfcPropertySingleValue", {"NominalValue": "IFCIDENTIFIER(%s)"}, Name=quoted("Key"))
-        + step.template(
-            "IfcPropertySet", {"GlobalId": "'%s'", "HasProperties": "(#%d%s)"}, Name=quoted("Shedbim_Piece")
-        )
-        + step.template(
-            "IfcRelDefinesByProperties",
-            {"GlobalId": "'%s'", "RelatedObjects": "(%s)", "RelatingPropertyDefinition": "#%d"},
-        )
+    count = len(keys)
+    template = step.template(
+        "IfcPropertySingleValue", Name=quoted("Key"), NominalValue=f"IFCIDENTIFIER({SLOT})"
     )
-    owners = shed.pieces.assembly.tolist()
-    step.write(
-        line
-        % (
-            at, label(key), at + 1, sets[i], at, extra.get(owners[i], ""),
-            at + 2, relations[i], numbering.references[i], at + 1,
-        )
-        for i, (at, key) in enumerate(zip(range(first, first + 3 * len(keys), 3), keys, strict=True))
+    template += step.template(
+        "IfcPropertySet",
+        GlobalId=f"'{SLOT}'",
+        Name=quoted("Shedbim_Piece"),
+        HasProperties=f"(#{SLOT}{SLOT})",
+    )
+    template += step.template(
+        "IfcRelDefinesByProperties",
+        GlobalId=f"'{SLOT}'",
+        RelatedObjects=f"({SLOT})",
+        RelatingPropertyDefinition=f"#{SLOT}",
+    )
+    properties, sets, relations = (numbered(step.reserve(count), count) for _ in range(3))
+    set_ids = step.ids([f"Shedbim_Piece/{key}" for key in keys])
+    relation_ids = step.ids([f"defines/piece/{key}" for key in keys])
+    more = [extra.get(owner, "") for owner in shed.pieces.assembly.tolist()]
+    step.fill(
+        template, properties, labels(keys), sets, set_ids, properties, more,
+        relations, relation_ids, numbering.references, sets,
     )  # fmt: skip
 
 

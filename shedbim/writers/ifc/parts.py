@@ -48,9 +48,9 @@ class PartWriter:
         bodied = body(step, part.bar, profile(step, part.bar.section))
         self._colour(bodied.item, part.role)
         solid = self._map(bodied.item, "Body", bodied.kind, self._contexts.body)
-        common = common_set(step, part, element)
-        # IFC2X3 lists the standard sets for occurrences only, later schemas for types as well.
-        inherited = {} if step.schema.is_first else {"HasPropertySets": listed([common])}
+        sets = {"common": common_set(step, part, element), "part": part_set(step, part)}
+        # IFC2X3 lists the standard sets for occurrences only; later schemas let pieces inherit a type's.
+        inherited = {} if step.schema.is_first else {"HasPropertySets": listed(sets.values())}
         kind = step.rooted(
             element.entity + "Type",
             f"type/{part.mark}",
@@ -65,8 +65,8 @@ class PartWriter:
             "IfcRelDefinesByType", f"typed/{part.mark}", RelatedObjects=listed(pieces), RelatingType=kind
         )
         if step.schema.is_first:
-            relate_set(step, common, f"common/{part.mark}", pieces)
-        relate_set(step, part_set(step, part), f"part/{part.mark}", pieces)
+            for name, made in sets.items():
+                relate_set(step, made, f"{name}/{part.mark}", pieces)
         relate_set(step, quantity_set(step, part, element), f"quantities/{part.mark}", pieces)
         occurrences, types = self._made_of.setdefault((part.bar.section, part.grade), ([], []))
         occurrences.extend(pieces)

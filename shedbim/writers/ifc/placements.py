@@ -85,20 +85,19 @@ def write_placements(step: StepFile, placements: Placements) -> tuple[int, Integ
     origins = _rounded(placements[:, :, 3], _PER_MM)
     turns = _rounded(placements[:, :, [2, 0]].swapaxes(1, 2).reshape(-1, 6), _PER_UNIT)
     turn_first, turn = distinct_rows(turns)
-    axes = [
-        f"{direction(step, *row[:3])},{direction(step, *row[3:])}"
-        for row in (turns[turn_first] / _PER_UNIT).tolist()
-    ]
+    pairs = (turns[turn_first] / _PER_UNIT).reshape(-1, 2, 3).tolist()
+    axes, refs = ([direction(step, *pair[i]) for pair in pairs] for i in (0, 1))
     first, kind = distinct_rows(np.column_stack([origins, turn]))
     count = len(first)
     points = step.reserve(2 * count)
     start = points + count
     template = step.template("IfcCartesianPoint", Coordinates=f"({SLOT},{SLOT},{SLOT})")
-    template += step.template("IfcAxis2Placement3D", Location=f"#{SLOT}", Axis=f"{SLOT}")
+    template += step.template("IfcAxis2Placement3D", "Axis", "RefDirection", Location=f"#{SLOT}")
     numbers = numbered(points, count)
-    turned = [axes[t] for t in turn[first].tolist()]
+    turned = turn[first].tolist()
+    directions = ([axes[t] for t in turned], [refs[t] for t in turned])
     coordinates = [_texts(column) for column in origins[first].T]
-    step.fill(template, numbers, *coordinates, numbered(start, count), numbers, turned)
+    step.fill(template, numbers, *coordinates, numbered(start, count), numbers, *directions)
     return start, kind
 
 

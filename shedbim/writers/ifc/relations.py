@@ -2,19 +2,23 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from collections.abc import Mapping, Sequence
 
 import numpy as np
+from numpy.typing import NDArray
 
 from shedbim.errors import ModelError
 from shedbim.model.joints import JointKind, JointRun
 from shedbim.model.roles import Role
 from shedbim.model.shed import Shed
 from shedbim.writers.ifc.elements import Numbering
-from shedbim.writers.ifc.stepfile import StepFile
+from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
 from shedbim.writers.ifc.text import label, listed, quoted
 
 __all__ = ["GROUPS", "write_groups", "write_joints"]
+
+Integers = NDArray[np.int64]
 
 #: Roles that are looked at together, by the name of their group.
 GROUPS: Mapping[str, tuple[Role, ...]] = {
@@ -32,7 +36,7 @@ def write_groups(step: StepFile, shed: Shed, numbering: Numbering) -> None:
     """Write the groups that have any pieces."""
     for name, roles in GROUPS.items():
         parts = [i for i, part in enumerate(shed.parts) if part.role in roles]
-        members = [numbering.references[piece] for part in parts for piece in numbering.of_part(part)]
+        members = [reference for part in parts for reference in numbering.of_part(part)]
         if not members:
             continue
         group = step.rooted("IfcGroup", f"group/{name}", Name=label(name))
@@ -42,7 +46,7 @@ def write_groups(step: StepFile, shed: Shed, numbering: Numbering) -> None:
 
 
 def write_joints(step: StepFile, shed: Shed, numbering: Numbering, *, shop_joints: bool) -> None:
-    """Write each joint as connections from the piece that carries to every other one.
+    """Write each joint as connections from the piece that carries to every other one; free ends are none.
 
     Args:
         step: the file.
@@ -53,56 +57,65 @@ def write_joints(step: StepFile, shed: Shed, numbering: Numbering, *, shop_joint
     Raises:
         ModelError: when a joint names a piece that is not there, or one piece twice.
     """
-    seen: dict[str, int] = {}
+    found: dict[JointKind, list[Integers]] = {}
     for run in shed.joints:
-        if run.kind is not JointKind.FREE:
-            _write_run(step, shed, numbering, run, _wanted(shed, run, shop_joints), seen)
+        if run.kind is JointKind.FREE or not run.pieces.size:
+            continue
+        _check(run, len(shed.pieces))
+        rows = run.pieces if shop_joints else run.pieces[~_in_one_shop_assembly(shed, run.pieces)]
+        carrying = np.repeat(rows[:, 0], rows.shape[1] - 1)
+        found.setdefault(run.kind, []).append(np.stack([carrying, rows[:, 1:].reshape(-1)]))
+    for kind, pairs in found.items():
+        _write_pairs(step, shed, numbering, kind, *np.concatenate(pairs, axis=1).tolist())
 
 
-def _wanted(shed: Shed, run: JointRun, shop_joints: bool) -> Sequence[Sequence[int]]:
-    """Give the rows of a run (m, k) that are to be written."""
-    rows = run.pieces
-    ordered = np.sort(rows, axis=1)
-    if rows.size and (rows.min() < 0 or rows.max() >= len(shed.pieces)):
+def _check(run: JointRun, count: int) -> None:
+    """Refuse joints of other than ``count`` pieces, and of a piece with itself."""
+    if run.pieces.min() < 0 or run.pieces.max() >= count:
         raise ModelError(f"a {run.kind.word} names a piece that is not there")
+    ordered = np.sort(run.pieces, axis=1)
     if (ordered[:, 1:] == ordered[:, :-1]).any():
         raise ModelError(f"a {run.kind.word} names one piece twice")
-    if not shop_joints and rows.size:
-        owner = shed.pieces.assembly[rows]
-        made = np.array([kind.made == "shop" for kind in shed.assembly_types] or [False])
-        together = (owner == owner[:, :1]).all(axis=1) & (owner[:, 0] >= 0)
-        types = shed.assemblies.type[owner[together, 0]] if together.any() else np.zeros(0, np.int64)
-        together[together] = made[types]
-        rows = rows[~together]
-    result: list[list[int]] = rows.tolist()
-    return result
 
 
-def _write_run(
+def _in_one_shop_assembly(shed: Shed, rows: Integers) -> NDArray[np.bool_]:
+    """Tell of joints (m, k) whether their pieces all are in one assembly made in the shop (m,)."""
+    # The last of these is where index -1 leads: a loose piece is in none.
+    made = [shed.assembly_types[type_].made == "shop" for type_ in shed.assemblies.type.tolist()] + [False]
+    owners = shed.pieces.assembly[rows]
+    together: NDArray[np.bool_] = (owners == owners[:, :1]).all(axis=1)
+    return together & np.array(made)[owners[:, 0]]
+
+
+def _write_pairs(
     step: StepFile,
     shed: Shed,
     numbering: Numbering,
-    run: JointRun,
-    rows: Sequence[Sequence[int]],
-    seen: dict[str, int],
+    kind: JointKind,
+    *pairs: Sequence[int],
 ) -> None:
-    """Write the connections of one run; ``seen`` counts the stable names already given."""
+    """Write the connections of one kind; ``pairs`` are the pieces that carry, and those they carry."""
     keys, references = shed.pieces.keys, numbering.references
-    pairs = [(row[0], other) for row in rows for other in row[1:]]
-    names = [f"{run.kind.name}/{keys[first]}{_BETWEEN}{keys[other]}" for first, other in pairs]
-    for i, name in enumerate(names):  # two pieces may meet twice
-        count = seen.get(name, 0)
-        seen[name] = count + 1
-        if count:
-            names[i] = f"{name}{_BETWEEN}{count}"
-    line = step.template(
+    of_kind = kind.name
+    names = [f"{of_kind}/{keys[one]}{_BETWEEN}{keys[other]}" for one, other in zip(*pairs, strict=True)]
+    if len(set(names)) < len(names):
+        names = _told_apart(names)
+    template = step.template(
         "IfcRelConnectsElements",
-        {"GlobalId": "'%s'", "RelatingElement": "%s", "RelatedElement": "%s"},
-        Name=quoted(run.kind.word),
+        "RelatingElement",
+        "RelatedElement",
+        GlobalId=f"'{SLOT}'",
+        Name=quoted(kind.word),
     )
-    number = step.reserve(len(pairs))
-    ids = step.ids(names)
-    step.write(
-        line % (number + at, ids[at], references[first], references[other])
-        for at, (first, other) in enumerate(pairs)
-    )
+    numbers = numbered(step.reserve(len(names)), len(names))
+    step.fill(template, numbers, step.ids(names), *([references[piece] for piece in side] for side in pairs))
+
+
+def _told_apart(names: Sequence[str]) -> list[str]:
+    """Give the names with a count behind those that came before: two pieces may meet twice."""
+    met: Counter[str] = Counter()
+    result = []
+    for name in names:
+        result.append(f"{name}{_BETWEEN}{met[name]}" if met[name] else name)
+        met[name] += 1
+    return result

@@ -8,7 +8,20 @@ from math import isfinite
 
 from shedbim.errors import ModelError
 
-__all__ = ["FALSE", "NONE", "TRUE", "enum", "label", "labels", "listed", "metres", "number", "quoted", "reals", "typed"]
+__all__ = [
+    "FALSE",
+    "NONE",
+    "TRUE",
+    "enum",
+    "label",
+    "labels",
+    "listed",
+    "metres",
+    "number",
+    "quoted",
+    "reals",
+    "typed",
+]
 
 NONE = "$"
 TRUE = ".T."

@@ -23,7 +23,7 @@ def write(
     schema: str = "IFC4",
     timestamp: str = "1970-01-01T00:00:00",
     full_keys: bool = False,
-    shop_joints: bool = True,
+    shop_joints: bool = False,
 ) -> None:
     """Write a building as an open BIM model in the ISO 10303-21 text format; equal input gives equal bytes.
 
@@ -32,8 +32,9 @@ def write(
         sink: takes the bytes, a part of the file at a time.
         schema: ``IFC4``, ``IFC4X3_ADD2`` or ``IFC2X3``.
         timestamp: ISO 8601, as the header states it.
-        full_keys: give each piece a property set with its whole key, instead of sets shared by line and place.
-        shop_joints: also write joints between pieces of one assembly made in the shop.
+        full_keys: give each piece a property set with its whole key, not sets shared by line and place.
+        shop_joints: also write the joints within assemblies made in the shop, as connections. They make a
+            large file a sixth larger, and the assembly says already that its pieces are one.
 
     Raises:
         ModelError: for another schema, or a building that breaks its own promises.
@@ -48,7 +49,7 @@ def write(
     storey = write_spatial(step, shed, contexts, units)
     grid = write_grid(step, shed.grid, contexts, storey)
     assemblies, placements = write_assemblies(step, shed, storey)
-    write_pieces(step, shed, numbering, contexts, placements, storey)
+    write_pieces(step, shed, numbering, contexts, [*placements, storey.placement])
     write_tree(step, shed, storey, numbering.references, assemblies, grid)
     write_assembly_sets(step, shed, assemblies)
     if full_keys:

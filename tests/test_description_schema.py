@@ -1,0 +1,91 @@
+"""The JSON Schema of the description: what an editor accepts is what the reader accepts, form for form."""
+
+from __future__ import annotations
+
+import json
+from typing import Any
+
+import pytest
+from jsonschema import Draft202012Validator
+from ruamel.yaml import YAML
+from spoiling import changed, faults
+
+from shedbim.description.listing import all_fields
+from shedbim.description.presets import preset_names
+from shedbim.description.schema import json_schema
+
+SCHEMA = json_schema()
+VALIDATOR = Draft202012Validator(SCHEMA)
+
+
+def loaded(text: str) -> Any:
+    """The text as any YAML 1.2 reader loads it."""
+    return YAML(typ="safe", pure=True).load(text)
+
+
+def test_the_schema_is_a_schema_and_plain_json() -> None:
+    Draft202012Validator.check_schema(SCHEMA)
+    assert json.loads(json.dumps(SCHEMA)) == SCHEMA
+    assert SCHEMA["$schema"] == "https://json-schema.org/draft/2020-12/schema"
+
+
+@pytest.mark.parametrize("preset", preset_names())
+def test_every_preset_is_valid(preset: str) -> None:
+    VALIDATOR.validate(loaded(changed(preset)))
+
+
+@pytest.mark.parametrize(
+    ("preset", "old", "new"),
+    [
+        ("seed-store", "eaves: 8 m", "eaves: 8"),
+        ("seed-store", "eaves: 8 m", "eaves: 8 furlongs"),
+        ("seed-store", "eaves: 8 m", "eave: 8 m"),
+        ("seed-store", "eaves: 8 m", "eaves: [8 m]"),
+        ("seed-store", "  eaves: 8 m  ", "  "),
+        ("seed-store", "8 x 5.75 m", "8 x 5.75"),
+        ("seed-store", "[7 m, 8 x 5.75 m, 7 m]", "[]"),
+        ("seed-store", "form: gable", "form: gabel"),
+        ("seed-store", "form: gable", "form: mono-pitch\n    pitch_right: 5 deg"),
+        ("seed-store", "panels: 12", "panels: twelve"),
+        ("seed-store", "panels: 12", "panels: 61"),
+        ("seed-store", "pattern: warren", "pattern: waren"),
+        ("seed-store", "base: pinned", "base: hinged"),
+        ("seed-store", "grade: S355", "grade: S335"),
+        ("seed-store", "section: HEB 300", "section: 300"),
+        ("seed-store", "[first, last]", "[first, 0]"),
+        ("seed-store", "[first, last]", "always"),
+        ("seed-store", '"EPSG:25832"', "25832"),
+        ("seed-store", "e2a817a6-", ""),
+        ("depot", "fall: 1:60", "fall: 60"),
+        ("depot", "system: truss", "system: rafter"),
+        ("joinery-workshop", "sag_bars: 1", "sag_bars: some"),
+    ],
+)
+def test_a_spoilt_preset_is_invalid_and_refused_by_the_reader_as_well(
+    preset: str, old: str, new: str
+) -> None:
+    text = changed(preset, (old, new))
+    assert not VALIDATOR.is_valid(loaded(text))
+    assert faults(text)
+
+
+def test_every_field_of_the_list_is_in_the_schema_with_its_words() -> None:
+    """Walks the schema as an editor does, through references and choices."""
+    found: dict[str, str] = {}
+
+    def walk(schema: dict[str, Any], path: str) -> None:
+        if "$ref" in schema:
+            walk(SCHEMA["$defs"][schema["$ref"].rpartition("/")[2]], path)
+        for choice in (*schema.get("oneOf", ()), *schema.get("anyOf", ())):
+            walk(choice, path)
+        for name, field in schema.get("properties", {}).items():
+            inner = f"{path}.{name}".removeprefix(".")
+            found[inner] = found.get(inner, "") + field.get("description", "")
+            walk(field, inner)
+
+    walk(SCHEMA, "")
+    for row in all_fields():
+        assert row.path in found
+        if not row.path.endswith((".form", ".system")):
+            assert row.explanation in found[row.path]
+            assert row.allowed in found[row.path] or row.allowed == "a group of fields"
