@@ -10,8 +10,9 @@ from hashlib import sha256
 from pathlib import Path
 
 from shedbim.description import Description, read_text
+from shedbim.description.reading import placed
 from shedbim.description.source import printable, read_source
-from shedbim.errors import OutputError
+from shedbim.errors import DescriptionError, OutputError
 from shedbim.expand import expand
 from shedbim.model.shed import Shed
 from shedbim.outputs import SCHEMAS, chosen
@@ -89,7 +90,10 @@ def build(
     description = read_text(text, printable(str(path)))
     imprint = Imprint(timestamp, schema, digest(text))
     tell("expanding", 1, total)
-    shed = expand(description)
+    try:
+        shed = expand(description)
+    except DescriptionError as error:
+        raise placed(error, text, printable(str(path))) from None
     files = write_outputs(
         shed,
         folder,

@@ -14,6 +14,7 @@ from scipy.spatial import cKDTree
 from shedbim.description.models import Description
 from shedbim.geometry.placements import apply, compose, inverse
 from shedbim.model.joints import At, JointKind, JointRun
+from shedbim.model.roles import Role
 from shedbim.model.shed import Shed
 from shedbim.model.solids import solid
 from shedbim.sections.section import STEEL_DENSITY
@@ -35,6 +36,9 @@ __all__ = [
 
 #: Work points hang on stock bars; a part may be this much shorter, in the middle of them.
 _SLACK = SAME_LENGTH / 2 + 1e-6
+
+#: What purlins stand on, besides columns.
+_ROOF_STEEL = (Role.RAFTER, Role.GABLE_RAFTER, Role.TOP_CHORD)
 
 
 class Bars:
@@ -143,21 +147,28 @@ def _end_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarra
     last = run.pieces[:, -1]
     if run.kind is JointKind.RAFTER_COLUMN:  # half the column and a 20 mm end plate, along the slope
         return (columns.height / 2 + 20.0) / np.abs(bars.x[last, 0])
-    if run.kind is JointKind.APEX:  # a 20 mm end plate, along the slope
-        return 20.0 / np.abs(bars.x[run.pieces, 0]).min(axis=1)
+    if run.kind is JointKind.APEX:
+        # A 20 mm end plate, along the slope; axes of unequal slopes cross the ridge at unequal levels.
+        slopes = 1 / np.abs(bars.x[run.pieces, 0])
+        return 20.0 * slopes.max(axis=1) + bars.height[first] / 2 * np.ptp(slopes, axis=1)
     if run.kind in (JointKind.STRUT_END, JointKind.TIE_END):  # half the steel at the line and a 10 mm gap
         return bars.width[first] / 2 + 10.0
     if run.kind is JointKind.NODE:  # half the chord along the web, and the width of what lands beside it
         webs = run.pieces[:, 1:]
         return bars.height[first] + bars.height[webs].sum(axis=1)
-    brace = bars.size[last]
+    brace = bars.x[last]
+    room = 20.0 + bars.size[last]  # a set-back, and the corner of the brace itself
+    off_plane = 5.0 + bars.size[last]  # an angle stands on one side of its gusset
     if run.kind is JointKind.BRACE_GUSSET:
-        # Past half the steel on either side, the set-back of 20 mm and the brace's own corner, all along a
-        # diagonal that may lie at 30 degrees to one of them: twice their sum.
-        beside = max(bracing.struts.section.width, bracing.eaves_strut.section.width, *bars.width[first])
-        return 2.0 * (beside / 2 + 20.0 + brace)
-    if run.kind is JointKind.BRACE_CROSSING:  # half the tube that passes and a gap of 20 mm, likewise
-        return 2.0 * (20.0 + brace)
+        # Whichever is met first: the steel at the line, or the strut that runs along the building.
+        strut = max(bracing.struts.section.width, bracing.eaves_strut.section.width,
+                    bracing.struts.section.height, bracing.eaves_strut.section.height)  # fmt: skip
+        lengthwise, across = np.abs(brace[:, 1]), np.hypot(brace[:, 0], brace[:, 2])
+        beside = np.maximum(bars.width[first], columns.width) / 2 + room
+        return np.maximum(beside / lengthwise, (strut + room) / across) + off_plane
+    if run.kind is JointKind.BRACE_CROSSING:  # half the tube that passes, along the one that stops
+        sine = np.linalg.norm(np.cross(bars.x[first], brace), axis=1)
+        return room / sine
     raise AssertionError(f"no bound for {run.kind}")
 
 
@@ -166,6 +177,10 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
     bars = Bars(shed)
     purlins, rails, bracing = description.purlins, description.rails, description.bracing
     off_plane = max(bracing.roof.section.width, bracing.walls.section.width) + 5.0
+    columns = description.frames.columns.section
+    stub = _valley_stub(bars, description)
+    is_column = np.array([role is Role.COLUMN for role in bars.role])
+    roof_steel = np.array([role in _ROOF_STEEL for role in bars.role])
     # Rafters end 20 mm short of a ridge, measured level.
     ridge = 20.0
     reach = {
@@ -174,7 +189,10 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
         # The work point lies on the axis of the purlin or rail, which is lifted off its carrier.
         # Over the 20 mm end plate of a rafter the cleat is on the column beside it.
         JointKind.PURLIN_CLEAT: float(np.hypot(purlins.lift + purlins.section.height / 2, 20.0)),
-        JointKind.RAIL_CLEAT: rails.lift + rails.section.height / 2,
+        # Where the roof steel is wider than a corner column, rails stand off the column by as much more.
+        JointKind.RAIL_CLEAT: rails.lift
+        + rails.section.height / 2
+        + max(0.0, (max(bars.width[roof_steel], default=0.0) - columns.width) / 2),
         # The carrier ends an end plate of 20 mm away, or is above the head of a post by a gap of 25 mm.
         JointKind.CHORD_COLUMN: 20.0,
         JointKind.POST_HEAD: 25.0 / np.cos(max(abs(_pitch(x)) for x in bars.x)),
@@ -186,11 +204,27 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
             pieces = run.pieces[:, column]
             rows = np.flatnonzero(run.at[:, column] == At.ALONG)
             away = bars.outside(pieces[rows], run.points[rows])
-            bound = reach.get(run.kind, 0.0)
-            for row, far in zip(rows, away, strict=True):
-                if far > bound + _SLACK:
-                    key = shed.pieces.keys[pieces[row]]
-                    yield f"{run.kind.word} on {key}: {far:.1f} mm away from it, at most {bound:.1f}"
+            bound = np.full(len(rows), reach.get(run.kind, 0.0))
+            if run.kind is JointKind.PURLIN_CLEAT:
+                bound[is_column[pieces[rows]]] += stub
+            for row in np.flatnonzero(away > bound + _SLACK):
+                key = shed.pieces.keys[pieces[rows[row]]]
+                yield f"{run.kind.word} on {key}: {away[row]:.1f} mm away from it, at most {bound[row]:.1f}"
+
+
+def _valley_stub(bars: Bars, description: Description) -> float:
+    """How far the roof stands above the head of a valley column within its cleats' reach, mm; 0 without valleys.
+
+    The head is square, at the lower of the two slopes.
+    """
+    building, columns = description.building, description.frames.columns.section
+    slopes = building.roof.slopes(building.spans)
+    if len(slopes) < 3 or slopes[0].rises == slopes[1].rises:
+        return 0.0
+    pitches = [abs(slope.pitch) for slope in slopes]
+    steel = max(h for h, role in zip(bars.height.tolist(), bars.role, strict=True) if role in _ROOF_STEEL)
+    step = steel * (1 / np.cos(max(pitches)) - 1 / np.cos(min(pitches)))
+    return float((columns.height / 2 + 20.0) * np.tan(max(pitches)) + step)
 
 
 def _pitch(x: np.ndarray) -> float:

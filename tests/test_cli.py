@@ -20,6 +20,7 @@ import shedbim
 from shedbim import errors, outputs, pipeline
 from shedbim.cli import commands, main, speech
 from shedbim.cli.guard import EXIT_CODES
+from shedbim.cli.tables import show_table
 from shedbim.description import presets
 from shedbim.description.listing import all_fields
 from shedbim.sections.catalogue import designations, families
@@ -43,7 +44,7 @@ HEAVY = (
 )
 
 BARN = """\
-# A small shed with unequal bays,
+# A small [red]shed[/] with unequal bays,
 # spans and pitches. And more.
 project: {id: 5f0c9e3a-1111-4222-8333-123456789abc, name: "Grün [bold]Store[/] =1+1", number: 2417}
 building:
@@ -422,6 +423,8 @@ def test_no_text_of_a_user_acts_on_the_terminal(shell, capsys):
     speech.complain("x\x07\ny")
     assert capsys.readouterr() == ("a\\x1b[31mb\\tc\\u202ed ü m²\n", "x\\x07\ny\n")
     assert "\x1b" not in refused(shell, 2, "sections", "\x1b[31mIPE")
+    show_table(("name", "what"), [("a\x1b[31mb", "[red]c[/]")])
+    assert re.search(r"a\\x1b\[31mb +\[red\]c\[/\]", capsys.readouterr().out)
 
 
 # --- look-up ----------------------------------------------------------------------------------------
@@ -508,10 +511,10 @@ def test_summary_keys_explains_every_key(shell):
 
 
 def test_presets_are_listed_with_their_first_comment(shell, preset):
-    assert re.search(r"(?m)^ small-barn +A small shed with unequal bays", shell.ok("presets"))
+    assert re.search(r"(?m)^ small-barn +A small \[red\]shed\[/\] with unequal bays", shell.ok("presets"))
     told = json.loads(shell.ok("presets", "--json"))
     assert told == {
-        "presets": [{"name": preset, "meaning": "A small shed with unequal bays, spans and pitches"}]
+        "presets": [{"name": preset, "meaning": "A small [red]shed[/] with unequal bays, spans and pitches"}]
     }
 
 
@@ -522,7 +525,7 @@ def test_new_writes_a_commented_description_with_an_id_of_its_own(shell, preset)
     first, second = (shedbim.read(shell.folder / name) for name in ("a/first.yaml", "second.yaml"))
     assert len({first.project.id, second.project.id, "5f0c9e3a-1111-4222-8333-123456789abc"}) == 3
     assert first.building == second.building
-    assert (shell.folder / "a/first.yaml").read_text(encoding="utf-8").startswith("# A small shed")
+    assert (shell.folder / "a/first.yaml").read_text(encoding="utf-8").startswith("# A small [red]shed")
     shell.ok("build", "second.yaml", "-q", "--only", "summary")
 
 

@@ -9,7 +9,6 @@ from spoiling import changed, faults, only_fault
 
 from shedbim.description import read, read_text
 from shedbim.description.faults import MOST_FAULTS
-from shedbim.description.presets import preset_text
 from shedbim.description.source import MOST_BYTES
 from shedbim.errors import DescriptionError
 
@@ -19,7 +18,7 @@ JARGON = ("pydantic", "http", "input", "Input", "Literal", "validat", "NoneType"
 
 def test_all_faults_come_at_once_in_the_order_of_the_text() -> None:
     text = changed(
-        "seed-store",
+        "warren-gable",
         ("eaves: 8 m", "eave: 8 m"),
         ("pitch: 6 deg", "pitch: 80 deg"),
         ("section: HEB 300", "section: HEB 310"),
@@ -49,7 +48,7 @@ def test_all_faults_come_at_once_in_the_order_of_the_text() -> None:
 
 
 def test_a_fault_names_its_place_to_the_letter() -> None:
-    text = changed("seed-store", ("section: HEB 300", "section: HEB 310"))
+    text = changed("warren-gable", ("section: HEB 300", "section: HEB 310"))
     fault = only_fault(text)
     line = text.splitlines()[fault.line - 1]
     assert line[fault.column - 1 :].startswith("HEB 310")
@@ -60,7 +59,7 @@ def test_a_fault_names_its_place_to_the_letter() -> None:
 
 
 def test_an_item_of_a_list_is_named_by_its_number() -> None:
-    text = changed("seed-store", ("[7 m, 8 x 5.75 m, 7 m]", "\n    - 7 m\n    - 8 x 5.75 m\n    - 7"))
+    text = changed("warren-gable", ("[7 m, 8 x 5.75 m, 7 m]", "\n    - 7 m\n    - 8 x 5.75 m\n    - 7"))
     fault = only_fault(text)
     assert fault.field == "building.bays[2]"
     assert text.splitlines()[fault.line - 1] == "    - 7         # along the length, 60 m in all"
@@ -68,7 +67,7 @@ def test_an_item_of_a_list_is_named_by_its_number() -> None:
 
 
 def test_an_unknown_field_points_at_its_key_and_names_the_nearest() -> None:
-    text = changed("seed-store", ("  spacing: 1.8 m", "  spacing: 1.8 m\n  eaves_ofset: 2 m"))
+    text = changed("warren-gable", ("  spacing: 1.8 m", "  spacing: 1.8 m\n  eaves_ofset: 2 m"))
     fault = only_fault(text)
     assert (fault.field, fault.given) == ("rails.eaves_ofset", "eaves_ofset")
     assert fault.column == 3
@@ -77,7 +76,7 @@ def test_an_unknown_field_points_at_its_key_and_names_the_nearest() -> None:
 
 
 def test_a_missing_field_points_at_its_group() -> None:
-    text = changed("seed-store", ("    pitch: 6 deg\n", ""))
+    text = changed("warren-gable", ("    pitch: 6 deg\n", ""))
     fault = only_fault(text)
     assert (fault.field, fault.message) == ("building.roof.pitch", "the field is missing")
     assert text.splitlines()[fault.line - 1].strip() == "roof:"
@@ -85,7 +84,7 @@ def test_a_missing_field_points_at_its_group() -> None:
 
 
 def test_a_doubled_field_names_the_line_of_the_first() -> None:
-    text = changed("seed-store", ("eaves: 8 m", "eaves: 8 m\n  eaves: 9 m"))
+    text = changed("warren-gable", ("eaves: 8 m", "eaves: 8 m\n  eaves: 9 m"))
     fault = only_fault(text)
     first = next(i for i, line in enumerate(text.splitlines(), 1) if "eaves: 8 m" in line)
     assert fault.line == first + 1
@@ -95,9 +94,9 @@ def test_a_doubled_field_names_the_line_of_the_first() -> None:
 @pytest.mark.parametrize("written", ["6", "6.5", "[6, 5.75 m]"])
 def test_a_bare_number_where_a_unit_is_due_is_told_so(written: str) -> None:
     if written.startswith("["):
-        fault = only_fault(changed("seed-store", ("[7 m, 8 x 5.75 m, 7 m]", written)))
+        fault = only_fault(changed("warren-gable", ("[7 m, 8 x 5.75 m, 7 m]", written)))
     else:
-        fault = only_fault(changed("seed-store", ("depth: 1.6 m", f"depth: {written}")))
+        fault = only_fault(changed("warren-gable", ("depth: 1.6 m", f"depth: {written}")))
     assert fault.message == "a bare number: the unit is missing"
     assert "for example 6 m" in fault.allowed
 
@@ -106,7 +105,7 @@ def test_a_bare_number_where_a_unit_is_due_is_told_so(written: str) -> None:
     "written", [".nan", "nan m", ".inf", "-.inf", "inf m", "1e99 m", "1e999 m", "-8 m", "0 m"]
 )
 def test_lengths_that_are_not_finite_or_out_of_bounds_are_refused(written: str) -> None:
-    fault = only_fault(changed("seed-store", ("eaves: 8 m", f"eaves: {written}")))
+    fault = only_fault(changed("warren-gable", ("eaves: 8 m", f"eaves: {written}")))
     assert fault.field == "building.eaves"
     assert fault.given == written
     assert "2 m to 40 m" in fault.allowed
@@ -125,7 +124,9 @@ def test_a_group_that_does_not_say_its_kind_is_told_the_kinds(
     written: str, message: str, near: tuple[str, ...]
 ) -> None:
     found = [
-        f for f in faults(changed("seed-store", ("form: gable", written))) if f.field == "building.roof.form"
+        f
+        for f in faults(changed("warren-gable", ("form: gable", written)))
+        if f.field == "building.roof.form"
     ]
     assert [(f.message, f.nearest, f.allowed) for f in found] == [
         (message, near, "gable | mono-pitch | flat")
@@ -134,7 +135,7 @@ def test_a_group_that_does_not_say_its_kind_is_told_the_kinds(
 
 def test_the_other_faults_of_a_group_of_unknown_kind_are_told_as_well() -> None:
     text = changed(
-        "seed-store", ("system: rafter", "system: rafters"), ("rafter: IPE 300", "rafter: IPE 305")
+        "warren-gable", ("system: rafter", "system: rafters"), ("rafter: IPE 300", "rafter: IPE 305")
     )
     found = faults(text.replace("posts: IPE 240", "post: IPE 240"))
     assert [f.field for f in found] == ["frames.gables.system", "frames.gables.rafter", "frames.gables.post"]
@@ -185,14 +186,14 @@ def test_the_other_faults_of_a_group_of_unknown_kind_are_told_as_well() -> None:
     ],
 )
 def test_a_value_that_its_field_cannot_take_is_told_why(field: str, old: str, new: str, message: str) -> None:
-    found = {fault.field: fault for fault in faults(changed("seed-store", (old, new)))}
+    found = {fault.field: fault for fault in faults(changed("warren-gable", (old, new)))}
     assert found[field].message == message
     assert found[field].allowed
     assert found[field].line > 1
 
 
 def test_near_words_are_given_for_a_misspelt_word_in_a_list() -> None:
-    assert only_fault(changed("seed-store", ("[first, last]", "[first, lats]"))).nearest == ("last",)
+    assert only_fault(changed("warren-gable", ("[first, last]", "[first, lats]"))).nearest == ("last",)
 
 
 @pytest.mark.parametrize(
@@ -209,25 +210,25 @@ def test_near_words_are_given_for_a_misspelt_word_in_a_list() -> None:
     ],
 )
 def test_yaml_that_means_something_else_than_it_shows_is_refused(old: str, new: str, message: str) -> None:
-    assert message in [fault.message for fault in faults(changed("seed-store", (old, new)))]
+    assert message in [fault.message for fault in faults(changed("warren-gable", (old, new)))]
 
 
 def test_an_alias_is_one_fault_and_its_value_none() -> None:
-    text = changed("seed-store", ("eaves: 8 m", "eaves: *high"))
+    text = changed("warren-gable", ("eaves: 8 m", "eaves: *high"))
     assert [fault.message for fault in faults(text)] == ["an alias"]
 
 
 def test_yaml_1_2_is_read_as_it_is_meant() -> None:
     """Words that YAML 1.1 reads as truth values stay words; the 1.2 directive is allowed."""
     text = "%YAML 1.2\n---\n" + changed(
-        "seed-store", ("Saltmarsh Seed Store", "No"), ("revision: P01", "revision: on")
+        "warren-gable", ("Saltmarsh Seed Store", "No"), ("revision: P01", "revision: on")
     )
     project = read_text(text).project
     assert (project.name, project.revision) == ("No", "on")
 
 
 def test_a_text_that_is_no_yaml_has_one_fault_with_its_place() -> None:
-    fault = only_fault(changed("seed-store", ("spans: [30 m]", "spans: [30 m")))
+    fault = only_fault(changed("warren-gable", ("spans: [30 m]", "spans: [30 m")))
     assert fault.message.startswith("not readable as YAML")
     assert fault.line > 1
 
@@ -244,7 +245,7 @@ def test_a_text_that_is_no_group_of_fields_is_refused(text: str) -> None:
 
 
 def test_very_many_faults_are_cut_short_and_counted() -> None:
-    text = preset_text("seed-store") + "".join(f"f{number}: 1\n" for number in range(500))
+    text = changed("warren-gable") + "".join(f"f{number}: 1\n" for number in range(500))
     found = faults(text)
     assert len(found) == MOST_FAULTS + 1
     assert "more faults" in found[-1].message
@@ -252,14 +253,14 @@ def test_very_many_faults_are_cut_short_and_counted() -> None:
 
 def test_messages_hold_no_words_of_the_library() -> None:
     text = changed(
-        "seed-store",
+        "warren-gable",
         ("eaves: 8 m", "eaves:"),
         ("form: gable", "form: 3"),
         ("    section: HEB 300", "    - HEB 300"),
         ("purlins:", "purlins: 3\npurlin:"),
         ("[first, last]", "{a: b}"),
     )
-    for changed_text in (text, "project: 3", preset_text("seed-store").replace("  pattern", "  patern")):
+    for changed_text in (text, "project: 3", changed("warren-gable").replace("  pattern", "  patern")):
         for fault in faults(changed_text):
             words = f"{fault.message} {fault.allowed}".split()
             assert not [word for word in words if word.strip(".,;:()") in JARGON], str(fault)
@@ -267,9 +268,9 @@ def test_messages_hold_no_words_of_the_library() -> None:
 
 def test_a_file_is_read_and_named_in_its_faults(tmp_path: Path) -> None:
     path = tmp_path / "shed.yaml"
-    path.write_text(preset_text("barn"), encoding="utf-8")
-    assert read(path) == read(str(path)) == read_text(preset_text("barn"))
-    path.write_bytes(changed("barn", ("40 ft", "40")).encode())
+    path.write_text(changed("feet"), encoding="utf-8")
+    assert read(path) == read(str(path)) == read_text(changed("feet"))
+    path.write_bytes(changed("feet", ("40 ft", "40")).encode())
     with pytest.raises(DescriptionError) as caught:
         read(path)
     assert caught.value.faults[0].file == str(path)
@@ -277,8 +278,8 @@ def test_a_file_is_read_and_named_in_its_faults(tmp_path: Path) -> None:
 
 def test_windows_line_ends_and_a_byte_order_mark_change_nothing(tmp_path: Path) -> None:
     path = tmp_path / "shed.yaml"
-    path.write_bytes(b"\xef\xbb\xbf" + preset_text("depot").replace("\n", "\r\n").encode())
-    assert read(path) == read_text(preset_text("depot"))
+    path.write_bytes(b"\xef\xbb\xbf" + changed("posted-flat").replace("\n", "\r\n").encode())
+    assert read(path) == read_text(changed("posted-flat"))
 
 
 @pytest.mark.parametrize(

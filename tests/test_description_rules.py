@@ -5,57 +5,61 @@ from __future__ import annotations
 import pytest
 from spoiling import changed, faults, only_fault
 
-from shedbim.description.presets import preset_names
+from shedbim.description.presets import preset_names, preset_text
 from shedbim.description.reading import read_text
 from shedbim.description.rules import RULES, broken_rules
 
-#: Rule, field that is named, preset, exchanges that break it and words of the fault.
+#: Rule, field that is named, specimen, exchanges that break it and words of the fault.
 BROKEN = [
-    ("labels_fit_the_lines", "building.letters", "depot", [("[A, B, C]", "[A, B]")], "2 labels for 3 lines"),
-    ("labels_fit_the_lines", "building.numbers", "barn", [("eaves: 14 ft", "numbers: [1, 2]\n  eaves: 14 ft")], "5 lines"),
-    ("bays_hold_columns", "building.bays", "seed-store",
+    ("labels_fit_the_lines", "building.letters", "posted-flat",
+     [("[A, B, C]", "[A, B]")], "2 labels for 3 lines"),
+    ("labels_fit_the_lines", "building.numbers", "feet",
+     [("eaves: 14 ft", "numbers: [1, 2]\n  eaves: 14 ft")], "5 lines"),
+    ("bays_hold_columns", "building.bays", "warren-gable",
      [("7 m, 8 x 5.75 m, 7 m", "7 m, 1.3 m"), ("HEB 300", "HEB 450")], "bay 2"),
-    ("bays_hold_columns", "building.spans", "joinery-workshop",
+    ("bays_hold_columns", "building.spans", "rafters",
      [("[18 m]", "[3 m]"), ("IPE 450", "HEM 1000")], "span 1"),
-    ("building_is_no_tower", "building.roof", "boat-hall",
+    ("building_is_no_tower", "building.roof", "pratt-mono",
      [("spans: [22 m]", "spans: [26 x 90 m]"), ("depth: 1.75 m", "depth: 6 m")], "too high"),
-    ("braced_bays_exist", "bracing.bays", "seed-store", [("[first, last]", "[first, 11]")], "no bay 11"),
-    ("depth_is_less_than_eaves", "frames.roof.depth", "seed-store",
+    ("braced_bays_exist", "bracing.bays", "warren-gable", [("[first, last]", "[first, 11]")], "no bay 11"),
+    ("depth_is_less_than_eaves", "frames.roof.depth", "warren-gable",
      [("eaves: 8 m", "eaves: 2.5 m"), ("depth: 1.6 m", "depth: 2.5 m")], "deeper than the eaves"),
-    ("depth_holds_the_webs", "frames.roof.depth", "seed-store",
+    ("depth_holds_the_webs", "frames.roof.depth", "warren-gable",
      [("depth: 1.6 m", "depth: 250 mm"), ("panels: 12", "panels: 60")], "no room for webs"),
-    ("panels_are_symmetric", "frames.roof.panels", "seed-store", [("panels: 12", "panels: 13")], "ridge"),
-    ("panels_are_symmetric", "frames.roof.panels", "depot", [("panels: 10", "panels: 11")], "straight truss"),
-    ("bottom_pitch_fits_the_shape", "frames.roof.bottom_pitch", "packing-house",
+    ("panels_are_symmetric", "frames.roof.panels", "warren-gable", [("panels: 12", "panels: 13")], "ridge"),
+    ("panels_are_symmetric", "frames.roof.panels", "posted-flat",
+     [("panels: 10", "panels: 11")], "straight truss"),
+    ("bottom_pitch_fits_the_shape", "frames.roof.bottom_pitch", "howe-valleys",
      [("shape: pitched", "shape: parallel")], "follows the roof"),
-    ("bottom_pitch_fits_the_shape", "frames.roof.bottom_pitch", "packing-house",
+    ("bottom_pitch_fits_the_shape", "frames.roof.bottom_pitch", "howe-valleys",
      [("bottom_pitch: 2 deg", "bottom_pitch: 10 deg")], "as steep as the roof"),
-    ("webs_fit_the_chords", "frames.roof.diagonals", "seed-store",
+    ("webs_fit_the_chords", "frames.roof.diagonals", "warren-gable",
      [("  diagonals: SHS 70x70x5", "  diagonals: SHS 150x150x5")], "SHS 140x140x8"),
-    ("webs_fit_the_chords", "frames.roof.posts", "boat-hall",
+    ("webs_fit_the_chords", "frames.roof.posts", "pratt-mono",
      [("posts: SHS 80x80x4", "posts: CHS 139.7x5")], "SHS 120x120x6"),
-    ("webs_meet_the_chords_well", "frames.roof.panels", "seed-store", [("panels: 12", "panels: 2")], "12 deg"),
-    ("webs_meet_the_chords_well", "frames.roof.panels", "seed-store", [("panels: 12", "panels: 40")], "77 deg"),
-    ("purlin_offsets_leave_a_slope", "purlins.eaves_offset", "barn",
-     [("[40 ft]", "[12 ft]"), ("spacing: 4 ft 6 in\n  eaves_offset: 6 in", "spacing: 4 ft\n  eaves_offset: 6 ft")], "slope"),
-    ("purlins_over_nodes_need_trusses", "purlins.set_out", "joinery-workshop",
+    ("webs_meet_the_chords_well", "frames.roof.panels", "warren-gable", [("panels: 12", "panels: 2")], "12"),
+    ("webs_meet_the_chords_well", "frames.roof.panels", "warren-gable", [("panels: 12", "panels: 40")], "77"),
+    ("purlin_offsets_leave_a_slope", "purlins.eaves_offset", "feet",
+     [("[40 ft]", "[12 ft]"), ("  eaves_offset: 6 in", "  eaves_offset: 6 ft")], "slope"),
+    ("purlins_over_nodes_need_trusses", "purlins.set_out", "rafters",
      [("spacing: 1.55 m", "spacing: 1.55 m\n  set_out: nodes")], "no trusses"),
-    ("rail_offsets_leave_a_wall", "rails.base_offset", "joinery-workshop",
+    ("rail_offsets_leave_a_wall", "rails.base_offset", "rafters",
      [("eaves: 5.4 m", "eaves: 2.4 m"), ("base_offset: 450 mm", "base_offset: 1.9 m")], "take up the wall"),
-    ("angles_cross", "bracing.roof.pattern", "packing-house", [("CHS 101.6x5", "L 80x80x8")], "tension only"),
-    ("wall_braces_fit_the_columns", "bracing.walls.section", "depot", [("L 90x90x8", "L 120x120x12")], "sticks out"),
-    ("wall_braces_fit_the_columns", "bracing.walls.section", "packing-house",
+    ("angles_cross", "bracing.roof.pattern", "howe-valleys", [("CHS 101.6x5", "L 80x80x8")], "tension only"),
+    ("wall_braces_fit_the_columns", "bracing.walls.section", "posted-flat",
+     [("L 90x90x8", "L 120x120x12")], "sticks out"),
+    ("wall_braces_fit_the_columns", "bracing.walls.section", "howe-valleys",
      [("HEA 320", "HEA 100"), ("CHS 114.3x5", "CHS 88.9x4")], "sticks out"),
 ]  # fmt: skip
 
 
 @pytest.mark.parametrize(
-    ("rule", "field", "preset", "exchanges", "words"), BROKEN, ids=[f"{row[0]}-{row[2]}" for row in BROKEN]
+    ("rule", "field", "name", "exchanges", "words"), BROKEN, ids=[f"{row[0]}-{row[2]}" for row in BROKEN]
 )
 def test_a_broken_rule_names_the_field_and_what_would_do(
-    rule: str, field: str, preset: str, exchanges: list[tuple[str, str]], words: str
+    rule: str, field: str, name: str, exchanges: list[tuple[str, str]], words: str
 ) -> None:
-    fault = only_fault(changed(preset, *exchanges))
+    fault = only_fault(changed(name, *exchanges))
     assert fault.field == field
     assert words in fault.message
     assert fault.allowed
@@ -68,12 +72,12 @@ def test_every_rule_is_broken_by_one_of_these() -> None:
 
 @pytest.mark.parametrize("preset", preset_names())
 def test_presets_keep_all_rules(preset: str) -> None:
-    assert broken_rules(read_text(changed(preset))) == []
+    assert broken_rules(read_text(preset_text(preset))) == []
 
 
 def test_rules_are_asked_also_where_other_fields_are_faulty() -> None:
     text = changed(
-        "seed-store",
+        "warren-gable",
         ("section: HEB 300", "section: HEB 310"),
         ("panels: 12", "panels: 13"),
         ("[first, last]", "[first, 12]"),
@@ -86,13 +90,13 @@ def test_rules_are_asked_also_where_other_fields_are_faulty() -> None:
 
 def test_a_rule_is_not_asked_about_what_could_not_be_read() -> None:
     """The depth is faulty itself: nothing more is said about it."""
-    text = changed("seed-store", ("depth: 1.6 m", "depth: 1.6"), ("panels: 12", "panels: 2"))
+    text = changed("warren-gable", ("depth: 1.6 m", "depth: 1.6"), ("panels: 12", "panels: 2"))
     assert [fault.field for fault in faults(text)] == ["frames.roof.depth"]
 
 
 def test_a_fault_of_a_default_stands_at_its_group_and_says_what_it_comes_to() -> None:
     text = changed(
-        "barn",
+        "feet",
         ("[40 ft]", "[10 ft]"),
         ("  eaves_offset: 6 in\n", ""),
         ("ridge_offset: 6 in", "ridge_offset: 1.6 m"),
@@ -104,10 +108,10 @@ def test_a_fault_of_a_default_stands_at_its_group_and_says_what_it_comes_to() ->
 
 
 def test_an_odd_number_of_panels_is_allowed_where_nothing_needs_symmetry() -> None:
-    read_text(changed("boat-hall", ("panels: 10", "panels: 11")))
+    read_text(changed("pratt-mono", ("panels: 10", "panels: 11")))
     read_text(
         changed(
-            "seed-store",
+            "warren-gable",
             ("panels: 12", "panels: 13"),
             ("pitch: 6 deg", "pitch: 6 deg\n    pitch_right: 8 deg"),
         )

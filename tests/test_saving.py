@@ -120,8 +120,19 @@ def test_moving_works_where_a_file_system_knows_no_links(folder, monkeypatch):
     def link(source, target):
         raise OSError(errno.EPERM, "Operation not permitted")
 
+    real = os.replace
+
+    def replace(source, target):
+        if target.name == "b.txt" and source.parent.name != "before":
+            raise PermissionError(errno.EACCES, "Permission denied")
+        real(source, target)
+
     monkeypatch.setattr(saving.os, "link", link)
     save(folder, {"a.txt": writes(b"new a")})
+    assert contents(folder) == {**OLD, "a.txt": b"new a"}
+    monkeypatch.setattr(saving.os, "replace", replace)
+    with pytest.raises(OutputError, match="permission denied"):
+        save(folder, {"a.txt": writes(b"newer a"), "b.txt": writes(b"new b")})
     assert contents(folder) == {**OLD, "a.txt": b"new a"}
 
 

@@ -87,6 +87,24 @@ def test_assemblies_hold_what_stands_inside_them():
     )
 
 
+def test_assemblies_hold_what_stands_two_levels_inside_them():
+    specimen = shed()
+    assembled = replace(
+        specimen.assemblies,
+        keys=("hall", *specimen.assemblies.keys),
+        type=np.array([2, 0, 0, 1, 1]),
+        placement=specimen.assemblies.placement[[0, 0, 1, 2, 3]],
+        parent=np.array([-1, 0, 0, 1, 2]),
+    )
+    owner = specimen.pieces.assembly
+    pieces = replace(specimen.pieces, assembly=np.where(owner < 0, owner, owner + 1))
+    kinds = (*specimen.assembly_types, AssemblyType("H1", "hall", "site"))
+    rows = tables.assemblies(shed(assemblies=assembled, assembly_types=kinds, pieces=pieces)).rows
+    held = specimen.mass - 3 * PARTS[3].bar.mass  # all but the loose ties
+    assert [(row[0], row[3], row[4]) for row in rows] == [("F1", 2, 6), ("A1", 2, 4), ("H1", 1, 12)]
+    assert rows[2][5] == pytest.approx(held, rel=1e-12)
+
+
 def test_assemblies_with_one_mark_and_different_steel_are_a_fault_of_the_program():
     specimen = shed()
     part = specimen.pieces.part.copy()

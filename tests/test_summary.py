@@ -55,7 +55,7 @@ def test_the_numbers_are_those_of_the_shed():
     assert told["project"] == {
         "id": "5f0c9e3a-0000-4000-8000-000000000001", "name": NASTY, "number": "+2417", "revision": "P01",
     }  # fmt: skip
-    assert told["joint_kinds"] == {JointKind.BASE.word: 4, JointKind.NODE.word: 2}
+    assert told["joint_kinds"] == {JointKind.PINNED_BASE.word: 4, JointKind.NODE.word: 2}
     assert told["defaults"][0] == {"field": "frames.columns.grade", "value": "S355"}
     assert told["notes"] == ["The ridge is assumed level."]
     assert told["cautions"] == list(CAUTIONS)

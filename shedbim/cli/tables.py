@@ -10,7 +10,6 @@ from typing import Any
 from rich.box import SIMPLE_HEAD
 from rich.console import Console
 from rich.table import Table
-from rich.text import Text
 
 from shedbim.cli.speech import printable
 
@@ -26,9 +25,9 @@ def show_table(
     table = Table(box=SIMPLE_HEAD, pad_edge=False)
     for place, heading in enumerate(headings):
         right = place in numbers
-        table.add_column(Text(heading), justify="right" if right else "left", no_wrap=right, overflow="fold")
+        table.add_column(heading, justify="right" if right else "left", no_wrap=right, overflow="fold")
     for row in rows:
-        table.add_row(*(Text(printable(cell)) for cell in row))
+        table.add_row(*(printable(cell) for cell in row))
     width = None if sys.stdout.isatty() else _WHOLE_LINES
     Console(file=sys.stdout, width=width, markup=False, highlight=False, emoji=False).print(table)
 

@@ -14,7 +14,7 @@ from shedbim.description.rules import broken_rules
 from shedbim.description.source import checked_text, printable, read_source
 from shedbim.errors import DescriptionError
 
-__all__ = ["read", "read_text"]
+__all__ = ["placed", "read", "read_text"]
 
 
 def read(path: str | Path) -> Description:
@@ -46,3 +46,14 @@ def read_text(text: str, file: str = "<text>") -> Description:
     if faults or description is None:
         raise DescriptionError(capped(faults, file))
     return description
+
+
+def placed(error: DescriptionError, text: str, file: str = "<text>") -> DescriptionError:
+    """The same faults with the places of their fields in the text, for faults found after it was read."""
+    source = Source(node_tree(checked_text(text, file), file).root, file)
+    return DescriptionError(
+        [
+            source.fault(fault.message, fault.field.split("."), given=fault.given, allowed=fault.allowed)
+            for fault in error.faults
+        ]
+    )

@@ -22,7 +22,7 @@ from shedbim.expand.set_out import even_places
 from shedbim.expand.sticks import stick
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
-from shedbim.sections.profiles import IShape
+from shedbim.sections.profiles import IShape, Pipe
 from shedbim.sections.section import Section
 
 __all__ = ["braced_bays", "bracing"]
@@ -246,17 +246,27 @@ class _Maker:
                 column = self.column_at(x)
                 at = pitched.point(x, self.depth()) + _LENGTHWISE * y
                 if column >= 0:
-                    side, strut = max(self.columns.width, frame.carrier.width) / 2, self.options.eaves_strut.section
+                    side = max(self.columns.width, frame.carrier.width) / 2
                 else:
-                    side, strut = frame.carrier.width / 2, self.options.struts.section
+                    side = frame.carrier.width / 2
+                strut, middle = self.strut_at_node(pitched, x, column)
                 planes = (
                     (at + inwards * (side + BRACE_SET_BACK), inwards),
-                    (at + along_slope * (strut.width / 2 + BRACE_SET_BACK), along_slope),
+                    (middle + along_slope * (_reach(strut, along_slope) + BRACE_SET_BACK), along_slope),
                 )
                 carrier = f"column/{self.layout.grid.letters[column]}" if column >= 0 else frame.carriers[number]
                 ends[line, x] = BraceEnd(at, Meets(carrier, At.ALONG, line), planes)
         corners = (ends[FIRST_LINE, x0], ends[SECOND_LINE, x1], ends[FIRST_LINE, x1], ends[SECOND_LINE, x0])
         return Panel(f"roof brace/{pitched.name}/{k}", corners, pitched.normal, turned=k % 2 == 0)
+
+    def strut_at_node(self, pitched: Pitched, x: float, column: int) -> tuple[Section, Array]:
+        """The strut at a bracing node of a slope, and where its axis crosses the frame's plane (3,)."""
+        if column >= 0:
+            section = self.options.eaves_strut.section
+            return section, np.array([x, 0.0, self.eaves_level(column)])
+        at_ridge = pitched.left_column < 0 and abs(x - pitched.slope.x0) < 1e-6
+        owner = self.layout.slopes[self.layout.slopes.index(pitched) - 1] if at_ridge else pitched
+        return self.options.struts.section, owner.point(x, self.depth())
 
     def column_at(self, x: float) -> int:
         """The number of the column line at x, or -1."""
@@ -313,3 +323,10 @@ class _Maker:
                 ends[line, z] = BraceEnd(at, Meets(f"column/{letter}", At.ALONG, line), planes)
         corners = (ends[FIRST_LINE, z0], ends[SECOND_LINE, z1], ends[FIRST_LINE, z1], ends[SECOND_LINE, z0])
         return Panel(f"wall brace/{letter}/{k}", corners, _ACROSS, turned=k % 2 == 0)
+
+
+def _reach(strut: Section, direction: Array) -> float:
+    """How far a strut along the building reaches from its axis along a unit vector (3,) in the frame's plane."""
+    if isinstance(strut.profile, Pipe):
+        return strut.width / 2
+    return float(abs(direction[0]) * strut.width + abs(direction[2]) * strut.height) / 2

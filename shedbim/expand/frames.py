@@ -214,7 +214,9 @@ def _post(
     y = outward * (end_wall_face(description, frame) - section.height / 2)
     over = [p for p in layout.slopes if p.slope.x0 - 1.0 <= x <= p.slope.x1 + 1.0]
     steel = [_underside_line(frame, layout.slopes.index(p), p) for p in over]
-    level = min(z + (x - x0) * rise for x0, z, rise in steel) - POST_HEAD_GAP
+    levels = [round(z + (x - x0) * rise, 6) for x0, z, rise in steel]
+    lowest = over[levels.index(min(levels))]
+    level = min(levels) - POST_HEAD_GAP
     normals = [(-rise, 0.0, 1.0) for _, _, rise in steel]
     if len(normals) == 2 and abs(steel[0][2] - steel[1][2]) < 1e-9:
         normals = normals[:1]
@@ -223,7 +225,7 @@ def _post(
     )
     member = Member(name, Role.GABLE_POST, bar, place, gables.grade, description.finish.frames)
     base = Meeting(JointKind.POST_BASE, (Meets(name, At.START),), np.array([x, y, layout.base]))
-    above = _lowest_piece(frame, layout.slopes.index(over[0]), over[0])
+    above = _lowest_piece(frame, layout.slopes.index(lowest), lowest)
     head = Meeting(
         JointKind.POST_HEAD, (Meets(above, At.ALONG), Meets(name, At.END)), np.array([x, 0.0, level])
     )

@@ -11,9 +11,7 @@ __all__ = ["notes"]
 def notes(description: Description) -> tuple[str, ...]:
     """Give the sentences that go with every output of a description."""
     found = [
-        "Nothing was calculated: every section is the user's own choice and needs checking to the local code "
-        "by a licensed engineer before anything is bought, cut or built.",
-        "Plates, bolts, welds and holes are not in the model yet. Chords and rafters stop "
+        "Plates, bolts and holes are not in the model yet: chords and rafters stop "
         f"{END_PLATE:g} mm short of columns and rafters {APEX_SET_BACK:g} mm short of the ridge, which leaves "
         "room for end plates.",
         f"Gable posts stop {POST_HEAD_GAP:g} mm below the steel above them, so that the roof can deflect.",

@@ -28,9 +28,6 @@ SHEETS: tuple[Callable[[Shed], Table], ...] = (members, assemblies, by_section, 
 
 _A4 = 9  # the paper number of ISO/IEC 29500-1, 18.3.1.63 (value from memory)
 _WIDEST = 40  # characters; longer texts wrap
-_LONGEST_TEXT = (
-    32767  # characters a cell holds (published limit of the file format's main reader, from memory)
-)
 _LONGEST_NAME = 80  # characters of the project's name in a footer, which holds 255 in all (from memory)
 
 
@@ -63,7 +60,7 @@ def _write_table(workbook: Workbook, table: Table, formats: Formats, footer: str
         for place, (column, cell) in enumerate(zip(table.columns, row, strict=True)):
             style = formats.cell(column)
             if isinstance(cell, str):
-                sheet.write_string(line, place, cell[:_LONGEST_TEXT], style)
+                sheet.write_string(line, place, cell, style)
             elif column.product is None:
                 sheet.write_number(line, place, cell, style)
             else:
@@ -106,8 +103,8 @@ def _write_about(workbook: Workbook, shed: Shed, imprint: Imprint, formats: Form
     sheet.set_column(0, 0, 30)
     sheet.set_column(1, 1, 90)
     for line, (name, text) in enumerate(about_lines(shed, imprint)):
-        sheet.write_string(line, 0, name[:_LONGEST_TEXT], formats.label)
-        sheet.write_string(line, 1, text[:_LONGEST_TEXT], formats.wrapped)
+        sheet.write_string(line, 0, name, formats.label)
+        sheet.write_string(line, 1, text, formats.wrapped)
     _set_up_page(sheet, "About", _footer(shed))
 
 
