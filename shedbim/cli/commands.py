@@ -1,6 +1,6 @@
 """The commands, their options and their help; what a command does is in a module it imports when it runs."""
 # ruff: noqa: PLC0415 - a command imports its stage when it runs, so that help comes at once
-# ruff: noqa: B008, PLR0917 - the way options are declared
+# ruff: noqa: B008 - the way options are declared
 
 from __future__ import annotations
 

@@ -8,7 +8,9 @@ from shedbim.description.listing import defaults_taken
 from shedbim.description.models import Description
 from shedbim.expand.assembling import assemble
 from shedbim.expand.bracing import bracing
-from shedbim.expand.frames import end_wall_face, gable_frame, inner_frame, roof_lifts
+from shedbim.expand.frame import end_wall_face
+from shedbim.expand.frames import inner_frame, roof_lifts
+from shedbim.expand.gables import gable_frame
 from shedbim.expand.kits import Run
 from shedbim.expand.layout import lay_out
 from shedbim.expand.notes import notes

@@ -59,7 +59,9 @@ def assemble(runs: Sequence[Run]) -> Assembled:
     types = group_assemblies(trees.templates, grouping)
     assemblies, assembly = trees.place(types.type_of, types.motion, len(keys))
     pieces = Pieces(tuple(keys), np.concatenate(parts), np.concatenate(placements), assembly)
-    flipped = [grouping.flipped[first : first + len(each)] for first, each in zip(starts, members, strict=False)]
+    flipped = [
+        grouping.flipped[first : first + len(each)] for first, each in zip(starts, members, strict=False)
+    ]
     joints = _joints(runs, [[m.name for m in each] for each in members], flipped, index)
     return Assembled(grouping.parts, pieces, types.types, assemblies, joints)
 
@@ -108,13 +110,16 @@ class _Trees:
             AssemblyTemplate(
                 kind,
                 made,
-                tuple((first + int(i), compose(back, m.placement)) for i, m in zip(own, kit.members, strict=True)),
+                tuple(
+                    (first + int(i), compose(back, m.placement))
+                    for i, m in zip(own, kit.members, strict=True)
+                ),
                 tuple((t, compose(back, origin)) for t, origin in children),
             )
         )
-        for child in child_nodes:
-            template, child_kit, at, _ = nodes[child]
-            nodes[child] = (template, child_kit, at, len(nodes))
+        for place in child_nodes:
+            template, child_kit, at, _ = nodes[place]
+            nodes[place] = (template, child_kit, at, len(nodes))
         nodes.append((len(self.templates) - 1, kit, own, -1))
         return len(self.templates) - 1, after
 

@@ -24,7 +24,9 @@ class Bay:
     last: bool
 
 
-def runs_of_bays(layout: Layout, kit: Callable[[Bay], Kit], chosen: Callable[[int], bool] = lambda _: True) -> list[Run]:
+def runs_of_bays(
+    layout: Layout, kit: Callable[[Bay], Kit], chosen: Callable[[int], bool] = lambda _: True
+) -> list[Run]:
     """Give the runs of the bays with a ``chosen`` number (0 for the first), one run for each kind of bay."""
     lengths = layout.bay_lengths
     count = len(lengths)

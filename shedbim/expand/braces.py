@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from shedbim.expand.clearances import CROSSING_GAP, GUSSET
 from shedbim.expand.impossible import impossible
-from shedbim.expand.kits import Meeting, Member, Meets
+from shedbim.expand.kits import Meeting, Meets, Member
 from shedbim.expand.sticks import stick, stop_before
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
@@ -71,7 +71,9 @@ def braces(
     steel = _Steel(section, role, grade, finish)
     first, second = panel.corners[:2], panel.corners[2:]
     if pattern == "single":
-        member, meetings = _brace(steel, f"{panel.name}/1", *(second if panel.turned else first), panel.normal, 0.0)
+        member, meetings = _brace(
+            steel, f"{panel.name}/1", *(second if panel.turned else first), panel.normal, 0.0
+        )
         return [member], meetings
     if isinstance(section.profile, Angle):
         return _crossed_angles(panel, steel)

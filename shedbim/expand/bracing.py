@@ -14,9 +14,10 @@ from shedbim.description.models import Description
 from shedbim.expand.bays import Bay, runs_of_bays
 from shedbim.expand.braces import BraceEnd, Panel, brace_reach, braces
 from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, STRUT_END_GAP
-from shedbim.expand.frames import Frame, post_places
+from shedbim.expand.frame import Frame
+from shedbim.expand.gables import post_places
 from shedbim.expand.impossible import impossible
-from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Member, Meets, Run
+from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout, Pitched
 from shedbim.expand.set_out import even_places
 from shedbim.expand.sticks import stick
@@ -64,9 +65,7 @@ class _Frames:
         return self.first if line == FIRST_LINE else self.second
 
 
-def bracing(
-    description: Description, layout: Layout, inner: Frame, gables: tuple[Frame, Frame]
-) -> list[Run]:
+def bracing(description: Description, layout: Layout, inner: Frame, gables: tuple[Frame, Frame]) -> list[Run]:
     """Give all bracing, struts and ties, bay by bay."""
     braced = braced_bays(description, layout)
 
@@ -130,7 +129,13 @@ class _Maker:
     # Struts
 
     def strut(
-        self, name: str, role: Role, section: Section, grade: str, at: Array, carriers: Sequence[tuple[str, float]]
+        self,
+        name: str,
+        role: Role,
+        section: Section,
+        grade: str,
+        at: Array,
+        carriers: Sequence[tuple[str, float]],
     ) -> None:
         """A strut along the building through ``at`` (3,); for each line its carrier and where the strut stops."""
         (first, stop_first), (second, stop_second) = carriers
@@ -245,16 +250,19 @@ class _Maker:
             for x, along_slope in ((x0, pitched.direction), (x1, -pitched.direction)):
                 column = self.column_at(x)
                 at = pitched.point(x, self.depth()) + _LENGTHWISE * y
-                if column >= 0:
-                    side = max(self.columns.width, frame.carrier.width) / 2
-                else:
-                    side = frame.carrier.width / 2
+                side = (
+                    max(self.columns.width, frame.carrier.width) / 2
+                    if column >= 0
+                    else frame.carrier.width / 2
+                )
                 strut, middle = self.strut_at_node(pitched, x, column)
                 planes = (
                     (at + inwards * (side + BRACE_SET_BACK), inwards),
                     (middle + along_slope * (_reach(strut, along_slope) + BRACE_SET_BACK), along_slope),
                 )
-                carrier = f"column/{self.layout.grid.letters[column]}" if column >= 0 else frame.carriers[number]
+                carrier = (
+                    f"column/{self.layout.grid.letters[column]}" if column >= 0 else frame.carriers[number]
+                )
                 ends[line, x] = BraceEnd(at, Meets(carrier, At.ALONG, line), planes)
         corners = (ends[FIRST_LINE, x0], ends[SECOND_LINE, x1], ends[FIRST_LINE, x1], ends[SECOND_LINE, x0])
         return Panel(f"roof brace/{pitched.name}/{k}", corners, pitched.normal, turned=k % 2 == 0)
@@ -311,10 +319,7 @@ class _Maker:
         for line, y, _ in self.lines():
             inwards = _LENGTHWISE if line == FIRST_LINE else -_LENGTHWISE
             for z, upwards in ((z0, _UP), (z1, -_UP)):
-                if z == z0 and at_base:
-                    strut = 0.0
-                else:
-                    strut = eaves_half if z == z1 and at_eaves else tier_half
+                strut = 0.0 if z == z0 and at_base else eaves_half if z == z1 and at_eaves else tier_half
                 at = np.array([x, y, z])
                 planes = (
                     (at + inwards * side, inwards),

@@ -9,7 +9,7 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from shedbim.expand.kits import HERE, NEXT_BAY, Meeting, Member, Meets
+from shedbim.expand.kits import HERE, NEXT_BAY, Meeting, Meets, Member
 from shedbim.expand.sticks import along, stick
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
@@ -61,7 +61,9 @@ def course_bar(
 ) -> Member:
     """Give the bar of one stretch of a course."""
     a, b = course.point + course.run * stretch.start, course.point + course.run * stretch.end
-    bar, place = stick(section, a, b, course.outward) if course.forwards else stick(section, b, a, course.outward)
+    bar, place = (
+        stick(section, a, b, course.outward) if course.forwards else stick(section, b, a, course.outward)
+    )
     return Member(course.name, role, bar, place, grade, finish)
 
 

@@ -20,7 +20,7 @@ from shedbim.model.bars import Bar
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 
-__all__ = ["FIRST_LINE", "HERE", "NEXT_BAY", "SECOND_LINE", "Kit", "Meeting", "Member", "Meets", "Run"]
+__all__ = ["FIRST_LINE", "HERE", "NEXT_BAY", "SECOND_LINE", "Kit", "Meeting", "Meets", "Member", "Run"]
 
 #: Where the piece of a meeting is looked for: in the kit itself, in the frame on the bay's first or
 #: second line, or in the bay after this one.

@@ -8,6 +8,7 @@ Glossary:
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
@@ -98,7 +99,7 @@ class Layout:
     def bay_labels(self) -> tuple[str, ...]:
         """``1-2``, ``2-3`` and so on."""
         numbers = self.grid.numbers
-        return tuple(f"{a}-{b}" for a, b in zip(numbers, numbers[1:], strict=False))
+        return tuple(f"{a}-{b}" for a, b in itertools.pairwise(numbers))
 
     @cached_property
     def bay_lengths(self) -> tuple[float, ...]:
@@ -109,7 +110,7 @@ class Layout:
     def span_names(self) -> tuple[str, ...]:
         """``A-B``, ``B-C`` and so on."""
         letters = self.grid.letters
-        return tuple(f"{a}-{b}" for a, b in zip(letters, letters[1:], strict=False))
+        return tuple(f"{a}-{b}" for a, b in itertools.pairwise(letters))
 
     def span_slopes(self, span: int) -> tuple[int, ...]:
         """Numbers of the slopes over a span, left to right."""
@@ -157,7 +158,7 @@ def lay_out(description: Description, lifts: Sequence[float], slopes: Sequence[S
     y = tuple(float(v) for v in np.cumsum([0.0, *building.bays]))
     letters = building.letters or column_letters(len(x))
     numbers = building.numbers or tuple(str(i + 1) for i in range(len(y)))
-    pitched = []
+    pitched: list[Pitched] = []
     for slope, lift in zip(slopes, lifts, strict=True):
         place = sum(p.slope.span == slope.span for p in pitched) + 1
         starts = abs(slope.x0 - x[slope.span]) < _SAME_PLACE

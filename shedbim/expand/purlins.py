@@ -19,8 +19,8 @@ from shedbim.expand.cold_formed import (
     sag_bar,
     sag_bar_places,
 )
-from shedbim.expand.frames import Frame
-from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Member, Meets, Run
+from shedbim.expand.frame import Frame
+from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout, Pitched, Surface
 from shedbim.expand.set_out import even_places, places_over, sag_bar_rows
 from shedbim.model.joints import At, JointKind
@@ -44,7 +44,9 @@ def purlins(
     return runs_of_bays(layout, kit)
 
 
-def purlin_courses(description: Description, layout: Layout, frame: Frame) -> list[tuple[Surface, list[Course]]]:
+def purlin_courses(
+    description: Description, layout: Layout, frame: Frame
+) -> list[tuple[Surface, list[Course]]]:
     """Give the purlin lines of every surface, left to right, at y = 0."""
     options = description.purlins
     found = []
@@ -151,7 +153,7 @@ def _neighbours(
     for surface, lines in courses:
         for number, (a, b) in enumerate(pairwise(lines), start=1):
             pairs.append((f"sag bar/{surface.name}/{number}", a, b, number))
-    for (left, a), (right, b) in pairwise(courses):
+    for (left, before), (_, after) in pairwise(courses):
         if left.slopes[-1].right_column < 0:
-            pairs.append((f"sag bar/{left.name}/ridge", a[-1], b[0], len(a)))
+            pairs.append((f"sag bar/{left.name}/ridge", before[-1], after[0], len(before)))
     return pairs

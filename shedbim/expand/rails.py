@@ -18,8 +18,8 @@ from shedbim.expand.cold_formed import (
     sag_bar,
     sag_bar_places,
 )
-from shedbim.expand.frames import Frame, Upright, end_wall_face
-from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Member, Meets, Run
+from shedbim.expand.frame import Frame, Upright, end_wall_face
+from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout
 from shedbim.expand.set_out import even_places, sag_bar_rows
 from shedbim.model.joints import At, JointKind
@@ -116,9 +116,7 @@ def gable_rails(description: Description, layout: Layout, frame: Frame, *, outwa
     """Give the rails of one gable wall; ``outward`` is -1 on the first line and +1 on the last."""
     grid, columns, options = layout.grid, description.frames.columns.section, description.rails
     y = outward * (end_wall_face(description, frame) + options.lift + options.section.height / 2)
-    corners = [
-        Upright(x, layout.column_top(i), f"column/{grid.letters[i]}") for i, x in enumerate(grid.x)
-    ]
+    corners = [Upright(x, layout.column_top(i), f"column/{grid.letters[i]}") for i, x in enumerate(grid.x)]
     uprights = sorted([*corners, *frame.posts], key=lambda upright: upright.x)
     members: list[Member] = []
     meetings: list[Meeting] = []
@@ -150,9 +148,7 @@ def gable_rails(description: Description, layout: Layout, frame: Frame, *, outwa
             members.append(_rail(description, course, stretch, Role.GABLE_RAIL))
             for upright, near in ((left, True), (right, False)):
                 held = Meets(upright.name, At.ALONG, FIRST_LINE)
-                meetings += line_joint(
-                    JointKind.RAIL_CLEAT, course, held, upright.x, near=near
-                )
+                meetings += line_joint(JointKind.RAIL_CLEAT, course, held, upright.x, near=near)
         rows = sag_bar_rows(options.sag_bars, x1 - x0)
         places = [x0 + place for place in sag_bar_places(x1 - x0, rows)]
         bars, joints = _sag_bars(description, courses, places, f"rail sag bar/{segment + 1}")
@@ -160,9 +156,7 @@ def gable_rails(description: Description, layout: Layout, frame: Frame, *, outwa
         meetings += joints
     number = 0 if outward < 0 else -1
     label = grid.numbers[number]
-    return Run(
-        Kit(tuple(members), tuple(meetings)), [label], np.array([grid.y[number]]), first_lines=[label]
-    )
+    return Run(Kit(tuple(members), tuple(meetings)), [label], np.array([grid.y[number]]), first_lines=[label])
 
 
 def _gable_levels(description: Description, layout: Layout) -> list[float]:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 from math import ceil, radians
 
@@ -23,7 +24,7 @@ def places_over(points: Sequence[float], first: float, last: float, spacing: flo
     inner = [p for p in sorted(points) if first + _NEAREST < p < last - _NEAREST]
     stops = [first, *inner, last]
     places = [first]
-    for a, b in zip(stops, stops[1:], strict=False):
+    for a, b in itertools.pairwise(stops):
         places.extend(even_places(a, b, spacing)[1:])
     return places
 

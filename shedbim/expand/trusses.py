@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Sequence
 from dataclasses import dataclass
 from math import atan, cos, tan
@@ -12,7 +13,7 @@ from numpy.typing import NDArray
 from shedbim.description.roof_systems import TrussRoof
 from shedbim.expand.clearances import END_PLATE, WEB_TO_CHORD_END
 from shedbim.expand.impossible import impossible
-from shedbim.expand.kits import Kit, Meeting, Member, Meets
+from shedbim.expand.kits import Kit, Meeting, Meets, Member
 from shedbim.expand.sticks import Planes, along, stick
 from shedbim.expand.web_ends import ChordFace, LandedWeb, WebAim, axes_miss, fits, land
 from shedbim.geometry.placements import translation
@@ -323,7 +324,7 @@ class _Maker:
         number = self.chords[which].index(face)
         misses = [
             axes_miss(landed[i], landed[j], lambda v: self._over(which, v).axis(v))
-            for i, j in zip(group, group[1:], strict=False)
+            for i, j in itertools.pairwise(group)
         ]
         worst = max(misses, key=abs, default=0.0)
         end = At.START if which == _BOTTOM else At.END

@@ -8,6 +8,7 @@ value also in secondary guides). What the axes then miss the chord axis by is th
 
 from __future__ import annotations
 
+import itertools
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
@@ -173,7 +174,9 @@ def _spread(
         face = web.faces[chord]
         wish = web.nodes[chord] if web.is_post else face.face_from(web.nodes[chord], direction)
         weight = 1e9 if web.is_post else 1.0
-        items.append((wish, _half_footprint(web, direction, chord), web.section.profile.thickness, weight, True))
+        items.append(
+            (wish, _half_footprint(web, direction, chord), web.section.profile.thickness, weight, True)
+        )
     node = webs[group[0]].nodes[chord]
     if kink is not None and abs(node - kink) < 1.0 and not any(webs[i].is_post for i in group):
         # No post stands at the ridge: keep the toes of either side off the mitre of the chord.
@@ -181,7 +184,7 @@ def _spread(
         items.insert(place, (kink, 0.0, 0.0, 1e9, False))
     run = max(webs[i].faces[chord].run for i in group)
     steps = [0.0]
-    for (_, half_a, wall_a, _, _), (_, half_b, wall_b, _, _) in zip(items, items[1:], strict=False):
+    for (_, half_a, wall_a, _, _), (_, half_b, wall_b, _, _) in itertools.pairwise(items):
         steps.append(half_a + half_b + (wall_a + wall_b) * run)
     offsets = np.cumsum(steps)
     wishes = np.array([item[0] for item in items]) - offsets
@@ -205,9 +208,7 @@ def _least_moves(wishes: Array, weights: Array) -> Array:
     return np.concatenate([np.full(int(count), mean) for mean, _, count in blocks])
 
 
-def axes_miss(
-    first: LandedWeb, second: LandedWeb, axis: Callable[[float], float]
-) -> float:
+def axes_miss(first: LandedWeb, second: LandedWeb, axis: Callable[[float], float]) -> float:
     """How far from a chord axis two web axes cross, mm, positive upwards; 0 where they are parallel."""
     d, e = first.direction, second.direction
     cross = float(d[0] * e[1] - d[1] * e[0])

@@ -203,5 +203,9 @@ def rounded(corners: list[tuple[float, float, float]]) -> Loop:
             bulges.extend([float(np.tan(turn / 4)), 0.0])
     array = np.array(points)
     # Drop points that two arcs share when they use up a whole side.
-    keep = [i for i in range(len(array)) if bulges[i] != 0.0 or np.linalg.norm(array[i] - array[(i + 1) % len(array)]) > 1e-9]
+    keep = [
+        i
+        for i in range(len(array))
+        if bulges[i] != 0.0 or np.linalg.norm(array[i] - array[(i + 1) % len(array)]) > 1e-9
+    ]
     return Loop(array[keep], np.array(bulges)[keep])

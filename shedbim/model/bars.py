@@ -62,14 +62,18 @@ class Bar:
     @cached_property
     def axis(self) -> tuple[float, float]:
         """Where the centroid axis enters and leaves the steel, x in mm."""
-        return -_least(self.section.outline, self.start), self.length - _greatest(self.section.outline, self.end)
+        return -_least(self.section.outline, self.start), self.length - _greatest(
+            self.section.outline, self.end
+        )
 
     @cached_property
     def volume(self) -> float:
         """Exact volume, mm³. A plane cut through the axis of centroids takes as much as it leaves."""
         first, last = self.axis
         outline = self.section.outline
-        corrections = _mean_offset(outline, self.end, at_end=True) - _mean_offset(outline, self.start, at_end=False)
+        corrections = _mean_offset(outline, self.end, at_end=True) - _mean_offset(
+            outline, self.start, at_end=False
+        )
         return outline.area * (last - first + corrections)
 
     @property
@@ -96,7 +100,8 @@ def _points(outline: Outline, cut: EndCut) -> Array:
     if len(cut.slopes) == 1:
         return corners
     following = np.roll(corners, -1, axis=0)
-    gradient = np.subtract(*cut.slopes)
+    first, second = np.array(cut.slopes)
+    gradient = first - second
     here, there = corners @ gradient, following @ gradient
     crossed = here * there < 0
     share = here[crossed] / (here[crossed] - there[crossed])

@@ -10,6 +10,7 @@ from __future__ import annotations
 import uuid
 from base64 import b64encode
 from collections.abc import Iterable, Sequence
+from functools import cache
 from hashlib import sha1
 
 __all__ = ["global_ids", "namespace", "piece_ids"]
@@ -28,6 +29,7 @@ _VARIANT = bytes(byte & 0x3F | 0x80 for byte in range(256))
 _PAD, _BYTES, _TEXT = b"\0\0", 18, 24
 
 
+@cache
 def namespace(project_id: str) -> uuid.UUID:
     """Give the scope of a project's ids: the id itself where it is a UUID, else one derived from its text."""
     try:

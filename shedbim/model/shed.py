@@ -156,7 +156,9 @@ class Shed:
         """For each part the marks of the shop assemblies it goes into, sorted; empty for loose pieces."""
         marks: list[set[str]] = [set() for _ in self.parts]
         inside = self.pieces.assembly >= 0
-        pairs = np.stack([self.pieces.part[inside], self.assemblies.type[self.pieces.assembly[inside]]], axis=1)
+        pairs = np.stack(
+            [self.pieces.part[inside], self.assemblies.type[self.pieces.assembly[inside]]], axis=1
+        )
         for part, kind in np.unique(pairs, axis=0) if len(pairs) else ():
             if self.assembly_types[kind].made == "shop":
                 marks[part].add(self.assembly_types[kind].mark)

@@ -55,7 +55,7 @@ def body(step: StepFile, bar: Bar, profile: str) -> Body:
 
 
 def _cuts(bar: Bar) -> list[tuple[EndCut, float, float]]:
-    """Give the cuts that are to be made: cut, x of its axis point in mm, +1 where the steel lies towards +x."""
+    """Give the cuts to make: cut, x of its axis point in mm, +1 where the steel lies towards +x."""
     first, last = bar.axis
     ends = ((_plain(bar.start), first, 1.0), (_plain(bar.end), last, -1.0))
     return [end for end in ends if not end[0].is_square]

@@ -1,4 +1,4 @@
-"""What a role and an assembly are in each schema: class, predefined type, and a name where the list has none."""
+"""What a role is in each schema: class, predefined type, and a name where the list has none."""
 
 from __future__ import annotations
 

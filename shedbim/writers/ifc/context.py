@@ -9,7 +9,7 @@ from math import cos, sin
 
 from shedbim.model.shed import Georeference
 from shedbim.version import __version__
-from shedbim.writers.ifc.placements import axis2placement, direction
+from shedbim.writers.ifc.placements import axis2placement, direction, point
 from shedbim.writers.ifc.stepfile import StepFile
 from shedbim.writers.ifc.text import enum, label, listed, number, quoted
 
@@ -26,12 +26,23 @@ _VIEWS = {"IFC2X3": "CoordinationView", "IFC4": "DesignTransferView", "IFC4X3_AD
 
 @dataclass(frozen=True)
 class Contexts:
-    """References to the context of the model and to those of its kinds of representations."""
+    """References to the context of the model, to those of its kinds of representations, and to no motion.
+
+    Attributes:
+        model: the context of the whole model.
+        axis: that of axes.
+        body: that of bodies.
+        footprint: that of the grid's lines.
+        unmoved: the placement that is where it belongs: unmoved and unturned.
+        unchanged: the operator that maps a representation as it is.
+    """
 
     model: str
     axis: str
     body: str
     footprint: str
+    unmoved: str
+    unchanged: str
 
 
 def header_lines(schema: str, timestamp: str) -> list[str]:
@@ -107,12 +118,13 @@ def _derived(step: StepFile, kind: str, factors: Sequence[tuple[str, int]]) -> s
 def write_contexts(step: StepFile, georeference: Georeference | None, metre: str) -> Contexts:
     """Write the contexts, and where the building stands on the map (IFC4 and later)."""
     turn = georeference.rotation if georeference else 0.0
+    unmoved = axis2placement(step, (0.0, 0.0, 0.0), (0.0, 0.0, 1.0), (1.0, 0.0, 0.0))
     model = step.add(
         "IfcGeometricRepresentationContext",
         ContextType=quoted("Model"),
         CoordinateSpaceDimension="3",
         Precision=number(_PRECISION),
-        WorldCoordinateSystem=axis2placement(step, (0.0, 0.0, 0.0), (0.0, 0.0, 1.0), (1.0, 0.0, 0.0)),
+        WorldCoordinateSystem=unmoved,
         # The building's x axis is turned from grid east by the rotation, so north is turned back from its y.
         TrueNorth=direction(step, sin(turn), cos(turn)),
     )
@@ -137,4 +149,12 @@ def write_contexts(step: StepFile, georeference: Georeference | None, metre: str
         )
         for name, view in (("Axis", "GRAPH_VIEW"), ("Body", "MODEL_VIEW"), ("FootPrint", "PLAN_VIEW"))
     )
-    return Contexts(model, axis, body, footprint)
+    unchanged = step.add(
+        "IfcCartesianTransformationOperator3D",
+        Axis1=direction(step, 1.0, 0.0, 0.0),
+        Axis2=direction(step, 0.0, 1.0, 0.0),
+        LocalOrigin=point(step, 0.0, 0.0, 0.0),
+        Scale=number(1.0),
+        Axis3=direction(step, 0.0, 0.0, 1.0),
+    )
+    return Contexts(model, axis, body, footprint, unmoved, unchanged)

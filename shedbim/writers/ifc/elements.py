@@ -111,7 +111,7 @@ def write_assemblies(step: StepFile, shed: Shed, storey: Storey) -> tuple[list[s
 def write_pieces(
     step: StepFile, shed: Shed, numbering: Numbering, contexts: Contexts, outer: Sequence[str]
 ) -> None:
-    """Write parts and pieces, part by part; ``outer`` are the placements of the assemblies, then the storey's."""
+    """Write parts and pieces, part by part; ``outer``: placements of the assemblies, then the storey's."""
     pieces, order = shed.pieces, numbering.order.tolist()
     start, kinds = write_placements(
         step, relative(shed.assemblies.placement, pieces.placement, pieces.assembly)

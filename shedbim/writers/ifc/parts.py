@@ -13,7 +13,7 @@ from shedbim.writers.ifc.bodies import body
 from shedbim.writers.ifc.classes import ElementClass, element_class
 from shedbim.writers.ifc.context import Contexts
 from shedbim.writers.ifc.materials import material, profile_properties, profile_set, profile_usage
-from shedbim.writers.ifc.placements import axis2placement, direction, point
+from shedbim.writers.ifc.placements import point
 from shedbim.writers.ifc.profiles import profile
 from shedbim.writers.ifc.properties import common_set, part_set, quantity_set, relate_set
 from shedbim.writers.ifc.stepfile import StepFile
@@ -81,22 +81,14 @@ class PartWriter:
 
     def _map(self, item: str, identifier: str, kind: str, context: str) -> str:
         """Write a representation of one item and the map that a type holds it by."""
-        unturned = axis2placement(self._step, (0.0, 0.0, 0.0), (0.0, 0.0, 1.0), (1.0, 0.0, 0.0))
         shown = shape_representation(self._step, context, identifier, kind, item)
-        return self._step.add("IfcRepresentationMap", MappingOrigin=unturned, MappedRepresentation=shown)
+        return self._step.add(
+            "IfcRepresentationMap", MappingOrigin=self._contexts.unmoved, MappedRepresentation=shown
+        )
 
     def _mapped(self, source: str) -> str:
         """Write the one use of a map: unmoved, unturned, unscaled."""
-        step = self._step
-        target = step.share(
-            "IfcCartesianTransformationOperator3D",
-            Axis1=direction(step, 1.0, 0.0, 0.0),
-            Axis2=direction(step, 0.0, 1.0, 0.0),
-            LocalOrigin=point(step, 0.0, 0.0, 0.0),
-            Scale=number(1.0),
-            Axis3=direction(step, 0.0, 0.0, 1.0),
-        )
-        return step.add("IfcMappedItem", MappingSource=source, MappingTarget=target)
+        return self._step.add("IfcMappedItem", MappingSource=source, MappingTarget=self._contexts.unchanged)
 
     def _colour(self, item: str, role: Role) -> None:
         """Write that a body has the colour of its role."""

@@ -42,7 +42,7 @@ def direction(step: StepFile, *ratios: float) -> str:
 def axis2placement(
     step: StepFile, origin: Sequence[float], axis: Sequence[float], ref: Sequence[float]
 ) -> str:
-    """Write (or find) a placement: ``origin`` (3,) mm, ``axis`` its z and ``ref`` its x as unit vectors (3,)."""
+    """Write (or find) a placement: ``origin`` (3,) mm, its z ``axis`` and its x ``ref`` as unit vectors."""
     return step.share(
         "IfcAxis2Placement3D",
         Location=point(step, *origin),
@@ -52,7 +52,7 @@ def axis2placement(
 
 
 def relative(outer: Placements, inner: Placements, owner: Integers) -> Placements:
-    """Give ``inner`` (n, 3, 4) seen from the row of ``outer`` (m, 3, 4) that ``owner`` (n,) names; -1: as it is."""
+    """Give ``inner`` (n, 3, 4) as seen from the rows of ``outer`` that ``owner`` (n,) names; -1: as it is."""
     result = inner.copy()
     owned = np.flatnonzero(owner >= 0)
     if len(owned):

@@ -138,7 +138,7 @@ def _indexed(step: StepFile, loop: Loop) -> str:
 
 
 def _middle(start: list[float], end: list[float], bulge: float) -> list[float]:
-    """Give the point halfway along an arc, mm: it stands off the chord by bulge times half of it, on the right."""
+    """Give the point halfway along an arc, mm: half the chord times the bulge off it, on the right."""
     (y1, z1), (y2, z2) = start, end
     return [(y1 + y2) / 2 + bulge * (z2 - z1) / 2, (z1 + z2) / 2 - bulge * (y2 - y1) / 2]
 

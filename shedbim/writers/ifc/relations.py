@@ -84,7 +84,8 @@ def _in_one_shop_assembly(shed: Shed, rows: Integers) -> NDArray[np.bool_]:
     made = [shed.assembly_types[type_].made == "shop" for type_ in shed.assemblies.type.tolist()] + [False]
     owners = shed.pieces.assembly[rows]
     together: NDArray[np.bool_] = (owners == owners[:, :1]).all(axis=1)
-    return together & np.array(made)[owners[:, 0]]
+    in_shop: NDArray[np.bool_] = together & np.array(made)[owners[:, 0]]
+    return in_shop
 
 
 def _write_pairs(

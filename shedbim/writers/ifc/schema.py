@@ -8,7 +8,7 @@ test holds them against those.
 from __future__ import annotations
 
 import json
-from collections.abc import Mapping
+from collections.abc import Mapping, Set
 from dataclasses import dataclass
 from functools import cache, cached_property
 from importlib.resources import files
@@ -39,20 +39,36 @@ class Entity:
         """The attributes that must be given."""
         return frozenset(a for a in self.attributes if a[0] != "*" and a[-1] != "?")
 
+    @cached_property
+    def _layouts(self) -> dict[tuple[str, ...], str]:
+        """The checked ``%`` format for each choice of attributes met so far."""
+        return {}
+
     def text(self, given: Mapping[str, str]) -> str:
         """Give ``IFCENTITY(...)`` with the attributes in order.
 
         Raises:
             ModelError: for an attribute the entity does not have, or a mandatory one not given.
         """
-        unknown = given.keys() - self._defaults.keys()
-        missing = [name for name in self._mandatory if given.get(name, NONE) == NONE]
-        if unknown or missing:
-            wrong = [f"no attribute {name}" for name in sorted(unknown)] + [
-                f"needs {name}" for name in sorted(missing)
-            ]
+        names = tuple(given)
+        if names not in self._layouts:
+            self._layouts[names] = self._layout(given.keys())
+        if NONE in given.values():
+            self._check({name for name, value in given.items() if value != NONE})
+        return self._layouts[names] % given
+
+    def _layout(self, names: Set[str]) -> str:
+        """Give the ``%`` format that takes these attributes by name; errors as ``text``."""
+        self._check(names)
+        values = [f"%({name})s" if name in names else default for name, default in self._defaults.items()]
+        return f"{self.name.upper()}({','.join(values)})"
+
+    def _check(self, names: Set[str]) -> None:
+        """Refuse attributes the entity does not have, and the lack of mandatory ones."""
+        wrong = [f"no attribute {name}" for name in sorted(names - self._defaults.keys())]
+        wrong += [f"needs {name}" for name in sorted(self._mandatory - names)]
+        if wrong:
             raise ModelError(f"{self.name}: {'; '.join(wrong)}")
-        return f"{self.name.upper()}({','.join([given.get(name, text) for name, text in self._defaults.items()])})"
 
 
 @dataclass(frozen=True)

@@ -7,7 +7,7 @@ from math import cos, sin
 
 from shedbim.model.shed import Georeference, Grid, Shed
 from shedbim.writers.ifc.context import Contexts
-from shedbim.writers.ifc.placements import axis2placement, point
+from shedbim.writers.ifc.placements import point
 from shedbim.writers.ifc.properties import property_set, relate_set
 from shedbim.writers.ifc.stepfile import StepFile
 from shedbim.writers.ifc.text import NONE, TRUE, enum, label, listed, number, quoted, typed
@@ -37,7 +37,6 @@ def write_spatial(step: StepFile, shed: Shed, contexts: Contexts, units: str) ->
         RepresentationContexts=listed([contexts.model]),
         UnitsInContext=units,
     )
-    unturned = axis2placement(step, (0.0, 0.0, 0.0), (0.0, 0.0, 1.0), (1.0, 0.0, 0.0))
     level = number((shed.georeference.level if shed.georeference else 0.0) / 1000)
     upper, placement = project, NONE
     found = {}
@@ -51,7 +50,9 @@ def write_spatial(step: StepFile, shed: Shed, contexts: Contexts, units: str) ->
             {} if step.schema.name == "IFC4X3_ADD2" else {"Elevation": "0."},
         ),
     ):
-        placement = step.add("IfcLocalPlacement", PlacementRelTo=placement, RelativePlacement=unturned)
+        placement = step.add(
+            "IfcLocalPlacement", PlacementRelTo=placement, RelativePlacement=contexts.unmoved
+        )
         found[entity] = step.rooted(
             entity,
             entity,
@@ -135,14 +136,13 @@ def write_grid(step: StepFile, grid: Grid, contexts: Contexts, storey: Storey) -
         RepresentationType=quoted("GeometricCurveSet"),
         Items=listed([step.add("IfcGeometricCurveSet", Elements=listed(curves))]),
     )
-    unturned = axis2placement(step, (0.0, 0.0, 0.0), (0.0, 0.0, 1.0), (1.0, 0.0, 0.0))
     kind = {} if step.schema.is_first else {"PredefinedType": enum("RECTANGULAR")}
     return step.rooted(
         "IfcGrid",
         "grid",
         Name=quoted("Grid"),
         ObjectPlacement=step.add(
-            "IfcLocalPlacement", PlacementRelTo=storey.placement, RelativePlacement=unturned
+            "IfcLocalPlacement", PlacementRelTo=storey.placement, RelativePlacement=contexts.unmoved
         ),
         Representation=step.add("IfcProductDefinitionShape", Representations=listed([footprint])),
         UAxes=listed(axes[0]),

@@ -102,7 +102,7 @@ class StepFile:
         """Write a template once for each row of ``columns``, of which there is one for each slot."""
         first, *between = template.split(SLOT)
         # Text and columns take turns; joining them all at once is the fastest way to fill a template.
-        turns = [repeat(first)]
+        turns: list[Iterable[str]] = [repeat(first)]
         for column, text in zip(columns, between, strict=True):
             turns += [column, repeat(text)]
         rows = zip(*turns)  # noqa: B905 - the constant texts never end

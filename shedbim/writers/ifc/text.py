@@ -47,7 +47,7 @@ def _is_plain(text: str) -> bool:
 
 
 def _escaped(match: re.Match[str]) -> str:
-    """Escape what ISO 10303-21 does not let stand in a string: \\X2\\ for 16 bits a character, \\X4\\ for 32."""
+    """Escape what may not stand in a string (ISO 10303-21): \\X2\\ for 16 bits a character, \\X4\\ for 32."""
     found = match.group()
     if found in {"'", "\\"}:
         return found * 2

@@ -1,0 +1,89 @@
+"""A frame as the bays see it, and the columns that every frame stands on."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from shedbim.description.models import Columns, Description
+from shedbim.expand.kits import Kit, Meeting, Meets, Member
+from shedbim.expand.layout import Layout
+from shedbim.expand.sticks import along, stick
+from shedbim.expand.trusses import Truss
+from shedbim.geometry.placements import translation
+from shedbim.model.joints import At, JointKind
+from shedbim.model.roles import Role
+from shedbim.sections.section import Section
+
+__all__ = ["Frame", "Upright", "columns", "end_wall_face", "frame_kit"]
+
+_UP = (0.0, 0.0, 1.0)
+_ACROSS = (1.0, 0.0, 0.0)
+
+
+@dataclass(frozen=True)
+class Upright:
+    """What gable rails are fastened to: its place x, the level of its head (mm), and its name."""
+
+    x: float
+    head: float
+    name: str
+
+
+@dataclass(frozen=True, eq=False)
+class Frame:
+    """A frame as a kit, with what the bays fasten to.
+
+    Attributes:
+        carriers: name of the piece under the roof surface, one for each slope.
+        carrier: its section.
+        trusses: one for each span, or none where rafters carry the roof.
+        posts: the gable posts, left to right.
+    """
+
+    kit: Kit
+    carriers: tuple[str, ...]
+    carrier: Section
+    trusses: tuple[Truss, ...] = ()
+    posts: tuple[Upright, ...] = ()
+
+
+def end_wall_face(description: Description, frame: Frame) -> float:
+    """Give how far the steel of an end frame stands out from its line, mm: columns, rafters and posts."""
+    return max(description.frames.columns.section.width, frame.carrier.width) / 2
+
+
+def columns(description: Description, layout: Layout) -> tuple[list[Member], list[Meeting]]:
+    """Give the columns of a frame, their bases and their free heads."""
+    options: Columns = description.frames.columns
+    base = JointKind.FIXED_BASE if options.base == "fixed" else JointKind.PINNED_BASE
+    members, meetings = [], []
+    for number, (letter, x) in enumerate(zip(layout.grid.letters, layout.grid.x, strict=True)):
+        met = layout.slopes_at_column(number)
+        # Under a valley the column stops square at its bottom, else it follows the roof.
+        normal = _UP if layout.is_valley(number) else met[0].normal
+        top = layout.column_top(number)
+        bar, place = stick(
+            options.section, (x, 0.0, layout.base), (x, 0.0, top), _ACROSS, end_planes=along(normal)
+        )
+        name = f"column/{letter}"
+        members.append(Member(name, Role.COLUMN, bar, place, options.grade, description.finish.frames))
+        meetings.append(Meeting(base, (Meets(name, At.START),), np.array([x, 0.0, layout.base])))
+        meetings.append(Meeting(JointKind.FREE, (Meets(name, At.END),), np.array([x, 0.0, top])))
+    return members, meetings
+
+
+def frame_kit(
+    members: Sequence[Member], meetings: Sequence[Meeting], layout: Layout, children: Sequence[Kit] = ()
+) -> Kit:
+    """Give the kit of a frame: its own members and meetings, and the trusses in it."""
+    inner = [meeting for child in children for meeting in child.meetings]
+    return Kit(
+        tuple(members),
+        (*meetings, *inner),
+        ("frame", "frame", "site"),
+        translation([0.0, 0.0, layout.base]),
+        tuple(children),
+    )
