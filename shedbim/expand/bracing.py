@@ -319,11 +319,12 @@ class _Maker:
         for line, y, _ in self.lines():
             inwards = _LENGTHWISE if line == FIRST_LINE else -_LENGTHWISE
             for z, upwards in ((z0, _UP), (z1, -_UP)):
-                strut = 0.0 if z == z0 and at_base else eaves_half if z == z1 and at_eaves else tier_half
+                strut = eaves_half if z == z1 and at_eaves else tier_half
+                stand_off = 0.0 if z == z0 and at_base else strut + BRACE_SET_BACK
                 at = np.array([x, y, z])
                 planes = (
                     (at + inwards * side, inwards),
-                    (at + upwards * (strut + BRACE_SET_BACK if strut else 0.0), upwards),
+                    (at + upwards * stand_off, upwards),
                 )
                 ends[line, z] = BraceEnd(at, Meets(f"column/{letter}", At.ALONG, line), planes)
         corners = (ends[FIRST_LINE, z0], ends[SECOND_LINE, z1], ends[FIRST_LINE, z1], ends[SECOND_LINE, z0])

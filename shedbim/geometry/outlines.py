@@ -113,7 +113,8 @@ class Outline:
 
     @cached_property
     def _moments(self) -> Array:
-        return np.sum([loop.moments for loop in self.loops], axis=0)
+        total: Array = np.sum([loop.moments for loop in self.loops], axis=0)
+        return total
 
     @property
     def area(self) -> float:
@@ -202,10 +203,8 @@ def rounded(corners: list[tuple[float, float, float]]) -> Loop:
             points.extend([pts[i] - a * cut, pts[i] + b * cut])
             bulges.extend([float(np.tan(turn / 4)), 0.0])
     array = np.array(points)
+    bends = np.array(bulges)
+    steps = np.linalg.norm(np.roll(array, -1, axis=0) - array, axis=1)
     # Drop points that two arcs share when they use up a whole side.
-    keep = [
-        i
-        for i in range(len(array))
-        if bulges[i] != 0.0 or np.linalg.norm(array[i] - array[(i + 1) % len(array)]) > 1e-9
-    ]
-    return Loop(array[keep], np.array(bulges)[keep])
+    keep = (bends != 0.0) | (steps > 1e-9)
+    return Loop(array[keep], bends[keep])
