@@ -14,10 +14,13 @@ if TYPE_CHECKING:
     from shedbim.model.shed import Shed
     from shedbim.writers.imprint import Imprint
 
-__all__ = ["OUTPUTS", "SCHEMAS", "Output", "chosen"]
+__all__ = ["OUTPUTS", "SCHEMAS", "VIEW_NAMES", "Output", "chosen"]
 
 #: Schemas of the model file, the default first.
 SCHEMAS = ("IFC4", "IFC4X3_ADD2", "IFC2X3")
+
+#: Views that pictures are drawn of; a test holds them against the table of views, which needs numpy.
+VIEW_NAMES = ("isometric", "back", "front", "side", "plan", "frame", "bay", "piece", "place")
 
 
 @dataclass(frozen=True)

@@ -24,6 +24,7 @@ __all__ = [
     "Progress",
     "build",
     "digest",
+    "read_and_expand",
     "write_model",
     "write_outputs",
     "write_schedules",
@@ -85,15 +86,8 @@ def build(
     path = Path(path)
     folder = Path("outputs") / path.stem if out is None else Path(out)
     tell = progress or _silent
-    tell("reading the description", 0, total)
-    text = read_source(path)
-    description = read_text(text, printable(str(path)))
+    description, shed, text = read_and_expand(path, lambda name, done: tell(name, done, total))
     imprint = Imprint(timestamp, schema, digest(text))
-    tell("expanding", 1, total)
-    try:
-        shed = expand(description)
-    except DescriptionError as error:
-        raise placed(error, text, printable(str(path))) from None
     files = write_outputs(
         shed,
         folder,
@@ -103,6 +97,28 @@ def build(
     )
     tell("done", total, total)
     return BuildResult(description, shed, imprint, folder, files)
+
+
+def read_and_expand(
+    path: Path, tell: Callable[[str, int], None] = lambda name, done: None
+) -> tuple[Description, Shed, str]:
+    """Give the description in a file, the shed it means, and its text.
+
+    Args:
+        path: the description.
+        tell: called with the name of a stage before it starts, and its number.
+
+    Raises:
+        DescriptionError: when the description is refused, or what it means cannot be built.
+    """
+    tell("reading the description", 0)
+    text, name = read_source(path), printable(str(path))
+    description = read_text(text, name)
+    tell("expanding", 1)
+    try:
+        return description, expand(description), text
+    except DescriptionError as error:
+        raise placed(error, text, name) from None
 
 
 def write_outputs(

@@ -59,6 +59,8 @@ class Bars:
         self.height = np.array([p.bar.section.height for p in shed.parts])[part]
         self.width = np.array([p.bar.section.width for p in shed.parts])[part]
         self.role = [shed.parts[i].role for i in part.tolist()]
+        #: Greatest height of what purlins stand on, besides columns, mm.
+        self.roof_steel = max(h for h, r in zip(self.height.tolist(), self.role, strict=True) if r in _ROOF_STEEL)
         self._placement = placement
 
     def outside(self, pieces: np.ndarray, points: np.ndarray) -> np.ndarray:
@@ -150,7 +152,7 @@ def _end_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarra
     if run.kind is JointKind.APEX:
         # A 20 mm end plate, along the slope; axes of unequal slopes cross the ridge at unequal levels.
         slopes = 1 / np.abs(bars.x[run.pieces, 0])
-        return 20.0 * slopes.max(axis=1) + bars.height[first] / 2 * np.ptp(slopes, axis=1)
+        return 20.0 * slopes.max(axis=1) + bars.roof_steel * np.ptp(slopes, axis=1)
     if run.kind in (JointKind.STRUT_END, JointKind.TIE_END):  # half the steel at the line and a 10 mm gap
         return bars.width[first] / 2 + 10.0
     if run.kind is JointKind.NODE:  # half the chord along the web, and the width of what lands beside it
@@ -193,9 +195,9 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
         JointKind.RAIL_CLEAT: rails.lift
         + rails.section.height / 2
         + max(0.0, (max(bars.width[roof_steel], default=0.0) - columns.width) / 2),
-        # The carrier ends an end plate of 20 mm away, or is above the head of a post by a gap of 25 mm.
+        # The carrier ends an end plate of 20 mm away, or is above the head of a post by a gap of 25 mm, at a ridge beside it.
         JointKind.CHORD_COLUMN: 20.0,
-        JointKind.POST_HEAD: 25.0 / np.cos(max(abs(_pitch(x)) for x in bars.x)),
+        JointKind.POST_HEAD: float(np.hypot(25.0, ridge)),
         # Angles stand on either side of the gusset's plane.
         JointKind.BRACE_CROSSING: off_plane,
     }
@@ -222,14 +224,8 @@ def _valley_stub(bars: Bars, description: Description) -> float:
     if len(slopes) < 3 or slopes[0].rises == slopes[1].rises:
         return 0.0
     pitches = [abs(slope.pitch) for slope in slopes]
-    steel = max(h for h, role in zip(bars.height.tolist(), bars.role, strict=True) if role in _ROOF_STEEL)
-    step = steel * (1 / np.cos(max(pitches)) - 1 / np.cos(min(pitches)))
+    step = bars.roof_steel * (1 / np.cos(max(pitches)) - 1 / np.cos(min(pitches)))
     return float((columns.height / 2 + 20.0) * np.tan(max(pitches)) + step)
-
-
-def _pitch(x: np.ndarray) -> float:
-    """Angle of an axis in the frame's plane to the horizontal, as far as it is one of a roof, rad."""
-    return float(np.arcsin(np.clip(x[2], -1, 1))) if abs(x[0]) > 0.4 else 0.0
 
 
 def masses_add_up(shed: Shed, _: Description) -> Iterator[str]:

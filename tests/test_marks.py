@@ -367,6 +367,52 @@ def test_children_are_told_by_how_they_lie() -> None:
     assert np.abs(first - IDENTITY).max() < 1e-6
 
 
+def test_frames_of_trusses_drawn_in_other_frames_are_one_type() -> None:
+    bars = [stock(bar) for bar, _ in truss(I80)] + [stock(Bar(I300, 6200.0), Role.COLUMN)]
+    count = len(bars) - 1
+    column = ((count, placement((-200, 0, -5000), (0, 0, 1), (0, 1, 0))),)
+
+    def pair(members: Members, held: np.ndarray, child: int) -> list[AssemblyTemplate]:
+        inside = tuple((i, at) for i, (_, at) in enumerate(members))
+        return [
+            AssemblyTemplate("truss", "shop", inside),
+            AssemblyTemplate("frame", "site", column, ((child, held),)),
+        ]
+
+    templates = pair(truss(I80), IDENTITY, 0) + pair(moved(truss(I80), SOMEWHERE), inverse(SOMEWHERE), 2)
+    found = group_assemblies(templates, group_parts(bars))
+    assert [found.types[i].mark for i in found.type_of] == ["TR1", "F1", "TR1", "F1"]
+
+
+def test_members_drawn_from_the_other_end_are_the_same() -> None:
+    def leaning(turned: bool) -> Members:
+        bar, at = line(TUBE, (0, 0, 0), (2000, 0, 900))
+        bar = Bar(bar.section, bar.length, SQUARE, SKEW)
+        if turned:
+            half = compose(translation((bar.length, 0, 0)), rotation((0, 1, 0), pi))
+            return [(flipped(bar), compose(at, half))]
+        return [(bar, at)]
+
+    base = [line(BOX, (0, 0, 0), (2500, 0, 0)), line(I80, (0, 90, 0), (300, 90, 0))]
+    assert grouped(base + leaning(False), base + leaning(True))[0] == ["TR1", "TR1"]
+    wrong = [(bar, at) for (bar, _), (_, at) in zip(leaning(True), leaning(False), strict=True)]
+    assert len(set(grouped(base + leaning(False), base + wrong)[0])) == 2
+
+
+def test_children_of_equal_shape_and_unlike_grade_do_not_stand_in_for_each_other() -> None:
+    bar = Bar(TUBE, 1000.0)
+    bars = [stock(bar), stock(bar, grade="S235"), stock(Bar(I300, 6200.0), Role.COLUMN)]
+    child = [AssemblyTemplate("truss", "shop", ((i, IDENTITY),)) for i in (0, 1)]
+    left, right = translation((-1000.0, 0, 0)), translation((2000.0, 300, 0))
+    column = ((2, placement((-200, 0, -5000), (0, 0, 1), (0, 1, 0))),)
+    held = [((0, left), (1, right)), ((0, right), (1, left)), ((1, right), (0, left))]
+    templates = child + [AssemblyTemplate("frame", "site", column, each) for each in held]
+    found = group_assemblies(templates, group_parts(bars))
+    named = [found.types[i].mark for i in found.type_of]
+    assert sorted(named[:2]) == ["TR1", "TR2"]
+    assert named[2] == named[4] != named[3]
+
+
 def test_kind_and_making_keep_assemblies_apart() -> None:
     bars = [stock(bar) for bar, _ in truss()]
     inside = tuple((i, at) for i, (_, at) in enumerate(truss()))

@@ -13,6 +13,7 @@ from shedbim.geometry.placements import placement
 from shedbim.model.bars import Bar
 from shedbim.model.roles import Role
 from shedbim.model.shed import Assemblies, Grid, Part, Pieces, ProjectInfo, Shed
+from shedbim.outputs import VIEW_NAMES
 from shedbim.sections.profiles import Flat, LippedZ, Pipe, Round
 from shedbim.sections.section import Profile, Section
 from shedbim.writers.palette import PALETTE
@@ -300,3 +301,7 @@ def test_every_view_gives_the_same_whole_picture_twice(name: str) -> None:
 def test_what_does_not_exist_is_answered_with_what_does(name: str, argument: str | None, told: str) -> None:
     with pytest.raises(ViewError, match=told):
         render_view(HALL, name, argument)
+
+
+def test_help_lists_every_view() -> None:
+    assert set(VIEW_NAMES) == set(VIEWS)

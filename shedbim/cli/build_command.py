@@ -81,6 +81,9 @@ def report(result: BuildResult) -> Iterator[str]:
         table.column("role"), table.column("pieces"), table.column("mass total"), strict=True
     ):
         yield f"  {role:<18}{pieces:>9,}{float(mass) / 1000:>11,.2f} t"
+    if missed := summary(shed, result.imprint)["largest_node_eccentricity"]:
+        yield ""
+        yield f"  axes at truss nodes miss the chord axis by {abs(missed['mm']):.0f} mm at most: {missed['pieces'][0]}"
     yield from _listed("Left open, so by default:", [f"{field}: {value}" for field, value in shed.defaults])
     yield from _listed("Notes:", shed.notes)
     yield from _listed("Cautions:", CAUTIONS)

@@ -12,7 +12,7 @@ import typer
 from shedbim.cli.guard import EXIT_CODES, guard
 from shedbim.cli.speech import say
 from shedbim.errors import OutputError
-from shedbim.outputs import OUTPUTS, SCHEMAS, chosen
+from shedbim.outputs import OUTPUTS, SCHEMAS, VIEW_NAMES, chosen
 from shedbim.version import __version__
 
 __all__ = ["app"]
@@ -28,6 +28,7 @@ app = typer.Typer(
 Begin with a preset, change it, build it:
   shedbim new store.yaml --preset seed-store
   shedbim build store.yaml
+  shedbim picture store.yaml
 
 \b
 Then look up what you can write there:
@@ -124,6 +125,34 @@ def build(
         from shedbim.cli.build_command import run as run_build
 
         run_build(file, out, model_schema, names, moment, as_json=json, quiet=quiet)
+
+
+@app.command(short_help="Draw a picture of the shed.")
+def picture(
+    file: Path = typer.Argument(..., metavar="FILE", help="The description, a YAML file."),
+    view: str = typer.Option("isometric", metavar="NAME", help=f"What to draw: {', '.join(VIEW_NAMES)}."),
+    of: str = typer.Option(
+        "", metavar="WHAT", help="The line of a frame or bay, the key of a piece, the x,y,z of a place."
+    ),
+    out: Path = typer.Option(
+        None, metavar="FILE", help="The PNG file.  [default: outputs/<file stem>/<view>.png]"
+    ),
+    width: int = typer.Option(1600, min=100, max=8000, help="Pixels across."),
+    height: int = typer.Option(1000, min=100, max=8000, help="Pixels down."),
+) -> None:
+    """Draw a view of a shed, hidden surfaces removed, without a screen or a graphics card.
+
+    \b
+    Examples:
+      shedbim picture store.yaml
+      shedbim picture store.yaml --view frame --of 3 --out frame-3.png
+      shedbim picture store.yaml --view piece --of "3/truss/top chord/*"
+      shedbim picture store.yaml --view plan --width 2400
+    """
+    with guard():
+        from shedbim.cli.picture_command import run as run_picture
+
+        run_picture(file, view, of or None, out, width, height)
 
 
 @app.command(short_help="Look up sections.")

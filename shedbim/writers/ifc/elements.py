@@ -186,7 +186,7 @@ def _representations(contexts: Contexts, mapped: Mapped) -> tuple[tuple[str, str
 
 
 def write_tree(
-    step: StepFile, shed: Shed, storey: Storey, pieces: Sequence[str], assemblies: Sequence[str], grid: str
+    step: StepFile, shed: Shed, storey: Storey, pieces: Sequence[str], assemblies: Sequence[str], *, grid: str
 ) -> None:
     """Write where each element belongs: in its assembly, or else in the storey."""
     loose = [grid]

@@ -85,7 +85,7 @@ class StepFile:
         return self.add(entity, GlobalId=quoted(self.ids([name])[0]), OwnerHistory=self.owner, **given)
 
     def template(self, entity: str, *slots: str, **given: str) -> str:
-        """Give a line that is to be written many times, with ``SLOT`` where each time something else stands.
+        """Give a line that is to be written many times, with ``SLOT`` where the lines differ.
 
         Args:
             entity: name as the schema spells it.

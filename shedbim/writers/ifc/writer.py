@@ -50,7 +50,7 @@ def write(
     grid = write_grid(step, shed.grid, contexts, storey)
     assemblies, placements = write_assemblies(step, shed, storey)
     write_pieces(step, shed, numbering, contexts, [*placements, storey.placement])
-    write_tree(step, shed, storey, numbering.references, assemblies, grid)
+    write_tree(step, shed, storey, numbering.references, assemblies, grid=grid)
     write_assembly_sets(step, shed, assemblies)
     if full_keys:
         write_full_keys(step, shed, numbering)
