@@ -7,8 +7,10 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Iterator
+from functools import lru_cache
 
 import numpy as np
+from manifold3d import Manifold
 from scipy.spatial import cKDTree
 
 from shedbim.description.models import Description
@@ -24,6 +26,7 @@ __all__ = [
     "RULES",
     "Bars",
     "bars_end_in_joints",
+    "bodies",
     "broken",
     "carriers_are_near",
     "eccentricities_are_true",
@@ -69,6 +72,12 @@ class Bars:
         local = np.einsum("mji,mj->mi", placement[:, :, :3], points - placement[:, :, 3])
         beyond = np.maximum(np.maximum(self.low[pieces] - local, local - self.high[pieces]), 0.0)
         return np.linalg.norm(beyond, axis=1)
+
+
+@lru_cache(maxsize=2)
+def bodies(shed: Shed) -> list[Manifold]:
+    """Give the solid of each part; chords of arcs take half a thousandth off a round bar at most."""
+    return [solid(part.bar, 2e-4 * min(part.bar.section.width, part.bar.section.height)) for part in shed.parts]
 
 
 def keys_are_unique(shed: Shed, _: Description) -> Iterator[str]:
@@ -195,8 +204,8 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
         JointKind.RAIL_CLEAT: rails.lift
         + rails.section.height / 2
         + max(0.0, (max(bars.width[roof_steel], default=0.0) - columns.width) / 2),
-        # The carrier ends an end plate of 20 mm away, or is above the head of a post by a gap of 25 mm, at a ridge beside it.
-        JointKind.CHORD_COLUMN: 20.0,
+        # The carrier ends an end plate of 20 mm away (a valley column lower by a stub), or is above the head of a post by a gap of 25 mm, at a ridge beside it.
+        JointKind.CHORD_COLUMN: 20.0 + stub,
         JointKind.POST_HEAD: float(np.hypot(25.0, ridge)),
         # Angles stand on either side of the gusset's plane.
         JointKind.BRACE_CROSSING: off_plane,
@@ -230,10 +239,8 @@ def _valley_stub(bars: Bars, description: Description) -> float:
 
 def masses_add_up(shed: Shed, _: Description) -> Iterator[str]:
     """A part weighs what its solid weighs, and a shed what its pieces weigh."""
-    for part in shed.parts:
-        # Chords of arcs take a third of a thousandth off a round bar, less off everything else.
-        error = 1e-4 * min(part.bar.section.width, part.bar.section.height)
-        meshed = solid(part.bar, error).volume() * STEEL_DENSITY
+    for part, body in zip(shed.parts, bodies(shed), strict=True):
+        meshed = body.volume() * STEEL_DENSITY
         if abs(meshed / part.bar.mass - 1) > 1e-3:
             yield f"{part.mark}: {part.bar.mass:.3f} kg, its solid {meshed:.3f} kg"
     total = sum(shed.parts[i].bar.mass for i in shed.pieces.part.tolist())
@@ -248,7 +255,8 @@ def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
     for piece, group in enumerate(pieces.assembly.tolist()):
         if group >= 0:
             members[group].append(piece)
-    corners = {i: _corners(shed, i) for i in np.unique(pieces.part[pieces.assembly >= 0]).tolist()}
+    inside = np.unique(pieces.part[pieces.assembly >= 0]).tolist()
+    corners = {i: np.asarray(bodies(shed)[i].to_mesh().vert_properties, float)[:, :3] for i in inside}
     seen: dict[int, list[tuple[np.ndarray, np.ndarray]]] = {}
     clouds: dict[int, cKDTree] = {}
     for group, kind in enumerate(groups.type.tolist()):
@@ -275,11 +283,6 @@ def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
 
 #: Half the distance of two points of a polygon drawn for the widest tube: a tube may be turned by this much.
 _CORNERS = 2.0
-
-
-def _corners(shed: Shed, part: int) -> np.ndarray:
-    """The corners of a part's solid (n, 3), mm."""
-    return np.asarray(solid(shed.parts[part].bar).to_mesh().vert_properties, float)[:, :3]
 
 
 def eccentricities_are_true(shed: Shed, _: Description) -> Iterator[str]:

@@ -116,3 +116,9 @@ def test_an_odd_number_of_panels_is_allowed_where_nothing_needs_symmetry() -> No
             ("pitch: 6 deg", "pitch: 6 deg\n    pitch_right: 8 deg"),
         )
     )
+
+
+def test_a_default_is_not_taken_for_what_was_written_wrongly() -> None:
+    """An offset without its unit: the rule about offsets is left where it misses it."""
+    text = changed("feet", ("  eaves_offset: 6 in", "  eaves_offset: 6"))
+    assert [fault.field for fault in faults(text)] == ["purlins.eaves_offset"]

@@ -13,12 +13,13 @@ from numpy.typing import NDArray
 from shedbim.description.models import Description
 from shedbim.expand.bays import Bay, runs_of_bays
 from shedbim.expand.braces import BraceEnd, Panel, brace_reach, braces
-from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, STRUT_END_GAP
+from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, POST_HEAD_GAP, STRUT_END_GAP
 from shedbim.expand.frame import Frame
 from shedbim.expand.gables import post_places
 from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout, Pitched
+from shedbim.expand.purlins import under_ridge_bars
 from shedbim.expand.set_out import even_places
 from shedbim.expand.sticks import stick
 from shedbim.model.joints import At, JointKind
@@ -100,6 +101,7 @@ class _Maker:
         self.options = description.bracing
         self.finish = description.finish.frames
         self.columns = description.frames.columns.section
+        self.ridge_levels = under_ridge_bars(description, layout, frames.first, length)
         self.members: list[Member] = []
         self.meetings: list[Meeting] = []
 
@@ -217,6 +219,7 @@ class _Maker:
     def roof(self) -> None:
         """Braces over every slope, and struts at the nodes that no column line holds."""
         options = self.options.roof
+        self.clear_of_posts()
         for number, pitched in enumerate(self.layout.slopes):
             places = self.roof_places(pitched)
             for k, (x0, x1) in enumerate(pairwise(places), start=1):
@@ -231,10 +234,22 @@ class _Maker:
                 if not (at_end and pitched.right_column >= 0):
                     self.roof_strut(number, pitched, k, x)
 
+    def clear_of_posts(self) -> None:
+        """Nothing of the roof bracing hangs below a rafter by more than the gap over the posts that stand there."""
+        reach = max(brace_reach(self.options.roof.section), self.options.struts.section.height / 2)
+        for frame in (self.frames.first, self.frames.second):
+            room = frame.carrier.height + POST_HEAD_GAP - self.depth()
+            if frame.posts and not frame.trusses and reach > room:
+                raise impossible(
+                    "bracing.roof", f"the roof bracing hangs below the gable rafters {frame.carrier.designation}",
+                    given=f"{self.options.roof.section.designation}, struts {self.options.struts.section.designation}",
+                    allowed="smaller braces and struts, or deeper rafters",
+                )  # fmt: skip
+
     def roof_strut(self, number: int, pitched: Pitched, k: int, x: float) -> None:
         """A strut between the frames at a bracing node; a ridge node belongs to the slope on its left."""
         options = self.options.struts
-        at = pitched.point(x, self.depth())
+        _, at = self.strut_at_node(pitched, x, -1)
         carriers = tuple(
             (frame.carriers[number], frame.carrier.width / 2 + STRUT_END_GAP)
             for frame in (self.frames.first, self.frames.second)
@@ -272,9 +287,13 @@ class _Maker:
         if column >= 0:
             section = self.options.eaves_strut.section
             return section, np.array([x, 0.0, self.eaves_level(column)])
+        section = self.options.struts.section
         at_ridge = pitched.left_column < 0 and abs(x - pitched.slope.x0) < 1e-6
         owner = self.layout.slopes[self.layout.slopes.index(pitched) - 1] if at_ridge else pitched
-        return self.options.struts.section, owner.point(x, self.depth())
+        middle = owner.point(x, self.depth())
+        if owner.name in self.ridge_levels and abs(x - owner.slope.x1) < 1e-6:
+            middle[2] = min(middle[2], self.ridge_levels[owner.name] - section.height / 2)
+        return section, middle
 
     def column_at(self, x: float) -> int:
         """The number of the column line at x, or -1."""

@@ -18,6 +18,7 @@ from shedbim.expand.cold_formed import (
     next_bar,
     sag_bar,
     sag_bar_places,
+    web_faces,
 )
 from shedbim.expand.frame import Frame
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
@@ -26,7 +27,7 @@ from shedbim.expand.set_out import even_places, places_over, sag_bar_rows
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 
-__all__ = ["purlin_courses", "purlins"]
+__all__ = ["purlin_courses", "purlins", "under_ridge_bars"]
 
 _LENGTHWISE = np.array([0.0, 1.0, 0.0])
 
@@ -66,6 +67,23 @@ def purlin_courses(
             )
         found.append((surface, courses))
     return found
+
+
+def under_ridge_bars(
+    description: Description, layout: Layout, frame: Frame, bay: float
+) -> dict[str, float]:
+    """Give for the slope left of each ridge the level that keeps clear of the sag bars over it in a bay, mm."""
+    options = description.purlins
+    if not sag_bar_rows(options.sag_bars, bay, layout.slopes[0].slope.pitch):
+        return {}
+    face, levels = web_faces(options.section)[1], {}
+    for (surface, left), (_, right) in pairwise(purlin_courses(description, layout, frame)):
+        pitched = surface.slopes[-1]
+        if pitched.right_column < 0:
+            a, b = (course.point + course.open_to * face for course in (left[-1], right[0]))
+            level = np.interp(pitched.slope.x1, [a[0], b[0]], [a[2], b[2]])
+            levels[pitched.name] = float(level) - options.sag_bar.height
+    return levels
 
 
 def _places(description: Description, layout: Layout, frame: Frame, surface: Surface) -> list[float]:

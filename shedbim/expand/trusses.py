@@ -294,13 +294,24 @@ class _Maker:
         d = at.direction
         bar, place = stick(
             aim.section,
-            (at.bottom[0], 0.0, at.bottom[1]),
-            (at.top[0], 0.0, at.top[1]),
+            self._landing(aim, at, _BOTTOM),
+            self._landing(aim, at, _TOP),
             (-d[1], 0.0, d[0]),
             start_planes=self._end_planes(aim, _BOTTOM),
             end_planes=self._end_planes(aim, _TOP),
         )
         return Member(name, role, bar, place, self.options.grade, self.finish)
+
+    def _landing(self, aim: WebAim, at: LandedWeb, which: int) -> tuple[float, float, float]:
+        """Where the axis of a web ends.
+
+        Faces of unequal slopes miss each other at a kink: there the post keeps clear of both.
+        """
+        x, z = (at.bottom, at.top)[which]
+        if aim.at_kink[which]:
+            levels = [face.face(x) for face in self.chords[which]]
+            z = max(levels) if which == _BOTTOM else min(levels)
+        return x, 0.0, z
 
     def _end_planes(self, aim: WebAim, which: int) -> Planes:
         """The chord face or, at a kink, both: a bird's mouth over a peak, a point into a hollow."""
