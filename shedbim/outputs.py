@@ -48,6 +48,12 @@ def _model(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
     write(shed, sink, schema=imprint.schema, timestamp=imprint.stamp)
 
 
+def _mesh(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    from shedbim.writers.glb import write
+
+    write(shed, sink, imprint)
+
+
 def _members(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
     from shedbim.writers.schedules.csv_text import csv_text
     from shedbim.writers.schedules.tables import members
@@ -83,6 +89,7 @@ def _summary(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
 
 OUTPUTS: tuple[Output, ...] = (
     Output("model", "model", "model.ifc", "the building model", _model),
+    Output("mesh", "mesh", "model.glb", "the model as meshes, for any 3D viewer", _mesh),
     Output("members", "schedules", "members.csv", "members by mark", _members),
     Output("assemblies", "schedules", "assemblies.csv", "assemblies by mark", _assemblies),
     Output(

@@ -129,7 +129,9 @@ bracing:
   walls: {pattern: crossed, section: L 60x60x6}
 """
 
-PRESETS: dict[str, str] = {path.stem: path.read_text(encoding="utf-8") for path in sorted(_FOLDER.glob("*.yaml"))}
+PRESETS: dict[str, str] = {
+    path.stem: path.read_text(encoding="utf-8") for path in sorted(_FOLDER.glob("*.yaml"))
+}
 TINY: dict[str, str] = {"lopsided": _LOPSIDED, "valley": _VALLEY, "lean": _LEAN, "flat": _FLAT}
 #: Names of all specimens.
 CAST: tuple[str, ...] = (*TINY, *PRESETS)

@@ -27,7 +27,13 @@ def long_shed(frames: int) -> Shed:
         Part("BC1", Role.BOTTOM_CHORD, Bar(specimens.SECTIONS["RHS"], 14900.0), "S355", "painted"),
     ]
     parts += [
-        Part(f"D{i}", Role.DIAGONAL, Bar(specimens.SECTIONS["CHS"], 1800.0 + 7 * i, cut, cut), "S355", "painted")
+        Part(
+            f"D{i}",
+            Role.DIAGONAL,
+            Bar(specimens.SECTIONS["CHS"], 1800.0 + 7 * i, cut, cut),
+            "S355",
+            "painted",
+        )
         for i in range(_WEBS // 2)
     ]
     first = len(parts)
@@ -38,12 +44,26 @@ def long_shed(frames: int) -> Shed:
     ]
     # In a frame: two columns, four chords, webs.
     framed = [(0, "column/A", 0.0, 0), (0, "column/B", 29700.0, 0)]
-    framed += [(1 + k // 2, f"truss/{'top' if k < 2 else 'bottom'} chord/A-B/{k % 2}", 15000.0 * (k % 2), 1) for k in range(4)]
+    framed += [
+        (1 + k // 2, f"truss/{'top' if k < 2 else 'bottom'} chord/A-B/{k % 2}", 15000.0 * (k % 2), 1)
+        for k in range(4)
+    ]
     framed += [(3 + k // 2, f"truss/diagonal/A-B/{k + 1}", 311.7 + 811.3 * k, 1) for k in range(_WEBS)]
-    inner = np.array([placement((x, 0.0, 37.1 * part), (1, 0, 0.1 * part), (0, 1, 0)) for part, _, x, _ in framed])
-    bayed = [(first, f"purlin/A-B/{k + 1}", 1381.37 * k, 9100.0 + 83.21 * min(k, _PURLINS - k)) for k in range(_PURLINS)]
-    bayed += [(first + 1, f"side rail/{'AB'[k % 2]}/{k // 2 + 1}", 30000.0 * (k % 2), 311.0 + 1423.0 * (k // 2)) for k in range(_RAILS)]
-    bayed += [(first + 2, f"sag bar/A-B/{k + 1}", 1381.37 * k, 9083.0 + 83.21 * min(k, _PURLINS - k)) for k in range(_PURLINS)]
+    inner = np.array(
+        [placement((x, 0.0, 37.1 * part), (1, 0, 0.1 * part), (0, 1, 0)) for part, _, x, _ in framed]
+    )
+    bayed = [
+        (first, f"purlin/A-B/{k + 1}", 1381.37 * k, 9100.0 + 83.21 * min(k, _PURLINS - k))
+        for k in range(_PURLINS)
+    ]
+    bayed += [
+        (first + 1, f"side rail/{'AB'[k % 2]}/{k // 2 + 1}", 30000.0 * (k % 2), 311.0 + 1423.0 * (k // 2))
+        for k in range(_RAILS)
+    ]
+    bayed += [
+        (first + 2, f"sag bar/A-B/{k + 1}", 1381.37 * k, 9083.0 + 83.21 * min(k, _PURLINS - k))
+        for k in range(_PURLINS)
+    ]
     outer = np.array([placement((x, 0.0, z), (0, 1, 0), (0.1, 0, 1)) for _, _, x, z in bayed])
     lines = translation(np.outer(6011.3 * np.arange(frames), (0.0, 1.0, 0.0)))
     truss = compose(lines, translation((0.0, 0.0, 8000.0)))
@@ -52,7 +72,9 @@ def long_shed(frames: int) -> Shed:
         keys += [f"{line + 1}/{name}" for _, name, _, _ in framed]
         part += [each for each, _, _, _ in framed]
         owner += [2 * line + inside for _, _, _, inside in framed]
-        holders = np.where(np.array([inside for *_, inside in framed])[:, None, None], truss[line], lines[line])
+        holders = np.where(
+            np.array([inside for *_, inside in framed])[:, None, None], truss[line], lines[line]
+        )
         places.append(compose(holders, inner))
         if line + 1 < frames:
             keys += [f"{line + 1}-{line + 2}/{name}" for _, name, _, _ in bayed]
@@ -75,7 +97,9 @@ def long_shed(frames: int) -> Shed:
     return Shed(
         project=ProjectInfo(specimens.PROJECT_ID, "Long shed", "", "P01"),
         georeference=specimens.GEOREFERENCE,
-        grid=Grid(("A", "B"), (0.0, 30000.0), tuple(map(str, range(1, frames + 1))), tuple(lines[:, 1, 3].tolist())),
+        grid=Grid(
+            ("A", "B"), (0.0, 30000.0), tuple(map(str, range(1, frames + 1))), tuple(lines[:, 1, 3].tolist())
+        ),
         parts=tuple(parts),
         pieces=Pieces(tuple(keys), np.array(part), np.vstack(places), np.array(owner)),
         assembly_types=(AssemblyType("F1", "frame", "site"), AssemblyType("TR1", "truss", "shop")),
@@ -115,4 +139,6 @@ if __name__ == "__main__":
         ):
             pairs = sum(len(run.pieces) * (run.pieces.shape[1] - 1) for run in made.joints) / len(made.pieces)
             spent, size = measure(made, **chosen)
-            print(f"{len(made.pieces):7} pieces, {pairs:.2f} pairs each {chosen!s:46} {spent:6.1f} us {size:6.0f} B")
+            print(
+                f"{len(made.pieces):7} pieces, {pairs:.2f} pairs each {chosen!s:46} {spent:6.1f} us {size:6.0f} B"
+            )

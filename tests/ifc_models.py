@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import io
-from collections.abc import Iterable
 from functools import cache
 
 import ifcopenshell
@@ -31,11 +30,8 @@ def model(schema: str) -> ifcopenshell.file:
     return opened(specimens.shed(), schema=schema)
 
 
-def by_name(file: ifcopenshell.file, entity: str) -> dict[str, ifcopenshell.entity_instance]:
-    """Give the entities of a class by their names."""
-    return {each.Name: each for each in file.by_type(entity)}
-
-
-def targets(relations: Iterable[ifcopenshell.entity_instance], attribute: str) -> list[ifcopenshell.entity_instance]:
-    """Give what an attribute of each relation refers to."""
-    return [getattr(each, attribute) for each in relations]
+def by_name(
+    file: ifcopenshell.file, entity: str, attribute: str = "Name"
+) -> dict[str, ifcopenshell.entity_instance]:
+    """Give the entities of a class by their names; the file must be kept as long as they are."""
+    return {getattr(each, attribute): each for each in file.by_type(entity)}

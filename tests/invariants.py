@@ -63,7 +63,9 @@ class Bars:
         self.width = np.array([p.bar.section.width for p in shed.parts])[part]
         self.role = [shed.parts[i].role for i in part.tolist()]
         #: Greatest height of what purlins stand on, besides columns, mm.
-        self.roof_steel = max(h for h, r in zip(self.height.tolist(), self.role, strict=True) if r in _ROOF_STEEL)
+        self.roof_steel = max(
+            h for h, r in zip(self.height.tolist(), self.role, strict=True) if r in _ROOF_STEEL
+        )
         self._placement = placement
 
     def outside(self, pieces: np.ndarray, points: np.ndarray) -> np.ndarray:
@@ -77,7 +79,9 @@ class Bars:
 @lru_cache(maxsize=2)
 def bodies(shed: Shed) -> list[Manifold]:
     """Give the solid of each part; chords of arcs take half a thousandth off a round bar at most."""
-    return [solid(part.bar, 2e-4 * min(part.bar.section.width, part.bar.section.height)) for part in shed.parts]
+    return [
+        solid(part.bar, 2e-4 * min(part.bar.section.width, part.bar.section.height)) for part in shed.parts
+    ]
 
 
 def keys_are_unique(shed: Shed, _: Description) -> Iterator[str]:
@@ -164,9 +168,11 @@ def _end_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarra
         return 20.0 * slopes.max(axis=1) + bars.roof_steel * np.ptp(slopes, axis=1)
     if run.kind in (JointKind.STRUT_END, JointKind.TIE_END):  # half the steel at the line and a 10 mm gap
         return bars.width[first] / 2 + 10.0
-    if run.kind is JointKind.NODE:  # half the chord along the web, and the width of what lands beside it
+    if run.kind is JointKind.NODE:
+        # Half the chord, and past what else lands here, all along the flattest web.
         webs = run.pieces[:, 1:]
-        return bars.height[first] + bars.height[webs].sum(axis=1)
+        sine = np.linalg.norm(np.cross(bars.x[webs], bars.x[first][:, None]), axis=2).min(axis=1)
+        return (bars.height[first] / 2 + bars.height[webs].sum(axis=1)) / sine
     brace = bars.x[last]
     room = 20.0 + bars.size[last]  # a set-back, and the corner of the brace itself
     off_plane = 5.0 + bars.size[last]  # an angle stands on one side of its gusset

@@ -51,7 +51,9 @@ def overlaps(
     volumes = np.array(
         [(bodies[body[first[k]]] ^ bodies[body[second[k]]].transform(apart[k])).volume() for k in leaders]
     )[which.ravel()]
-    found = [Overlap(int(first[k]), int(second[k]), float(volumes[k])) for k in np.flatnonzero(volumes > most)]
+    found = [
+        Overlap(int(first[k]), int(second[k]), float(volumes[k])) for k in np.flatnonzero(volumes > most)
+    ]
     return sorted(found, key=lambda overlap: -overlap.volume)
 
 

@@ -36,7 +36,9 @@ class Keyhole:
 
     @property
     def outline(self) -> Outline:
-        outer = rounded([(0.0, 0.0, 0.0), (self.b, 0.0, 12.0), (self.b * 0.7, self.b, 7.0), (0.0, self.b * 0.8, 0.0)])
+        outer = rounded(
+            [(0.0, 0.0, 0.0), (self.b, 0.0, 12.0), (self.b * 0.7, self.b, 7.0), (0.0, self.b * 0.8, 0.0)]
+        )
         return Outline(outer, (circle(self.b / 3, clockwise=True).moved(self.b * 0.4, self.b * 0.42),))
 
     @property
@@ -49,7 +51,7 @@ class Keyhole:
 
 
 def section(name: str, profile: Profile) -> Section:
-    return Section(name, name.split()[0], profile, "made for a test")
+    return Section(name, name.partition(" ")[0], profile, "made for a test")
 
 
 SECTIONS = {
@@ -71,7 +73,7 @@ POINT = EndCut(((0.2, 0.9), (-0.3, -0.5)))
 NOTCH = EndCut(((0.15, 0.7), (-0.1, -0.45)), notched=True)
 FLAT_NOTCH = EndCut(((0.02, 0.11), (0.0, -0.07)), notched=True)
 
-#: Mark, role, section, length, start, end: each profile with square ends and with some cut, each cut at both ends.
+#: Mark, role, section, length, start, end: each profile, and each cut at both ends.
 _PARTS = (
     ("C1", Role.COLUMN, "I", 6120.0, SQUARE, SQUARE),
     ("GP1", Role.GABLE_POST, "I", 5233.0, SQUARE, PLANE),
@@ -130,7 +132,9 @@ GEOREFERENCE = Georeference("EPSG:25832", 512340125.0, 5403120500.0, 212350.0, r
 def parts() -> tuple[Part, ...]:
     """Every part of the specimen."""
     return tuple(
-        Part(mark, role, Bar(SECTIONS[name], length, start, end), "S355" if name in "IU" else "S235", "painted")
+        Part(
+            mark, role, Bar(SECTIONS[name], length, start, end), "S355" if name in "IU" else "S235", "painted"
+        )
         for mark, role, name, length, start, end in _PARTS
     )
 
@@ -156,7 +160,10 @@ def shed(
         frame = compose(frame, rotation((0, 0, 1), radians(1.7 * (line % 2))))
         truss = compose(frame, placement((307.0, 0.0, 5041.0), (1, 0, 0.05), (0, 0, 1)))
         owner = len(groups)
-        groups += [(f"{prefix}{line + 1}/frame", 0, frame, -1), (f"{prefix}{line + 1}/truss/A-B", 1, truss, owner)]
+        groups += [
+            (f"{prefix}{line + 1}/frame", 0, frame, -1),
+            (f"{prefix}{line + 1}/truss/A-B", 1, truss, owner),
+        ]
         for count, (mark, in_truss, origin, x, z) in enumerate(_FRAMED):
             keys.append(f"{prefix}{line + 1}/{made[index[mark]].role.word}/{count}")
             which.append(index[mark])

@@ -10,7 +10,14 @@ from shedbim.model.identity import global_ids, namespace, piece_ids
 
 PROJECT = "8c0f5a2e-6d1b-4f39-9a77-31c2e0b4d5f6"
 OTHER = "0b7e4d11-52c3-4a86-8d90-7f1e6a2c9b35"
-NAMES = ["", "project", "piece/3/truss/top chord/A-B/1", "Größe/Ж/🏗", "a'b\\c\n", *(f"line {i}" for i in range(500))]
+NAMES = [
+    "",
+    "project",
+    "piece/3/truss/top chord/A-B/1",
+    "Größe/Ж/🏗",
+    "a'b\\c\n",
+    *(f"line {i}" for i in range(500)),
+]
 
 
 def test_ids_are_version_5_uuids_in_the_compression_of_the_standard() -> None:

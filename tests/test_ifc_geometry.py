@@ -13,8 +13,6 @@ import pytest
 import specimens
 
 from shedbim.geometry.placements import apply
-from shedbim.model.bars import Bar, EndCut
-from shedbim.model.shed import Part
 from shedbim.model.solids import solid
 from shedbim.sections.section import STEEL_DENSITY
 from shedbim.writers.ifc import SCHEMAS

@@ -4,15 +4,20 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from math import ceil
 
 import numpy as np
 
+from shedbim.description.models import Description
 from shedbim.expand.kits import Kit, Run
 from shedbim.expand.layout import Layout
 
-__all__ = ["Bay", "runs_of_bays"]
+__all__ = ["Bay", "braced_bays", "runs_of_bays"]
 
 _NANOMETRE = 1e-6
+
+#: Greatest distance between braced bays chosen by rule (IS 800:2007 clause 3.10.2, value from memory).
+_BRACED_EVERY = 50_000.0
 
 
 @dataclass(frozen=True)
@@ -47,3 +52,18 @@ def runs_of_bays(
         )
         for bay, each in alike.items()
     ]
+
+
+def braced_bays(description: Description, layout: Layout) -> frozenset[int]:
+    """Give the numbers (0 for the first) of the braced bays: as named, or by rule."""
+    asked, count = description.bracing.bays, len(layout.bay_lengths)
+    if asked != "rule":
+        named = {"first": 0, "last": count - 1}
+        return frozenset(named[bay] if isinstance(bay, str) else bay - 1 for bay in asked)
+    chosen = {0, count - 1}
+    middles = (np.array(layout.grid.y[1:]) + np.array(layout.grid.y[:-1])) / 2
+    parts = ceil((middles[-1] - middles[0]) / _BRACED_EVERY - 1e-9)
+    for k in range(1, parts):
+        wanted = middles[0] + (middles[-1] - middles[0]) * k / parts
+        chosen.add(int(np.abs(middles - wanted).argmin()))
+    return frozenset(chosen)

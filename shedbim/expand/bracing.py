@@ -11,7 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.description.models import Description
-from shedbim.expand.bays import Bay, runs_of_bays
+from shedbim.expand.bays import Bay, braced_bays, runs_of_bays
 from shedbim.expand.braces import BraceEnd, Panel, brace_reach, braces
 from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, POST_HEAD_GAP, STRUT_END_GAP
 from shedbim.expand.frame import Frame
@@ -27,32 +27,15 @@ from shedbim.model.roles import Role
 from shedbim.sections.profiles import IShape, Pipe
 from shedbim.sections.section import Section
 
-__all__ = ["braced_bays", "bracing"]
+__all__ = ["bracing"]
 
 Array = NDArray[np.float64]
 _UP = np.array([0.0, 0.0, 1.0])
 _ACROSS = np.array([1.0, 0.0, 0.0])
 _LENGTHWISE = np.array([0.0, 1.0, 0.0])
 
-#: Greatest distance between braced bays chosen by rule (IS 800:2007 clause 3.10.2, value from memory).
-_BRACED_EVERY = 50_000.0
 #: Greatest rise of a tier of wall bracing over its bay: keeps diagonals at 55 degrees or flatter.
 _STEEPEST_TIER = 1.43
-
-
-def braced_bays(description: Description, layout: Layout) -> frozenset[int]:
-    """Give the numbers (0 for the first) of the braced bays: as named, or by rule."""
-    asked, count = description.bracing.bays, len(layout.bay_lengths)
-    if asked != "rule":
-        named = {"first": 0, "last": count - 1}
-        return frozenset(named[bay] if isinstance(bay, str) else bay - 1 for bay in asked)
-    chosen = {0, count - 1}
-    middles = (np.array(layout.grid.y[1:]) + np.array(layout.grid.y[:-1])) / 2
-    parts = ceil((middles[-1] - middles[0]) / _BRACED_EVERY - 1e-9)
-    for k in range(1, parts):
-        wanted = middles[0] + (middles[-1] - middles[0]) * k / parts
-        chosen.add(int(np.abs(middles - wanted).argmin()))
-    return frozenset(chosen)
 
 
 @dataclass(frozen=True, eq=False)
@@ -189,7 +172,9 @@ class _Maker:
         for span, (here, there) in zip(self.layout.span_names, trusses, strict=False):
             nodes = np.array(here.bottom_nodes)
             wanted = even_places(nodes[0], nodes[-1], options.spacing)[1:-1]
-            chosen = sorted({int(np.abs(nodes - x).argmin()) for x in wanted})
+            # The end nodes are at the columns.
+            inner = nodes[1:-1]
+            chosen = sorted({1 + int(np.abs(inner - x).argmin()) for x in wanted if len(inner)})
             for node in chosen:
                 x, z = here.bottom_nodes[node], here.bottom_levels[node]
                 number = 0 if len(here.bottom_chords) == 1 or x <= self.ridge_x(span) else 1

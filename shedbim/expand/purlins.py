@@ -21,6 +21,7 @@ from shedbim.expand.cold_formed import (
     web_faces,
 )
 from shedbim.expand.frame import Frame
+from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout, Pitched, Surface
 from shedbim.expand.set_out import even_places, places_over, sag_bar_rows
@@ -30,6 +31,8 @@ from shedbim.model.roles import Role
 __all__ = ["purlin_courses", "purlins", "under_ridge_bars"]
 
 _LENGTHWISE = np.array([0.0, 1.0, 0.0])
+#: Least distance in plan between the purlins on either side of a ridge or a valley, mm.
+_BESIDE = 5.0
 
 
 def purlins(
@@ -37,6 +40,7 @@ def purlins(
 ) -> list[Run]:
     """Give the purlins of all bays; they overhang the end frames by ``verge`` mm."""
     courses = purlin_courses(description, layout, inner)
+    _check_clear(description, courses)
 
     def kit(bay: Bay) -> Kit:
         frames = (gables[0] if bay.first else inner, gables[1] if bay.last else inner)
@@ -69,9 +73,23 @@ def purlin_courses(
     return found
 
 
-def under_ridge_bars(
-    description: Description, layout: Layout, frame: Frame, bay: float
-) -> dict[str, float]:
+def _check_clear(description: Description, courses: Sequence[tuple[Surface, list[Course]]]) -> None:
+    """Refuse purlins that meet over a ridge or in a valley."""
+    low_y, low_z, high_y, high_z = description.purlins.section.outline.bounds
+    corners = [(y, z) for y in (low_y, high_y) for z in (low_z, high_z)]
+    for (left, a), (right, b) in pairwise(courses):
+        last, first = a[-1], b[0]
+        end = max(float((last.point + last.open_to * y + last.outward * z)[0]) for y, z in corners)
+        start = min(float((first.point + first.open_to * y + first.outward * z)[0]) for y, z in corners)
+        if start < end + _BESIDE:
+            field = "ridge_offset" if left.slopes[-1].right_column < 0 else "valley_offset"
+            raise impossible(
+                f"purlins.{field}", f"the purlins of {left.name} and {right.name} meet",
+                allowed=f"a greater offset, by {end + _BESIDE - start:.0f} mm or more in plan",
+            )  # fmt: skip
+
+
+def under_ridge_bars(description: Description, layout: Layout, frame: Frame, bay: float) -> dict[str, float]:
     """Give for the slope left of each ridge the level that keeps clear of the sag bars over it in a bay, mm."""
     options = description.purlins
     if not sag_bar_rows(options.sag_bars, bay, layout.slopes[0].slope.pitch):

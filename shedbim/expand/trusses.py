@@ -230,8 +230,8 @@ class _Maker:
         landed = land(aims, groups, (room, room), self.ridge_x)
         if not fits(aims, landed, groups, (room, room)):
             raise impossible(
-                "frames.roof.panels", "the webs leave no gap for their welds at a node of the truss",
-                given=str(self.options.panels), allowed="fewer panels, more depth or slimmer webs",
+                "frames.roof.panels", "webs lie too flat, or leave no gap for their welds at a node of the truss",
+                given=str(self.options.panels), allowed="another number of panels, more depth or slimmer webs",
             )  # fmt: skip
         members, names = self._chord_members()
         web_names = self._web_names()

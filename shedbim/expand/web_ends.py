@@ -23,7 +23,7 @@ Array = NDArray[np.float64]
 _ROUNDS = 60
 _SETTLED = 1e-9  # mm
 _TOE = 0.01  # mm: toes nearer than asked by less than this are as asked
-#: Upward part of the unit vector of the flattest web that can still be cut and welded: 15 degrees.
+#: Sine of the flattest angle of a web to the level and to a chord that can still be cut and welded: 15 degrees.
 _FLATTEST = 0.26
 
 
@@ -128,8 +128,10 @@ def fits(
     chord_ends: tuple[tuple[float, float], tuple[float, float]],
 ) -> bool:
     """Whether all webs run upwards between the chords and their toes keep clear of each other and of chord ends."""
-    if any(web.direction[1] < _FLATTEST for web in landed):
-        return False
+    for web, at in zip(webs, landed, strict=True):
+        to_faces = [abs(float(face.normal @ at.direction)) for face in web.faces]
+        if at.direction[1] < _FLATTEST or min(to_faces) < _FLATTEST:
+            return False
     for chord in (0, 1):
         toes: list[tuple[float, float, float]] = []  # left toe, right toe, wall
         for group in groups[chord]:

@@ -87,6 +87,9 @@ class Loop:
             radius = float(np.linalg.norm(chord)) / (2 * abs(np.sin(half)))
             step = 2 * np.arccos(max(1 - chord_error / radius, 0.5))
             count = max(int(np.ceil(2 * abs(half) / step)), 2)
+            if abs(half) >= np.pi / 2 - 1e-9:
+                # A half circle keeps the point that lies farthest out: its box is exact.
+                count += count % 2
             angle = half * (2 * np.arange(1, count) / count - 1)
             u = 0.5 + np.sin(angle) / (2 * np.sin(half))
             v = (np.cos(half) - np.cos(angle)) / (2 * np.sin(half))

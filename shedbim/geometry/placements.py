@@ -9,7 +9,17 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-__all__ = ["IDENTITY", "Placements", "apply", "compose", "inverse", "placement", "rotation", "translation"]
+__all__ = [
+    "IDENTITY",
+    "Placements",
+    "apply",
+    "compose",
+    "inverse",
+    "placement",
+    "relative",
+    "rotation",
+    "translation",
+]
 
 Placements = NDArray[np.float64]
 
@@ -73,6 +83,15 @@ def inverse(motion: Placements) -> Placements:
     back = np.swapaxes(motion[..., :3], -1, -2)
     origin = -np.einsum("...ij,...j->...i", back, motion[..., 3])
     return np.concatenate([back, origin[..., None]], axis=-1)
+
+
+def relative(outer: Placements, inner: Placements, owner: NDArray[np.int64]) -> Placements:
+    """Give ``inner`` (n, 3, 4) as seen from the rows of ``outer`` that ``owner`` (n,) names; -1: as it is."""
+    result = inner.copy()
+    owned = np.flatnonzero(owner >= 0)
+    if len(owned):
+        result[owned] = compose(inverse(outer)[owner[owned]], inner[owned])
+    return result
 
 
 def apply(motion: Placements, points: ArrayLike) -> NDArray[np.float64]:

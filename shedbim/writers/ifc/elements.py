@@ -13,12 +13,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.errors import ModelError
+from shedbim.geometry.placements import relative
 from shedbim.model.identity import piece_ids
 from shedbim.model.shed import Shed
 from shedbim.writers.ifc.classes import assembly_class
 from shedbim.writers.ifc.context import Contexts
 from shedbim.writers.ifc.parts import Mapped, PartWriter, shape_representation
-from shedbim.writers.ifc.placements import relative, write_placements
+from shedbim.writers.ifc.placements import write_placements
 from shedbim.writers.ifc.spatial import Storey
 from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
 from shedbim.writers.ifc.text import enum, label, labels, listed, quoted
@@ -37,7 +38,7 @@ class Numbering:
 
     Attributes:
         order: (n,) the pieces in the order of their entities, which is that of their parts.
-            starts: (p + 1,) where in ``order`` the pieces of each part begin, and the end.
+        starts: (p + 1,) where in ``order`` the pieces of each part begin, and the end.
         in_order: n references, in the order of ``order``.
         references: n references, in the order of the pieces.
     """

@@ -11,12 +11,10 @@ from collections.abc import Sequence
 from shedbim.model.shed import Shed
 from shedbim.writers.ifc.elements import Numbering
 from shedbim.writers.ifc.properties import assembly_set, identifier, one_property, property_set, relate_set
-from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
+from shedbim.writers.ifc.stepfile import BETWEEN, SLOT, StepFile, numbered
 from shedbim.writers.ifc.text import labels, quoted
 
 __all__ = ["write_assembly_sets", "write_full_keys", "write_split_keys"]
-
-_BETWEEN = "\x1f"
 
 
 def write_assembly_sets(step: StepFile, shed: Shed, assemblies: Sequence[str]) -> None:
@@ -54,7 +52,7 @@ def write_split_keys(step: StepFile, shed: Shed, numbering: Numbering, assemblie
     for (place, mark), members in places.items():
         values = {name: identifier(text) for name, text in (("Place", place), ("AssemblyMark", mark)) if text}
         if values:
-            scope = f"{mark}{_BETWEEN}{place}"
+            scope = f"{mark}{BETWEEN}{place}"
             relate_set(step, property_set(step, "Shedbim_Place", scope, values), f"place/{scope}", members)
 
 

@@ -10,20 +10,18 @@ from collections.abc import Sequence
 import numpy as np
 from numpy.typing import NDArray
 
-from shedbim.geometry.placements import Placements, compose, inverse
+from shedbim.geometry.placements import Placements
+from shedbim.geometry.rows import distinct_rows
 from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
 from shedbim.writers.ifc.text import number, reals
 
-__all__ = ["axis2placement", "direction", "distinct_rows", "point", "relative", "write_placements"]
+__all__ = ["axis2placement", "direction", "point", "write_placements"]
 
 _PER_MM = 100  # 0.01 mm
 _PER_METRE = 1000 * _PER_MM
 _PER_UNIT = 10**10
 #: Added before rounding down: takes the boundary a little off the halves, where plain numbers lie.
 _HALF = 0.501
-
-#: Odd multipliers that mix a row of integers into one; any will do, fixed ones keep the order of the file.
-_MIX = (np.uint64(0x9E3779B97F4A7C15), np.uint64(0xBF58476D1CE4E5B9))
 
 Integers = NDArray[np.int64]
 
@@ -49,31 +47,6 @@ def axis2placement(
         Axis=direction(step, *axis),
         RefDirection=direction(step, *ref),
     )
-
-
-def relative(outer: Placements, inner: Placements, owner: Integers) -> Placements:
-    """Give ``inner`` (n, 3, 4) as seen from the rows of ``outer`` that ``owner`` (n,) names; -1: as it is."""
-    result = inner.copy()
-    owned = np.flatnonzero(owner >= 0)
-    if len(owned):
-        result[owned] = compose(inverse(outer)[owner[owned]], inner[owned])
-    return result
-
-
-def distinct_rows(rows: Integers) -> tuple[Integers, Integers]:
-    """Find equal rows of (n, k) integers: the first row of each kind, in order, and each row's kind (n,)."""
-    mixed = np.zeros(len(rows), np.uint64)
-    for column in rows.T.astype(np.uint64):
-        mixed = (mixed ^ column) * _MIX[0]
-        mixed ^= mixed >> np.uint64(29)
-        mixed *= _MIX[1]
-    _, first, kind = np.unique(mixed, return_index=True, return_inverse=True)
-    if not np.array_equal(rows[first][kind], rows):  # two kinds mixed into one number
-        _, first, kind = np.unique(rows, axis=0, return_index=True, return_inverse=True)
-    order = np.argsort(first)
-    rank = np.empty_like(order)
-    rank[order] = np.arange(len(order))
-    return first[order], rank[kind.reshape(-1)]
 
 
 def write_placements(step: StepFile, placements: Placements) -> tuple[int, Integers]:

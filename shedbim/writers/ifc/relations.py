@@ -13,7 +13,7 @@ from shedbim.model.joints import JointKind, JointRun
 from shedbim.model.roles import Role
 from shedbim.model.shed import Shed
 from shedbim.writers.ifc.elements import Numbering
-from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
+from shedbim.writers.ifc.stepfile import BETWEEN, SLOT, StepFile, numbered
 from shedbim.writers.ifc.text import label, listed, quoted
 
 __all__ = ["GROUPS", "write_groups", "write_joints"]
@@ -27,9 +27,6 @@ GROUPS: Mapping[str, tuple[Role, ...]] = {
     "struts and ties": (Role.STRUT, Role.EAVES_STRUT, Role.VALLEY_STRUT, Role.TIE),
     "secondary steel": (Role.PURLIN, Role.SIDE_RAIL, Role.GABLE_RAIL, Role.SAG_BAR),
 }
-
-#: Parts the keys of a relation's stable name; no key holds it.
-_BETWEEN = "\x1f"
 
 
 def write_groups(step: StepFile, shed: Shed, numbering: Numbering) -> None:
@@ -98,7 +95,7 @@ def _write_pairs(
     """Write the connections of one kind; ``pairs`` are the pieces that carry, and those they carry."""
     keys, references = shed.pieces.keys, numbering.references
     of_kind = kind.name
-    names = [f"{of_kind}/{keys[one]}{_BETWEEN}{keys[other]}" for one, other in zip(*pairs, strict=True)]
+    names = [f"{of_kind}/{keys[one]}{BETWEEN}{keys[other]}" for one, other in zip(*pairs, strict=True)]
     if len(set(names)) < len(names):
         names = _told_apart(names)
     template = step.template(
@@ -117,6 +114,6 @@ def _told_apart(names: Sequence[str]) -> list[str]:
     met: Counter[str] = Counter()
     result = []
     for name in names:
-        result.append(f"{name}{_BETWEEN}{met[name]}" if met[name] else name)
+        result.append(f"{name}{BETWEEN}{met[name]}" if met[name] else name)
         met[name] += 1
     return result

@@ -10,10 +10,13 @@ from shedbim.model.identity import global_ids
 from shedbim.writers.ifc.schema import Schema
 from shedbim.writers.ifc.text import NONE, quoted
 
-__all__ = ["SLOT", "StepFile", "numbered"]
+__all__ = ["BETWEEN", "SLOT", "StepFile", "numbered"]
 
 #: Stands in a template where each line has a text of its own; no escaped string holds it.
 SLOT = "\0"
+
+#: Stands between the texts of a stable name made of several; no key or mark holds it.
+BETWEEN = "\x1f"
 
 _CHUNK = 4000  # lines held before they go to the sink
 

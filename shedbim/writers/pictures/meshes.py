@@ -3,12 +3,13 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.model.bars import Bar
-from shedbim.model.solids import solid
+from shedbim.model.shells import Shell, shell
 
 __all__ = ["Mesh", "bar_mesh"]
 
@@ -21,36 +22,28 @@ _EDGE_COSINE = float(np.cos(np.pi / 6))
 
 
 @dataclass(frozen=True, eq=False)
-class Mesh:
-    """A closed surface of triangles and its drawn edges.
+class Mesh(Shell):
+    """A closed surface of triangles and its drawn edges, which are found when they are first asked for."""
 
-    Attributes:
-        points: (v, 3) float, mm.
-        triangles: (t, 3) int, indices into ``points``, anticlockwise seen from outside.
-        normals: (t, 3) float, unit, outwards.
-        edges: (e, 2) int, indices into ``points``.
-        sides: (e, 2) int, the two triangles at each edge.
-    """
+    @property
+    def edges(self) -> Indices:
+        """(e, 2) int, indices into ``points``."""
+        return self._sharp[0]
 
-    points: Floats
-    triangles: Indices
-    normals: Floats
-    edges: Indices
-    sides: Indices
+    @property
+    def sides(self) -> Indices:
+        """(e, 2) int, the two triangles at each edge."""
+        return self._sharp[1]
+
+    @cached_property
+    def _sharp(self) -> tuple[Indices, Indices]:
+        return _edges(self.triangles, self.normals)
 
 
 def bar_mesh(bar: Bar, chord_error: float) -> Mesh:
     """Give the mesh of a bar, its arcs cut into chords that leave them by ``chord_error`` mm at most."""
-    body = solid(bar, chord_error).to_mesh()
-    points = np.asarray(body.vert_properties, float)[:, :3]
-    triangles = np.asarray(body.tri_verts, np.int64)
-    a, b, c = points[triangles[:, 0]], points[triangles[:, 1]], points[triangles[:, 2]]
-    cross = np.cross(b - a, c - a)
-    length = np.linalg.norm(cross, axis=1)
-    sound = length > 0
-    triangles, normals = triangles[sound], cross[sound] / length[sound, None]
-    edges, sides = _edges(triangles, normals)
-    return Mesh(points, triangles, normals, edges, sides)
+    made = shell(bar, chord_error)
+    return Mesh(made.points, made.triangles, made.normals, made.faces)
 
 
 def _edges(triangles: Indices, normals: Floats) -> tuple[Indices, Indices]:

@@ -12,11 +12,15 @@ from numpy.typing import NDArray
 
 from shedbim.geometry.placements import Placements
 
-__all__ = ["Box", "Projection", "View", "box_corners", "fitted"]
+__all__ = ["Border", "Box", "Projection", "View", "box_corners", "fitted"]
 
 Floats = NDArray[np.float64]
 #: Least and greatest x, y and z in building axes, mm.
 Box = tuple[tuple[float, float, float], tuple[float, float, float]]
+#: Pixels kept free at the left, the top, the right and the bottom.
+Border = tuple[float, float, float, float]
+#: No border takes more than this share of a side.
+_MOST_BORDER = 0.6
 
 
 @dataclass(frozen=True)
@@ -50,6 +54,10 @@ class Projection:
     scale: float
     shift: Floats
 
+    def finer(self, times: int) -> Projection:
+        """Give the projection onto a picture of so many times the pixels along each side."""
+        return Projection(self.turn, self.scale * times, self.shift * times)
+
     def points(self, points: Floats) -> Floats:
         """Carry points (..., 3) in building axes, mm, to picture frame (..., 3): pixels, pixels, mm."""
         turned: Floats = points @ self.turn.T
@@ -65,10 +73,13 @@ class Projection:
         return placed
 
 
-def fitted(view: View, targets: Floats, width: int, height: int) -> Projection:
+def fitted(
+    view: View, targets: Floats, width: int, height: int, border: Border = (0.0, 0.0, 0.0, 0.0)
+) -> Projection:
     """Give the projection that brings ``targets`` (n, 3), building axes, mm, inside a picture's margins.
 
-    Where ``view.box`` is given its corners are brought inside instead.
+    Where ``view.box`` is given its corners are brought inside instead. The border is kept free besides the
+    margins, as far as the picture has room for it.
     """
     away = np.array(view.direction) / np.linalg.norm(view.direction)
     right = np.cross(away, view.up)
@@ -76,9 +87,13 @@ def fitted(view: View, targets: Floats, width: int, height: int) -> Projection:
     turn = np.stack([right, np.cross(away, right), away])
     flat = (box_corners(*view.box) if view.box is not None else targets) @ turn[:2].T
     low, high = flat.min(axis=0), flat.max(axis=0)
-    room = np.array([width, height]) * (1 - 2 * view.margin)
+    size = np.array([width, height])
+    start, end = np.array(border[:2]), np.array(border[2:])
+    taken = np.minimum((start + end) / size, _MOST_BORDER) * size / np.maximum(start + end, 1e-9)
+    start, end = start * taken, end * taken
+    room = size * (1 - 2 * view.margin) - start - end
     scale = float((room / np.maximum(high - low, 1.0)).min())
-    return Projection(turn, scale, np.array([width, height]) / 2 - (low + high) / 2 * scale)
+    return Projection(turn, scale, (size + start - end) / 2 - (low + high) / 2 * scale)
 
 
 def box_corners(low: tuple[float, float, float], high: tuple[float, float, float]) -> Floats:

@@ -1,12 +1,13 @@
 """Triangles and lines turned into pixels behind a depth buffer, many at a time with numpy.
 
 Frame: x pixels to the right, y pixels down, z mm away from the eye; pixel (i, j) has its centre at
-(j + 0.5, i + 0.5). Colours are (n,) uint32, 0xRRGGBB.
+(j + 0.5, i + 0.5). What is drawn carries a number, (n,) uint32: the canvas knows nothing of its meaning.
 """
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,19 +16,34 @@ __all__ = ["Canvas"]
 
 Floats = NDArray[np.float64]
 Ints = NDArray[np.int64]
-Colours = NDArray[np.uint32]
+Numbers = NDArray[np.uint32]
 
 #: Rows, samples or pixels worked on at once: bounds memory at some hundred megabytes.
 _AT_ONCE = 2_000_000
 _EMPTY = np.uint64(0xFFFFFFFFFFFFFFFF)
 _DEPTH_STEPS = 4.0e9  # below 2³² - 1, which stands for nothing drawn
+#: Samples of a line may be this many pitches apart and still be one stretch.
+_GAP = 2.5
+
+
+@dataclass(frozen=True, eq=False)
+class _Walk:
+    """Samples of lines, line by line: the line, the pixel, the depth in mm, the place on the line and half
+    the pitch there as shares of its length; all (m,).
+    """
+
+    line: Ints
+    pixel: Ints
+    depth: Floats
+    share: Floats
+    half: Floats
 
 
 class Canvas:
-    """A picture being drawn: what lies nearest at each pixel, and how dark an edge crosses it.
+    """A picture being drawn: the number of what lies nearest at each pixel, and how dark an edge crosses it.
 
-    One 64-bit number holds a pixel: depth above, colour below, so that the least number is the nearest
-    colour and the result does not depend on the order of drawing.
+    One 64-bit value holds a pixel: depth above, number below, so that the least value is the nearest and the
+    result does not depend on the order of drawing.
     """
 
     def __init__(self, width: int, height: int, near: float, far: float) -> None:
@@ -37,44 +53,120 @@ class Canvas:
         self._nearest = np.full(width * height, _EMPTY, np.uint64)
         self._ink = np.zeros(width * height, np.float32)
 
-    def triangles(self, corners: Floats, colours: Colours) -> None:
-        """Draw triangles (n, 3, 3), picture frame, each in its colour (n,)."""
-        low, high = corners[:, :, :2].min(axis=1), corners[:, :, :2].max(axis=1)
-        seen = ((high > 0) & (low < (self.width, self.height))).all(axis=1)
+    def triangles(self, corners: Floats, numbers: Numbers) -> None:
+        """Draw triangles (n, 3, 3), picture frame, each with its number (n,)."""
+        low, high = _least(corners[:, :, :2]), _greatest(corners[:, :, :2])
+        seen = (high > 0).all(axis=1) & (low[:, 0] < self.width) & (low[:, 1] < self.height)
         # Walking along the shorter side of the surrounding box leaves the fewest spans.
-        size = high - low
-        upright = size[:, 0] < size[:, 1]
+        upright = high[:, 0] - low[:, 0] < high[:, 1] - low[:, 1]
         rows = seen & ~upright
-        self._scan(corners[rows][:, :, [1, 0, 2]], colours[rows], (self.height, self.width), (self.width, 1))
+        self._scan(corners[rows][:, :, [1, 0, 2]], numbers[rows], (self.height, self.width), (self.width, 1))
         columns = seen & upright
-        self._scan(corners[columns], colours[columns], (self.width, self.height), (1, self.width))
+        self._scan(corners[columns], numbers[columns], (self.width, self.height), (1, self.width))
 
-    def lines(self, ends: Floats, colours: Colours) -> None:
-        """Draw lines (n, 2, 3), picture frame, one pixel wide, each in its colour (n,)."""
-        for line, pixel, depth in self._samples(ends):
-            np.minimum.at(self._nearest, pixel, self._packed(depth, colours[line]))
+    def lines(self, ends: Floats, numbers: Numbers) -> None:
+        """Draw lines (n, 2, 3), picture frame, one pixel wide, each with its number (n,)."""
+        for walk in self._samples(ends):
+            np.minimum.at(self._nearest, walk.pixel, self._packed(walk.depth, numbers[walk.line]))
 
     def ink(self, ends: Floats, strength: Floats, bias: float) -> None:
         """Darken lines (n, 2, 3) by ``strength`` (n,), 0 to 1, where nothing lies ``bias`` mm before them."""
-        for line, pixel, depth in self._samples(ends):
-            drawn = self._packed(depth - bias, np.zeros(1, np.uint32)) <= self._nearest[pixel]
-            np.maximum.at(self._ink, pixel[drawn], strength[line[drawn]].astype(np.float32))
+        for walk in self._samples(ends):
+            drawn = self._foremost(walk, bias)
+            darker = strength[walk.line[drawn]].astype(np.float32)
+            np.maximum.at(self._ink, walk.pixel[drawn], darker)
 
-    def pixels(self, background: int, ink: int) -> NDArray[np.float32]:
-        """Give the picture (height, width, 3), 0 to 255; the background and the edges as 0xRRGGBB."""
-        packed = np.where(self._nearest == _EMPTY, np.uint64(background), self._nearest & np.uint64(0xFFFFFF))
-        colour = _channels(packed.astype(np.uint32))
-        mixed = colour + (_channels(np.array([ink], np.uint32)) - colour) * self._ink[:, None]
-        return mixed.reshape(self.height, self.width, 3)
+    def uncovered(self, ends: Floats, bias: float) -> tuple[Ints, Floats]:
+        """Give the stretches of lines (n, 2, 3) before which nothing lies nearer by more than ``bias`` mm.
 
-    def _packed(self, depth: Floats, colours: Colours) -> NDArray[np.uint64]:
-        """Depths (n,) in mm and colours as sortable numbers (n,)."""
+        Returns:
+            The line of each stretch (m,), and where it begins and ends (m, 2) as shares of the line.
+        """
+        return self._stretches(ends, lambda walk: self._foremost(walk, bias))
+
+    def of_number(self, ends: Floats, owner: Ints, owners: Ints) -> tuple[Ints, Floats]:
+        """Give the stretches of lines (n, 2, 3) that run where their ``owner`` (n,) is seen.
+
+        Args:
+            ends: of the lines, picture frame.
+            owner: what each line belongs to.
+            owners: (f,) what each number that was drawn belongs to.
+
+        Returns:
+            As ``uncovered``.
+        """
+        lookup = np.append(owners, -1)
+
+        def own(walk: _Walk) -> NDArray[np.bool_]:
+            number = self._numbers(walk.pixel, len(owners))
+            same: NDArray[np.bool_] = lookup[number] == owner[walk.line]
+            return same
+
+        return self._stretches(ends, own)
+
+    def seen(self, empty: int) -> Ints:
+        """Give the number seen at each pixel (height, width), and ``empty`` where nothing is."""
+        return self._numbers(slice(None), empty).reshape(self.height, self.width)
+
+    def pixels(self, colours: Numbers, background: int, ink: int, finer: int) -> NDArray[np.float32]:
+        """Give the picture (height / finer, width / finer, 3), 0 to 255, each pixel the mean of a square.
+
+        Args:
+            colours: (f,) the colour of each number, 0xRRGGBB; the background and the edges likewise.
+            background: the colour where nothing was drawn.
+            ink: the colour of edges.
+            finer: pixels of the canvas along a pixel of the picture; divides both sides.
+        """
+        table = np.append(colours, np.uint32(background)).astype(np.uint32)
+        colour = table[self._numbers(slice(None), len(colours))]
+        shape = self.height // finer, finer, self.width // finer, finer
+        picture = np.empty((shape[0], shape[2], 3), np.float32)
+        for channel, shift in enumerate((16, 8, 0)):
+            fine = ((colour >> np.uint32(shift)) & np.uint32(0xFF)).astype(np.float32)
+            fine += (np.float32((ink >> shift) & 0xFF) - fine) * self._ink
+            square = fine.reshape(shape)
+            # Adding slices is many times faster than a mean along short axes.
+            total = sum(square[:, i, :, j] for i in range(finer) for j in range(finer))
+            picture[:, :, channel] = total / np.float32(finer * finer)
+        return picture
+
+    def _numbers(self, pixel: Ints | slice, empty: int) -> Ints:
+        """The numbers (m,) seen at pixels, ``empty`` where nothing is."""
+        nearest = self._nearest[pixel]
+        number = (nearest & np.uint64(0xFFFFFFFF)).astype(np.int64)
+        return np.where(nearest == _EMPTY, empty, number)
+
+    def _foremost(self, walk: _Walk, bias: float) -> NDArray[np.bool_]:
+        """Whether nothing lies nearer than each sample (m,) by more than ``bias`` mm."""
+        first: NDArray[np.bool_] = (
+            self._packed(walk.depth - bias, np.zeros(1, np.uint32)) <= self._nearest[walk.pixel]
+        )
+        return first
+
+    def _stretches(
+        self, ends: Floats, shown: Callable[[_Walk], NDArray[np.bool_]]
+    ) -> tuple[Ints, Floats]:
+        """The line (m,) and the shares (m, 2) of the stretches of lines (n, 2, 3) that are shown."""
+        lines, shares = [np.zeros(0, np.int64)], [np.zeros((0, 2))]
+        for walk in self._samples(ends):
+            line, share, half = (each[shown(walk)] for each in (walk.line, walk.share, walk.half))
+            if not len(line):
+                continue
+            # Gaps of a sample or two are grazing depths, not something that lies before the line.
+            apart = (line[1:] != line[:-1]) | (share[1:] - share[:-1] > _GAP * (half[1:] + half[:-1]))
+            first, last = np.append(True, apart), np.append(apart, True)
+            lines.append(line[first])
+            shares.append(np.stack([share[first] - half[first], share[last] + half[last]], axis=1))
+        return np.concatenate(lines), np.clip(np.concatenate(shares), 0.0, 1.0)
+
+    def _packed(self, depth: Floats, numbers: Numbers) -> NDArray[np.uint64]:
+        """Depths (n,) in mm and numbers as sortable values (n,)."""
         steps = np.clip((depth - self._near) / self._step, 0.0, _DEPTH_STEPS).astype(np.uint64)
-        packed: NDArray[np.uint64] = (steps << np.uint64(32)) | colours.astype(np.uint64)
+        packed: NDArray[np.uint64] = (steps << np.uint64(32)) | numbers.astype(np.uint64)
         return packed
 
     def _scan(
-        self, corners: Floats, colours: Colours, size: tuple[int, int], stride: tuple[int, int]
+        self, corners: Floats, numbers: Numbers, size: tuple[int, int], stride: tuple[int, int]
     ) -> None:
         """Fill triangles (n, 3, 3) of (scan line, along it, depth), by the size and stride of both axes."""
         order = np.argsort(corners[:, :, 0], axis=1, kind="stable")
@@ -83,8 +175,11 @@ class Canvas:
         last = np.clip(np.ceil(corners[:, 2, 0] - 0.5), 0, size[0]).astype(np.int64)
         counts = last - first
         crossed = counts > 0
-        corners, colours, first, counts = corners[crossed], colours[crossed], first[crossed], counts[crossed]
+        corners, numbers, first, counts = corners[crossed], numbers[crossed], first[crossed], counts[crossed]
         slopes, gradient = _slopes(corners)
+        # A triangle seen almost edge-on would reach far beyond itself within a pixel: its depth is kept
+        # within that of its corners.
+        shallow, deep = _least(corners[:, :, 2]), _greatest(corners[:, :, 2])
         for part in _slices(counts):
             owner, within = _spread(counts[part])
             owner += part.start
@@ -98,22 +193,29 @@ class Canvas:
                 span, along = _spread(lengths[run])
                 span += run.start
                 face, across, along = owner[span], line[span], begin[span] + along
-                depth = _depth(corners[face], gradient[face], across, along)
+                depth = corners[face, 0, 2] + gradient[face, 0] * (across + 0.5 - corners[face, 0, 0])
+                depth += gradient[face, 1] * (along + 0.5 - corners[face, 0, 1])
+                depth = np.minimum(np.maximum(depth, shallow[face]), deep[face])
                 pixel = across * stride[0] + along * stride[1]
-                np.minimum.at(self._nearest, pixel, self._packed(depth, colours[face]))
+                np.minimum.at(self._nearest, pixel, self._packed(depth, numbers[face]))
 
-    def _samples(self, ends: Floats) -> Iterator[tuple[Ints, Ints, Floats]]:
-        """Walk lines (n, 2, 3) pixel by pixel inside the picture: which line, which pixel and its depth."""
-        index, ends = _clipped(ends, self.width, self.height)
-        step = ends[:, 1] - ends[:, 0]
-        counts = np.ceil(np.abs(step[:, :2]).max(axis=1)).astype(np.int64) + 1
+    def _samples(self, ends: Floats) -> Iterator[_Walk]:
+        """Walk lines (n, 2, 3) pixel by pixel inside the picture; a line is never cut between two walks."""
+        index, stretch = _clipped(ends, self.width, self.height)
+        start, step = ends[index, 0], ends[index, 1] - ends[index, 0]
+        extent = np.abs(step[:, :2]) * (stretch[:, 1] - stretch[:, 0])[:, None]
+        counts = np.ceil(np.maximum(extent[:, 0], extent[:, 1])).astype(np.int64) + 1
+        pitch = (stretch[:, 1] - stretch[:, 0]) / counts
         for part in _slices(counts):
             line, within = _spread(counts[part])
             line += part.start
-            points = ends[line, 0] + step[line] * ((within + 0.5) / counts[line])[:, None]
-            x, y = np.floor(points[:, 0]).astype(np.int64), np.floor(points[:, 1]).astype(np.int64)
+            share = stretch[line, 0] + (within + 0.5) * pitch[line]
+            x = np.floor(start[line, 0] + step[line, 0] * share).astype(np.int64)
+            y = np.floor(start[line, 1] + step[line, 1] * share).astype(np.int64)
+            depth = start[line, 2] + step[line, 2] * share
             inside = (x >= 0) & (x < self.width) & (y >= 0) & (y < self.height)
-            yield index[line[inside]], (y * self.width + x)[inside], points[inside, 2]
+            walk = index[line], y * self.width + x, depth, share, pitch[line] / 2
+            yield _Walk(*(each[inside] for each in walk))
 
 
 def _slopes(corners: Floats) -> tuple[Floats, Floats]:
@@ -140,20 +242,8 @@ def _span(corners: Floats, slopes: Floats, line: Floats) -> tuple[Floats, Floats
     return np.minimum(long, short), np.maximum(long, short)
 
 
-def _depth(corners: Floats, gradient: Floats, across: Ints, along: Ints) -> Floats:
-    """Depth (m,) at the centres of pixels on triangles (m, 3, 3), kept within each triangle's own depths.
-
-    A triangle seen almost edge-on would otherwise reach far beyond itself within a pixel.
-    """
-    origin = corners[:, 0]
-    beside = np.stack([across, along], axis=1) + 0.5 - origin[:, :2]
-    depth = origin[:, 2] + (gradient * beside).sum(axis=1)
-    kept: Floats = np.clip(depth, corners[:, :, 2].min(axis=1), corners[:, :, 2].max(axis=1))
-    return kept
-
-
 def _clipped(ends: Floats, width: int, height: int) -> tuple[Ints, Floats]:
-    """Indices (m,) and the stretches (m, 2, 3) of lines (n, 2, 3) that fall inside the picture."""
+    """Indices (m,) of lines (n, 2, 3) that enter the picture, and from where to where (m, 2) as shares."""
     start, step = ends[:, 0], ends[:, 1] - ends[:, 0]
     enter, leave = np.zeros(len(ends)), np.ones(len(ends))
     for axis, limit in ((0, width), (1, height)):
@@ -165,8 +255,7 @@ def _clipped(ends: Floats, width: int, height: int) -> tuple[Ints, Floats]:
         enter = np.where(level, enter, np.maximum(enter, t[0]))
         leave = np.where(outside, -1.0, np.where(level, leave, np.minimum(leave, t[1])))
     index = np.flatnonzero(enter <= leave)
-    stretch = np.stack([enter, leave], axis=1)[index]
-    return index, start[index][:, None, :] + step[index][:, None, :] * stretch[:, :, None]
+    return index, np.stack([enter, leave], axis=1)[index]
 
 
 def _slices(counts: Ints) -> Iterator[slice]:
@@ -186,6 +275,13 @@ def _spread(counts: Ints) -> tuple[Ints, Ints]:
     return owner, np.arange(len(owner)) - start[owner]
 
 
-def _channels(colours: Colours) -> NDArray[np.float32]:
-    """Red, green and blue (n, 3), 0 to 255."""
-    return np.stack([(colours >> shift) & 0xFF for shift in (16, 8, 0)], axis=1).astype(np.float32)
+def _least(corners: Floats) -> Floats:
+    """Least of three (n, 3, ...) -> (n, ...); many times faster than a minimum along a short axis."""
+    least: Floats = np.minimum(np.minimum(corners[:, 0], corners[:, 1]), corners[:, 2])
+    return least
+
+
+def _greatest(corners: Floats) -> Floats:
+    """Greatest of three (n, 3, ...) -> (n, ...)."""
+    greatest: Floats = np.maximum(np.maximum(corners[:, 0], corners[:, 1]), corners[:, 2])
+    return greatest

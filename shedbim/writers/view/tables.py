@@ -1,0 +1,116 @@
+"""What the page is told of a shed: texts, and columns of parts, pieces, assemblies and joints.
+
+Distances travel as hundredths of mm, masses as grams, surfaces as square centimetres, and the entries of a
+turn as billionths. Places are in building axes; the page moves them to the middle of the building itself.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import Any
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from shedbim.model.shed import Shed
+from shedbim.writers.imprint import CAUTIONS, Imprint
+from shedbim.writers.palette import PALETTE
+from shedbim.writers.view.columns import scaled
+from shedbim.writers.view.meshes import view_mesh
+from shedbim.writers.view.shown import ShownChange, ShownFinding
+
+__all__ = ["columns", "texts"]
+
+#: The entries of a turn are at most 1: this many units keep the far end of any bar within a micrometre.
+_TURN_UNITS = 1e9
+
+
+def texts(
+    shed: Shed, imprint: Imprint, findings: Sequence[ShownFinding], changes: Sequence[ShownChange]
+) -> dict[str, Any]:
+    """Give all that is text, or small enough to travel as JSON."""
+    project = shed.project
+    roles = list(dict.fromkeys(part.role for part in shed.parts))
+    return {
+        "project": {"name": project.name, "number": project.number, "revision": project.revision},
+        "imprint": {"time": imprint.stamp, "version": imprint.version, "digest": imprint.digest},
+        "cautions": CAUTIONS,
+        "notes": shed.notes,
+        "defaults": shed.defaults,
+        "grid": {
+            "letters": shed.grid.letters,
+            "x": shed.grid.x,
+            "numbers": shed.grid.numbers,
+            "y": shed.grid.y,
+        },
+        "roles": [[role.word, PALETTE[role]] for role in roles],
+        "parts": [
+            [
+                part.mark,
+                roles.index(part.role),
+                part.bar.section.designation,
+                part.grade,
+                part.finish,
+                ", ".join(marks),
+            ]
+            for part, marks in zip(shed.parts, shed.part_assembly_marks, strict=True)
+        ],
+        "keys": shed.pieces.keys,
+        "assemblies": [
+            [key, shed.assembly_types[kind].mark, shed.assembly_types[kind].kind, shed.assembly_types[kind].made]
+            for key, kind in zip(shed.assemblies.keys, shed.assemblies.type.tolist(), strict=True)
+        ],
+        "joints": [[run.kind.word, run.kind.fastening] for run in shed.joints],
+        "findings": [[each.code, each.severity, each.text, each.point, each.pieces] for each in findings],
+        "changes": [[each.word, each.pieces] for each in changes],
+    }
+
+
+def columns(shed: Shed) -> dict[str, ArrayLike]:
+    """Give all that is many whole numbers, each (n,) or (n, w)."""
+    pieces = shed.pieces
+    turns, turn = _distinct(scaled(pieces.placement[:, :, :3].reshape(-1, 9), _TURN_UNITS))
+    result: dict[str, ArrayLike] = {
+        "part sizes": [
+            [
+                int(scaled(part.bar.length)),
+                int(scaled(part.bar.mass, 1000.0)),
+                int(scaled(part.bar.surface, 1e-2)),
+                int(scaled(min(part.bar.section.width, part.bar.section.height))),
+            ]
+            for part in shed.parts
+        ],
+        "turns": turns,
+        "piece part": pieces.part,
+        "piece turn": turn,
+        "piece place": scaled(pieces.placement[:, :, 3]),
+        "piece assembly": pieces.assembly,
+        "assembly parent": shed.assemblies.parent,
+    }
+    result |= _mesh_columns(shed)
+    for number, run in enumerate(shed.joints):
+        result[f"joint {number} pieces"] = run.pieces
+        result[f"joint {number} at"] = run.at
+    return result
+
+
+def _mesh_columns(shed: Shed) -> dict[str, ArrayLike]:
+    """The meshes of all parts, one after another: how many of each, then points, triangles and edges."""
+    meshes = [view_mesh(part.bar) for part in shed.parts]
+    return {
+        "mesh counts": [[len(mesh.points), len(mesh.triangles), len(mesh.edges)] for mesh in meshes],
+        "mesh points": _stacked([scaled(mesh.points) for mesh in meshes], 3),
+        "mesh triangles": _stacked([mesh.triangles for mesh in meshes], 3),
+        "mesh edges": _stacked([mesh.edges for mesh in meshes], 2),
+    }
+
+
+def _stacked(tables: list[NDArray[np.int64]], width: int) -> NDArray[np.int64]:
+    """Tables under one another; an empty one where there are none."""
+    return np.vstack([np.empty((0, width), np.int64), *tables])
+
+
+def _distinct(rows: NDArray[np.int64]) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+    """The different rows (t, w), and which of them each row is (n,)."""
+    different, which = np.unique(rows, axis=0, return_inverse=True)
+    return different, which.reshape(-1)
