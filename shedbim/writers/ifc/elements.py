@@ -14,7 +14,7 @@ from numpy.typing import NDArray
 
 from shedbim.errors import ModelError
 from shedbim.geometry.placements import relative
-from shedbim.model.identity import piece_ids
+from shedbim.model.identity import Words, piece_words, word_ids
 from shedbim.model.shed import Shed
 from shedbim.writers.ifc.classes import assembly_class
 from shedbim.writers.ifc.context import Contexts
@@ -41,12 +41,14 @@ class Numbering:
         starts: (p + 1,) where in ``order`` the pieces of each part begin, and the end.
         in_order: n references, in the order of ``order``.
         references: n references, in the order of the pieces.
+        words: (n, 2) what the GlobalIds are made from, in the order of the pieces.
     """
 
     order: Integers
     starts: list[int]
     in_order: list[str]
     references: list[str]
+    words: Words
 
     def of_part(self, part: int) -> list[str]:
         """Give the references of the pieces of a part."""
@@ -71,7 +73,8 @@ def number_pieces(shed: Shed) -> Numbering:
     ranks[order] = np.arange(len(order))
     starts = np.concatenate([[0], np.cumsum(shed.quantities)]).tolist()
     in_order = [f"#{number}" for number in range(1, len(order) + 1)]
-    return Numbering(order, starts, in_order, [in_order[rank] for rank in ranks.tolist()])
+    words = piece_words(shed.project.id, shed.pieces.keys)
+    return Numbering(order, starts, in_order, [in_order[rank] for rank in ranks.tolist()], words)
 
 
 def write_assemblies(step: StepFile, shed: Shed, storey: Storey) -> tuple[list[str], list[str]]:
@@ -121,7 +124,7 @@ def write_pieces(
     # Index -1, a loose piece, leads to the last one: the storey's.
     owners = [outer[i] for i in pieces.assembly[numbering.order].tolist()]
     places = [f"#{start + kind}" for kind in kinds[numbering.order].tolist()]
-    columns = (owners, places, numbered(1, len(keys)), piece_ids(shed.project.id, keys), labels(keys))
+    columns = (owners, places, numbered(1, len(keys)), word_ids(numbering.words[numbering.order]), labels(keys))
     write_part_pieces = _write_owned_shapes if step.schema.is_first else _write_shared_shape
     parts = PartWriter(step, contexts)
     for part, first, last in zip(shed.parts, numbering.starts, numbering.starts[1:], strict=False):

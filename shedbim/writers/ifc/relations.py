@@ -2,18 +2,18 @@
 
 from __future__ import annotations
 
-from collections import Counter
 from collections.abc import Mapping, Sequence
 
 import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.errors import ModelError
+from shedbim.model.identity import Words, pair_ids
 from shedbim.model.joints import JointKind, JointRun
 from shedbim.model.roles import Role
 from shedbim.model.shed import Shed
 from shedbim.writers.ifc.elements import Numbering
-from shedbim.writers.ifc.stepfile import BETWEEN, SLOT, StepFile, numbered
+from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
 from shedbim.writers.ifc.text import label, listed, quoted
 
 __all__ = ["GROUPS", "write_groups", "write_joints"]
@@ -62,8 +62,10 @@ def write_joints(step: StepFile, shed: Shed, numbering: Numbering, *, shop_joint
         rows = run.pieces if shop_joints else run.pieces[~_in_one_shop_assembly(shed, run.pieces)]
         carrying = np.repeat(rows[:, 0], rows.shape[1] - 1)
         found.setdefault(run.kind, []).append(np.stack([carrying, rows[:, 1:].reshape(-1)]))
+    words = numbering.words
     for kind, pairs in found.items():
-        _write_pairs(step, shed, numbering, kind, *np.concatenate(pairs, axis=1).tolist())
+        one, other = np.concatenate(pairs, axis=1)
+        _write_pairs(step, numbering, kind, _ids(shed.project.id, kind, words, one, other), one, other)
 
 
 def _check(run: JointRun, count: int) -> None:
@@ -85,19 +87,37 @@ def _in_one_shop_assembly(shed: Shed, rows: Integers) -> NDArray[np.bool_]:
     return in_shop
 
 
+def _ids(project_id: str, kind: JointKind, words: Words, one: Integers, other: Integers) -> list[str]:
+    """Give the GlobalIds of the connections of one kind; where two pieces meet twice, each has its own."""
+    names, counts = np.unique(_times_met(one, other), return_inverse=True)
+    ids = np.empty(len(one), "U22")
+    for number, times in enumerate(names.tolist()):
+        rows = counts == number
+        name = f"connects/{kind.name}/{times}"
+        ids[rows] = pair_ids(project_id, name, words[one[rows]], words[other[rows]])
+    return [str(each) for each in ids.tolist()]
+
+
+def _times_met(one: Integers, other: Integers) -> Integers:
+    """Give for each pair how often the same two have met before it (m,)."""
+    order = np.lexsort((other, one))
+    sorted_one, sorted_other = one[order], other[order]
+    starts = np.ones(len(one), bool)
+    starts[1:] = (sorted_one[1:] != sorted_one[:-1]) | (sorted_other[1:] != sorted_other[:-1])
+    places = np.arange(len(one))
+    before = np.empty_like(order)
+    before[order] = places - np.maximum.accumulate(np.where(starts, places, 0))
+    return before
+
+
 def _write_pairs(
     step: StepFile,
-    shed: Shed,
     numbering: Numbering,
     kind: JointKind,
-    *pairs: Sequence[int],
+    ids: Sequence[str],
+    *sides: Integers,
 ) -> None:
-    """Write the connections of one kind; ``pairs`` are the pieces that carry, and those they carry."""
-    keys, references = shed.pieces.keys, numbering.references
-    of_kind = kind.name
-    names = [f"{of_kind}/{keys[one]}{BETWEEN}{keys[other]}" for one, other in zip(*pairs, strict=True)]
-    if len(set(names)) < len(names):
-        names = _told_apart(names)
+    """Write the connections of one kind; ``sides`` are the pieces that carry, and those they carry."""
     template = step.template(
         "IfcRelConnectsElements",
         "RelatingElement",
@@ -105,15 +125,6 @@ def _write_pairs(
         GlobalId=f"'{SLOT}'",
         Name=quoted(kind.word),
     )
-    numbers = numbered(step.reserve(len(names)), len(names))
-    step.fill(template, numbers, step.ids(names), *([references[piece] for piece in side] for side in pairs))
-
-
-def _told_apart(names: Sequence[str]) -> list[str]:
-    """Give the names with a count behind those that came before: two pieces may meet twice."""
-    met: Counter[str] = Counter()
-    result = []
-    for name in names:
-        result.append(f"{name}{BETWEEN}{met[name]}" if met[name] else name)
-        met[name] += 1
-    return result
+    numbers = numbered(step.reserve(len(ids)), len(ids))
+    references = numbering.references
+    step.fill(template, numbers, ids, *([references[piece] for piece in side.tolist()] for side in sides))
