@@ -8,8 +8,7 @@ from datetime import UTC, datetime
 from pathlib import Path
 from textwrap import wrap
 
-from shedbim.cli.speech import complain, say, stage_line
-from shedbim.cli.tables import show_json
+from shedbim.cli.speech import complain, say, show_json, stage_line
 from shedbim.outputs import OUTPUTS
 from shedbim.pipeline import BuildResult, build
 from shedbim.writers.imprint import CAUTIONS

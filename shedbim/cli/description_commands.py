@@ -7,8 +7,8 @@ from itertools import takewhile
 from pathlib import Path
 from uuid import uuid4
 
-from shedbim.cli.speech import say
-from shedbim.cli.tables import show_json, show_table
+from shedbim.cli.speech import say, show_json
+from shedbim.cli.tables import show_table
 from shedbim.description.listing import all_fields
 from shedbim.description.presets import new_description, preset_names, preset_text
 from shedbim.description.schema import json_schema

@@ -6,8 +6,8 @@ from collections.abc import Callable
 from dataclasses import asdict, dataclass
 from typing import Any
 
-from shedbim.cli.speech import say
-from shedbim.cli.tables import show_json, show_table
+from shedbim.cli.speech import say, show_json
+from shedbim.cli.tables import show_table
 from shedbim.errors import UnknownSection
 from shedbim.sections.catalogue import Family, designations, families, section
 from shedbim.sections.section import Section

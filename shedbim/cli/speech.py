@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+import json
 import sys
+from typing import Any
 
-__all__ = ["complain", "printable", "say", "stage_line"]
+__all__ = ["complain", "printable", "say", "show_json", "stage_line"]
 
 
 def printable(text: str) -> str:
@@ -30,3 +32,8 @@ def stage_line(stage: str, done: int, total: int) -> None:
     text = f"{done + 1}/{total} {stage}" if done < total else ""
     sys.stderr.write("\r" + printable(text).ljust(40) + ("\r" if done >= total else ""))
     sys.stderr.flush()
+
+
+def show_json(data: Any) -> None:
+    """Print one JSON object, in letters that every terminal and pipe can carry."""
+    sys.stdout.write(json.dumps(data, indent=2) + "\n")

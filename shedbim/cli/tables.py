@@ -2,10 +2,8 @@
 
 from __future__ import annotations
 
-import json
 import sys
 from collections.abc import Iterable, Sequence
-from typing import Any
 
 from rich.box import SIMPLE_HEAD
 from rich.console import Console
@@ -13,7 +11,7 @@ from rich.table import Table
 
 from shedbim.cli.speech import printable
 
-__all__ = ["show_json", "show_table"]
+__all__ = ["show_table"]
 
 _WHOLE_LINES = 2000  # characters: more than any row needs
 
@@ -30,8 +28,3 @@ def show_table(
         table.add_row(*(printable(cell) for cell in row))
     width = None if sys.stdout.isatty() else _WHOLE_LINES
     Console(file=sys.stdout, width=width, markup=False, highlight=False, emoji=False).print(table)
-
-
-def show_json(data: Any) -> None:
-    """Print one JSON object, in letters that every terminal and pipe can carry."""
-    sys.stdout.write(json.dumps(data, indent=2) + "\n")
