@@ -14,13 +14,17 @@ if TYPE_CHECKING:
     from shedbim.model.shed import Shed
     from shedbim.writers.imprint import Imprint
 
-__all__ = ["OUTPUTS", "SCHEMAS", "VIEW_NAMES", "Output", "chosen"]
+__all__ = ["LABEL_NAMES", "OUTPUTS", "PICTURE_ENDINGS", "SCHEMAS", "VIEW_NAMES", "Output", "chosen"]
 
 #: Schemas of the model file, the default first.
 SCHEMAS = ("IFC4", "IFC4X3_ADD2", "IFC2X3")
 
 #: Views that pictures are drawn of; a test holds them against the table of views, which needs numpy.
 VIEW_NAMES = ("isometric", "back", "front", "side", "plan", "frame", "bay", "piece", "place")
+
+#: What can be written on pictures, and the endings of their files; held against the pictures' own tables likewise.
+LABEL_NAMES = ("none", "grid", "marks", "keys")
+PICTURE_ENDINGS = ("png", "svg")
 
 
 @dataclass(frozen=True)

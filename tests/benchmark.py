@@ -27,6 +27,7 @@ import numpy as np
 from shedbim.description import read_text
 from shedbim.expand import assembling, expand
 from shedbim.model.shed import Shed
+from shedbim.writers.glb import write as write_meshes
 from shedbim.writers.ifc import write
 from shedbim.writers.imprint import Imprint
 from shedbim.writers.schedules.csv_text import csv_text
@@ -90,6 +91,13 @@ def model_bytes(shed: Shed) -> bytes:
     return sink.getvalue()
 
 
+def mesh_bytes(shed: Shed) -> bytes:
+    """The mesh model in memory."""
+    sink = io.BytesIO()
+    write_meshes(shed, sink)
+    return sink.getvalue()
+
+
 def schedules(shed: Shed) -> int:
     """All schedules in memory; gives their size."""
     text = "".join(csv_text(table(shed)) for table in (members, assemblies, totals))
@@ -104,6 +112,7 @@ def stages(size: int, watched: Watched) -> dict[str, float]:
     expansion, shed = timed(lambda: expand(description), runs)
     marks = watched.seconds / runs
     writing, data = timed(lambda: model_bytes(shed), runs)
+    meshing, meshes = timed(lambda: mesh_bytes(shed), runs)
     scheduling, _ = timed(lambda: schedules(shed), runs)
     whole, memory = whole_process(size)
     return {
@@ -112,10 +121,12 @@ def stages(size: int, watched: Watched) -> dict[str, float]:
         "expansion": expansion - marks,
         "marks": marks,
         "model file": writing,
+        "mesh model": meshing,
         "schedules": scheduling,
         "whole process": whole,
         "peak MB": memory,
         "bytes/piece": len(data) / len(shed.pieces),
+        "mesh b/piece": len(meshes) / len(shed.pieces),
     }
 
 
@@ -216,7 +227,9 @@ def receiver(size: int) -> None:
             count += 1
             more = iterator.next()
         meshing = time.perf_counter() - start
-        print(f"  {name:16} {megabytes:8.1f} MB  opens {opening:6.2f} s  meshes {meshing:7.1f} s  ({count} shapes)")
+        print(
+            f"  {name:16} {megabytes:8.1f} MB  opens {opening:6.2f} s  meshes {meshing:7.1f} s  ({count} shapes)"
+        )
 
 
 def main() -> None:
@@ -230,21 +243,29 @@ def main() -> None:
     for name in rows[0]:
         values = "".join(f"{row[name]:14.4g}" for row in rows)
         exponent = ""
-        if name not in ("pieces", "parts", "bytes/piece"):
-            growth = math.log(rows[-1][name] / rows[-2][name]) / math.log(rows[-1]["pieces"] / rows[-2]["pieces"])
+        if name not in ("pieces", "parts", "bytes/piece", "mesh b/piece"):
+            growth = math.log(rows[-1][name] / rows[-2][name]) / math.log(
+                rows[-1]["pieces"] / rows[-2]["pieces"]
+            )
             exponent = f"  exponent of the last step {growth:5.2f}"
         print(f"{name:14}{values}{exponent}")
     for row in rows:
         each = 1e6 / row["pieces"]
         print(
             f"{row['pieces']:8.0f} pieces: expansion and marks {(row['expansion'] + row['marks']) * each:6.1f} us a piece, "
-            f"model file {row['model file'] * each:6.1f} us a piece"
+            f"model file {row['model file'] * each:6.1f} us a piece, "
+            f"mesh model {row['mesh model'] * each:6.1f} us a piece "
+            f"({row['mesh model'] / row['model file']:.2f} of the model file)"
         )
     data = model_bytes(expand(read_text(description_text(*_SIZES[10_000]))))
     slow, ours = one_by_one(data), rows[1]["model file"]
     print(f"one entity at a time with the library {slow:.2f} s, ours {ours:.3f} s: {slow / ours:.0f} times")
-    imports, _ = timed(lambda: subprocess.run([sys.executable, "-c", "import numpy, ifcopenshell"], check=True), 5)
-    print(f"whole build of 1,000 pieces / importing numpy and ifcopenshell: {rows[0]['whole process'] / imports:.2f}")
+    imports, _ = timed(
+        lambda: subprocess.run([sys.executable, "-c", "import numpy, ifcopenshell"], check=True), 5
+    )
+    print(
+        f"whole build of 1,000 pieces / importing numpy and ifcopenshell: {rows[0]['whole process'] / imports:.2f}"
+    )
     if chosen.receiver:
         receiver(chosen.largest)
 

@@ -11,7 +11,7 @@ from functools import lru_cache
 
 import numpy as np
 from manifold3d import Manifold
-from scipy.spatial import cKDTree
+from scipy.spatial import ConvexHull, cKDTree
 
 from shedbim.description.models import Description
 from shedbim.geometry.placements import apply, compose, inverse
@@ -262,7 +262,7 @@ def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
         if group >= 0:
             members[group].append(piece)
     inside = np.unique(pieces.part[pieces.assembly >= 0]).tolist()
-    corners = {i: np.asarray(bodies(shed)[i].to_mesh().vert_properties, float)[:, :3] for i in inside}
+    corners = {i: _corners(bodies(shed)[i]) for i in inside}
     seen: dict[int, list[tuple[np.ndarray, np.ndarray]]] = {}
     clouds: dict[int, cKDTree] = {}
     for group, kind in enumerate(groups.type.tolist()):
@@ -288,7 +288,13 @@ def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
 
 
 #: Half the distance of two points of a polygon drawn for the widest tube: a tube may be turned by this much.
-_CORNERS = 2.0
+_CORNERS = 4.0
+
+
+def _corners(body: Manifold) -> np.ndarray:
+    """The corners of the hull of a body (n, 3), mm: what lies on a straight edge between two others is none."""
+    points = np.asarray(body.to_mesh().vert_properties, float)[:, :3]
+    return points[ConvexHull(points).vertices]
 
 
 def eccentricities_are_true(shed: Shed, _: Description) -> Iterator[str]:

@@ -100,7 +100,7 @@ def _spoil_mass(shed: Shed) -> Shed:
 
 def _spoil_assemblies(shed: Shed) -> Shed:
     chord = next(i for i, key in enumerate(shed.pieces.keys) if key == "3/truss/post/A-B/4")
-    return _moved(shed, shed.pieces.keys[chord], translation([5.0, 0.0, 0.0]))
+    return _moved(shed, shed.pieces.keys[chord], translation([8.0, 0.0, 0.0]))
 
 
 def _spoil_eccentricity(shed: Shed) -> Shed:

@@ -5,7 +5,6 @@ Everything is measured on the placed solids and the joints; the web patterns the
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from functools import cache
 from itertools import pairwise
 
@@ -13,7 +12,7 @@ import cast
 import numpy as np
 import pytest
 from invariants import Bars, bodies
-from pin_jointed import Forces, solve
+from placed_trusses import Node, Placed, placed_trusses, solved
 
 from shedbim.geometry.placements import apply, inverse
 from shedbim.model.joints import JointKind
@@ -26,25 +25,6 @@ TRUSSED = [name for name in cast.CAST if cast.described(name).frames.roof.system
 SLACK = SAME_LENGTH / 2 + 0.01
 
 
-@dataclass(frozen=True)
-class Node:
-    """A node of a placed truss: its place in the frame's plane, the chord's role, the webs that land there."""
-
-    place: tuple[float, float]
-    chord: Role
-    webs: tuple[int, ...]
-
-
-@dataclass(frozen=True)
-class Placed:
-    """One truss: its nodes from left to right, its chord pieces from left to right, its webs."""
-
-    name: str
-    nodes: tuple[Node, ...]
-    chords: dict[Role, tuple[int, ...]]
-    webs: tuple[int, ...]
-
-
 @cache
 def bars_of(name: str) -> Bars:
     return Bars(cast.shed_of(name))
@@ -52,27 +32,7 @@ def bars_of(name: str) -> Bars:
 
 @cache
 def trusses_of(name: str) -> tuple[Placed, ...]:
-    """Give one truss of each type, read from joints and pieces."""
-    shed, bars = cast.shed_of(name), bars_of(name)
-    at: dict[int, list[Node]] = {}
-    for run in shed.joints:
-        if run.kind is JointKind.NODE:
-            for row, point in zip(run.pieces.tolist(), run.points.tolist(), strict=True):
-                node = Node((point[0], point[2]), bars.role[row[0]], tuple(row[1:]))
-                at.setdefault(int(shed.pieces.assembly[row[0]]), []).append(node)
-    found = {}
-    for group in at:
-        if int(shed.assemblies.type[group]) in found:
-            continue
-        inside = np.flatnonzero(shed.pieces.assembly == group).tolist()
-        inside.sort(key=lambda i: bars.ends[i].mean(axis=0)[0])
-        chords = {
-            r: tuple(i for i in inside if bars.role[i] is r) for r in (Role.TOP_CHORD, Role.BOTTOM_CHORD)
-        }
-        webs = tuple(i for i in inside if bars.role[i] in (Role.DIAGONAL, Role.POST))
-        nodes = tuple(sorted(at[group], key=lambda node: node.place[0]))
-        found[int(shed.assemblies.type[group])] = Placed(shed.assemblies.keys[group], nodes, chords, webs)
-    return tuple(found.values())
+    return placed_trusses(cast.shed_of(name))
 
 
 def corners(name: str, piece: int) -> np.ndarray:
@@ -224,27 +184,6 @@ def test_both_lengths_of_a_chord_meet_at_the_ridge(name):
 
 
 # Patterns by the signs of their forces
-
-
-def solved(truss: Placed) -> tuple[Forces, dict[int, tuple]]:
-    """The truss as pin-jointed, held at the ends of its bottom chord, under 1 N/mm on the top nodes."""
-    rows = {r: [n for n in truss.nodes if n.chord is r] for r in (Role.BOTTOM_CHORD, Role.TOP_CHORD)}
-    places = {(node.chord.word, i): node.place for row in rows.values() for i, node in enumerate(row)}
-    ends: dict[int, list] = {}
-    for row in rows.values():
-        for i, node in enumerate(row):
-            for web in node.webs:
-                ends.setdefault(web, []).append((node.chord.word, i))
-    bars = [
-        pair for row in rows.values() for pair in pairwise([(n.chord.word, i) for i, n in enumerate(row)])
-    ]
-    webs = {web: tuple(pair) for web, pair in ends.items()}
-    x = np.array([node.place[0] for node in rows[Role.TOP_CHORD]])
-    edges = np.concatenate([[truss.nodes[0].place[0]], (x[1:] + x[:-1]) / 2, [truss.nodes[-1].place[0]]])
-    loads = {(Role.TOP_CHORD.word, i): (0.0, -float(w)) for i, w in enumerate(np.diff(edges))}
-    first, last = (Role.BOTTOM_CHORD.word, 0), (Role.BOTTOM_CHORD.word, len(rows[Role.BOTTOM_CHORD]) - 1)
-    forces = solve(places, [*bars, *webs.values()], loads, [(first, "x"), (first, "y"), (last, "y")])
-    return forces, webs
 
 
 @pytest.mark.parametrize("name", TRUSSED)

@@ -12,7 +12,7 @@ import typer
 from shedbim.cli.guard import EXIT_CODES, guard
 from shedbim.cli.speech import say
 from shedbim.errors import OutputError
-from shedbim.outputs import OUTPUTS, SCHEMAS, VIEW_NAMES, chosen
+from shedbim.outputs import LABEL_NAMES, OUTPUTS, SCHEMAS, VIEW_NAMES, chosen
 from shedbim.version import __version__
 
 __all__ = ["app"]
@@ -135,24 +135,46 @@ def picture(
         "", metavar="WHAT", help="The line of a frame or bay, the key of a piece, the x,y,z of a place."
     ),
     out: Path = typer.Option(
-        None, metavar="FILE", help="The PNG file.  [default: outputs/<file stem>/<view>.png]"
+        None,
+        metavar="FILE",
+        help="The picture, .png for pixels or .svg for lines.  [default: outputs/<file stem>/<view>.png]",
     ),
+    labels: str = typer.Option(
+        "", metavar="NAME", help=f"What is written on it: {', '.join(LABEL_NAMES)}.  [default: by view]"
+    ),
+    highlight: list[str] = typer.Option(
+        None, metavar="KEY", help="Key or pattern of pieces to show in red, all others pale; may be repeated."
+    ),
+    caption: bool = typer.Option(True, help="Write project and view in the corner."),
     width: int = typer.Option(1600, min=100, max=8000, help="Pixels across."),
     height: int = typer.Option(1000, min=100, max=8000, help="Pixels down."),
 ) -> None:
     """Draw a view of a shed, hidden surfaces removed, without a screen or a graphics card.
 
+    Elevations, plan and isometrics show the grid; a frame, a piece and a place also the marks of the pieces.
+
     \b
     Examples:
       shedbim picture store.yaml
-      shedbim picture store.yaml --view frame --of 3 --out frame-3.png
-      shedbim picture store.yaml --view piece --of "3/truss/top chord/*"
-      shedbim picture store.yaml --view plan --width 2400
+      shedbim picture store.yaml --view frame --of 3 --out frame-3.svg
+      shedbim picture store.yaml --view piece --of "3/truss/top chord/*" --labels keys
+      shedbim picture store.yaml --view place --of 0,7000,9000 --highlight 2/column/A
+      shedbim picture store.yaml --view plan --width 2400 --labels none --no-caption
     """
     with guard():
         from shedbim.cli.picture_command import run as run_picture
 
-        run_picture(file, view, of or None, out, width, height)
+        run_picture(
+            file,
+            view,
+            of or None,
+            out,
+            width=width,
+            height=height,
+            labels=labels or None,
+            highlight=tuple(highlight or ()),
+            caption=caption,
+        )
 
 
 @app.command(short_help="Look up sections.")

@@ -234,7 +234,7 @@ class _Maker:
     def roof_strut(self, number: int, pitched: Pitched, k: int, x: float) -> None:
         """A strut between the frames at a bracing node; a ridge node belongs to the slope on its left."""
         options = self.options.struts
-        _, at = self.strut_at_node(pitched, x, -1)
+        _, at = self.strut_at_node(x, -1)
         carriers = tuple(
             (frame.carriers[number], frame.carrier.width / 2 + STRUT_END_GAP)
             for frame in (self.frames.first, self.frames.second)
@@ -255,7 +255,7 @@ class _Maker:
                     if column >= 0
                     else frame.carrier.width / 2
                 )
-                strut, middle = self.strut_at_node(pitched, x, column)
+                strut, middle = self.strut_at_node(x, column)
                 planes = (
                     (at + inwards * (side + BRACE_SET_BACK), inwards),
                     (middle + along_slope * (_reach(strut, along_slope) + BRACE_SET_BACK), along_slope),
@@ -267,17 +267,19 @@ class _Maker:
         corners = (ends[FIRST_LINE, x0], ends[SECOND_LINE, x1], ends[FIRST_LINE, x1], ends[SECOND_LINE, x0])
         return Panel(f"roof brace/{pitched.name}/{k}", corners, pitched.normal, turned=k % 2 == 0)
 
-    def strut_at_node(self, pitched: Pitched, x: float, column: int) -> tuple[Section, Array]:
-        """The strut at a bracing node of a slope, and where its axis crosses the frame's plane (3,)."""
+    def strut_at_node(self, x: float, column: int) -> tuple[Section, Array]:
+        """The strut at a bracing node, and where its axis crosses the frame's plane (3,).
+
+        At a ridge it lies in the lower of the two planes that meet there.
+        """
         if column >= 0:
             section = self.options.eaves_strut.section
             return section, np.array([x, 0.0, self.eaves_level(column)])
         section = self.options.struts.section
-        at_ridge = pitched.left_column < 0 and abs(x - pitched.slope.x0) < 1e-6
-        owner = self.layout.slopes[self.layout.slopes.index(pitched) - 1] if at_ridge else pitched
-        middle = owner.point(x, self.depth())
-        if owner.name in self.ridge_levels and abs(x - owner.slope.x1) < 1e-6:
-            middle[2] = min(middle[2], self.ridge_levels[owner.name] - section.height / 2)
+        over = [p for p in self.layout.slopes if p.slope.x0 - 1e-6 < x < p.slope.x1 + 1e-6]
+        middle = min((p.point(x, self.depth()) for p in over), key=lambda point: float(point[2]))
+        if over[0].name in self.ridge_levels and len(over) == 2:
+            middle[2] = min(middle[2], self.ridge_levels[over[0].name] - section.height / 2)
         return section, middle
 
     def column_at(self, x: float) -> int:

@@ -3,15 +3,13 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from functools import lru_cache
 
 import numpy as np
-from manifold3d import triangulate
 from numpy.typing import NDArray
 
-from shedbim.geometry.outlines import Outline
 from shedbim.geometry.rows import distinct_rows
 from shedbim.model.bars import Bar, EndCut
+from shedbim.model.slices import creased, section_slice
 from shedbim.model.solids import solid
 from shedbim.tolerance import NOISE
 
@@ -44,23 +42,6 @@ class Shell:
     faces: Integers
 
 
-@dataclass(frozen=True, eq=False)
-class _Slice:
-    """A section cut into chords: all loops, one after another.
-
-    Attributes:
-        points: (n, 2) float, y and z.
-        following: (n,) int, the next point on the same loop.
-        triangles: (m, 3) int, anticlockwise seen from where x points to.
-        outwards: (n, 2) float, unit, square to the chord from each point to the following one.
-    """
-
-    points: Floats
-    following: Integers
-    triangles: Integers
-    outwards: Floats
-
-
 def shell(bar: Bar, chord_error: float) -> Shell:
     """Give the shell of a bar, its arcs cut into chords that leave them by ``chord_error`` mm at most."""
     made = _prism(bar, chord_error)
@@ -68,21 +49,21 @@ def shell(bar: Bar, chord_error: float) -> Shell:
 
 
 def _prism(bar: Bar, chord_error: float) -> Shell | None:
-    """The shell of a bar whose ends are plane and do not meet within it; None for another one.
+    """The shell of a bar whose ends do not meet within it; None for another one.
 
-    It has no cut to compute: each corner of the section runs from one plane to the other.
+    It has no solid to cut: each point of the section runs from one end to the other.
     """
-    if len(bar.start.slopes) > 1 or len(bar.end.slopes) > 1:
-        return None
-    cut = _slice(bar.section.outline, chord_error)
+    cut = section_slice(bar.section.outline, chord_error)
+    for end in (bar.start, bar.end):
+        if len(end.slopes) == 2 and end.slopes[0] != end.slopes[1]:
+            cut = creased(cut, np.subtract(*end.slopes))
     first, last = bar.axis
-    start = first + bar.start.offsets(cut.points, at_end=False)
-    end = last + bar.end.offsets(cut.points, at_end=True)
-    if not (end - start > NOISE).all():
+    near = first + bar.start.offsets(cut.points, at_end=False)
+    far = last + bar.end.offsets(cut.points, at_end=True)
+    if not (far - near > NOISE).all():
         return None
-    count = len(cut.points)
-    here = np.arange(count)
-    there = cut.following
+    count, chords = len(cut.points), len(cut.outwards)
+    here, there = cut.rim.T
     triangles = np.vstack(
         [
             np.column_stack([here, there, there + count]),
@@ -91,37 +72,39 @@ def _prism(bar: Bar, chord_error: float) -> Shell | None:
             cut.triangles + count,
         ]
     )
-    sides = np.column_stack([np.zeros(count), cut.outwards])
-    ends = np.stack([-_square_to(bar.start), _square_to(bar.end)])
-    faces = np.concatenate([here, here, np.repeat([count, count + 1], len(cut.triangles))])
-    points = np.empty((2 * count, 3))
-    points[:count, 0], points[count:, 0] = start, end
-    points[:, 1:] = np.tile(cut.points, (2, 1))
-    return Shell(points, triangles, np.vstack([sides, ends])[faces], faces)
+    # The faces are numbered: one for each chord, two for the planes of the start, two for those of the end.
+    middles = cut.points[cut.triangles].mean(axis=1)
+    faces = np.concatenate(
+        [
+            cut.chord,
+            cut.chord,
+            chords + _planes(bar.start, middles, at_end=False),
+            chords + 2 + _planes(bar.end, middles, at_end=True),
+        ]
+    )
+    normals = np.vstack(
+        [
+            np.column_stack([np.zeros(chords), cut.outwards]),
+            -_square_to(bar.start),
+            _square_to(bar.end),
+        ]
+    )
+    points = np.column_stack([np.concatenate([near, far]), np.tile(cut.points, (2, 1))])
+    return Shell(points, triangles, normals[faces], faces)
+
+
+def _planes(cut: EndCut, points: Floats, *, at_end: bool) -> Integers:
+    """Which plane of a cut the steel ends at over section points (n, 2), 0 or 1 (n,)."""
+    offsets = points @ np.array(cut.slopes).T - cut.offsets(points, at_end=at_end)[:, None]
+    plane: Integers = np.abs(offsets).argmin(axis=1)
+    return plane
 
 
 def _square_to(cut: EndCut) -> Floats:
-    """The unit normal (3,) of a plane cut, towards +x."""
-    ((a, b),) = cut.slopes
-    normal = np.array([1.0, -a, -b])
-    unit: Floats = normal / np.linalg.norm(normal)
+    """The unit normals (2, 3) of the planes of a cut, towards +x; of a plane cut the same one twice."""
+    normals = np.array([(1.0, -a, -b) for a, b in (cut.slopes * 2)[:2]])
+    unit: Floats = normals / np.linalg.norm(normals, axis=1)[:, None]
     return unit
-
-
-@lru_cache(maxsize=512)
-def _slice(outline: Outline, chord_error: float) -> _Slice:
-    """An outline cut into chords; kept, since many parts have the same section."""
-    loops = outline.polygons(chord_error)
-    points = np.vstack(loops)
-    following = np.arange(1, len(points) + 1)
-    begin = 0
-    for loop in loops:
-        following[begin + len(loop) - 1] = begin
-        begin += len(loop)
-    chord = points[following] - points
-    # Steel lies on the left of every loop.
-    outwards = np.column_stack([chord[:, 1], -chord[:, 0]]) / np.hypot(*chord.T)[:, None]
-    return _Slice(points, following, np.asarray(triangulate(loops), np.int64), outwards)
 
 
 def _of_solid(bar: Bar, chord_error: float) -> Shell:

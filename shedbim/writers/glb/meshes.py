@@ -8,10 +8,9 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from shedbim.geometry.rows import distinct_rows
 from shedbim.model.bars import Bar
-from shedbim.model.shells import shell
 from shedbim.model.shed import Part
+from shedbim.model.shells import shell
 from shedbim.writers.glb.text import compact
 
 __all__ = ["CHORD_ERROR", "FlatMesh", "MeshSet", "flat_mesh", "mesh_set"]
@@ -67,7 +66,9 @@ def flat_mesh(bar: Bar) -> FlatMesh:
     """Give the mesh of a bar with a normal of its own for each flat face."""
     made = shell(bar, CHORD_ERROR)
     corner, face = made.triangles.reshape(-1), np.repeat(made.faces, 3)
-    first, vertex = distinct_rows(np.column_stack([corner, face]))
+    # One number for each pair of a corner and a face.
+    pairs = face * len(made.points) + corner
+    _, first, vertex = np.unique(pairs, return_index=True, return_inverse=True)
     return FlatMesh(
         (made.points[corner[first]] / 1000).astype(np.float32),
         # Adding zero turns -0.0 into 0.0.
@@ -90,8 +91,8 @@ def mesh_set(parts: Sequence[Part], materials: Sequence[int]) -> MeshSet:
         mesh = flat_mesh(part.bar)
         meshes.append(_mesh(part, material, len(accessors)))
         vertices.append(_little_endian(mesh.points) + _little_endian(mesh.normals))
-        data = _little_endian(mesh.indices)
-        indices.append(data + bytes(-len(data) % 4))
+        # A closed surface has an even number of triangles: indices of 16 bits fill whole words too.
+        indices.append(_little_endian(mesh.indices))
         middle = vertex_end + len(vertices[-1]) // 2
         component = _UNSIGNED_SHORT if mesh.indices.itemsize == 2 else _UNSIGNED_INT
         accessors += [

@@ -11,6 +11,7 @@ from shedbim.writers.ifc.placements import point
 from shedbim.writers.ifc.properties import property_set, relate_set
 from shedbim.writers.ifc.stepfile import StepFile
 from shedbim.writers.ifc.text import NONE, TRUE, enum, label, listed, number, quoted, typed
+from shedbim.writers.imprint import CAUTIONS
 
 __all__ = ["Storey", "write_grid", "write_spatial"]
 
@@ -80,7 +81,11 @@ def _write_statements(step: StepFile, shed: Shed, project: str, site: str, build
         relate_set(step, property_set(step, "Shedbim_Issue", "project", texts), "issue", [project])
     if shed.georeference and step.schema.is_first:
         _write_map_sets(step, shed.georeference, [project, site])
-    notes = {"Notes": shed.notes, "Defaults": [f"{field}: {value}" for field, value in shed.defaults]}
+    notes = {
+        "Cautions": CAUTIONS,
+        "Notes": shed.notes,
+        "Defaults": [f"{field}: {value}" for field, value in shed.defaults],
+    }
     lists = [
         step.share(
             "IfcPropertyListValue",

@@ -55,7 +55,12 @@ class Words:
     def rectangle(self) -> Rectangle:
         """What the words cover, with a little air."""
         half, air = width(self.text, self.capital) / 2, 0.35 * self.capital
-        return self.x - half - air, self.y - 0.9 * self.capital, self.x + half + air, self.y + 0.9 * self.capital
+        return (
+            self.x - half - air,
+            self.y - 0.9 * self.capital,
+            self.x + half + air,
+            self.y + 0.9 * self.capital,
+        )
 
 
 @dataclass(frozen=True)
@@ -75,7 +80,7 @@ class Balloon:
     @property
     def half(self) -> float:
         """Half its width."""
-        return max(self.radius, width(self.text, self.capital) / 2 + 0.7 * self.capital)
+        return max(self.radius, width(self.text, self.capital) / 2 + 0.4 * self.capital)
 
     @property
     def rectangle(self) -> Rectangle:

@@ -71,7 +71,10 @@ def _table() -> dict[int, tuple[float, tuple[Points, ...]]]:
     """Width and strokes by code point."""
     with (Path(__file__).parent / "letters.csv").open(encoding="utf-8", newline="") as file:
         return {
-            int(row["code"], 16): (float(row["width"]), tuple(_points(run) for run in row["strokes"].split(";") if run))
+            int(row["code"], 16): (
+                float(row["width"]),
+                tuple(_points(run) for run in row["strokes"].split(";") if run),
+            )
             for row in csv.DictReader(file)
         }
 

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 from shedbim.writers.pictures import letters
 from shedbim.writers.pictures.annotations import INK, PAPER, Annotation, Balloon, Stroke, Words
 
-__all__ = ["CHAIN", "LETTER_WEIGHT", "chain", "draw_over"]
+__all__ = ["CHAIN", "HALO_WEIGHT", "chain", "draw_over"]
 
 Pixels = NDArray[np.float32]
 Segment = tuple[float, float, float, float]
@@ -19,7 +19,7 @@ Segment = tuple[float, float, float, float]
 #: line; the lengths are shortened to what a screen shows).
 CHAIN = (16.0, 5.0, 2.0, 5.0)
 #: Width of the strokes of letters, and of the white round them, as shares of the height of a capital.
-LETTER_WEIGHT, _HALO_WEIGHT = 0.135, 0.62
+_LETTER_WEIGHT, HALO_WEIGHT = 0.135, 0.62
 
 
 def draw_over(pixels: Pixels, annotations: Iterable[Annotation]) -> None:
@@ -44,9 +44,7 @@ def chain(stroke: Stroke) -> list[Segment]:
             cuts.append((at / length, min((at + step) / length, 1.0)))
         at, turn = at + step, turn + 1
     dx, dy = stroke.x2 - stroke.x1, stroke.y2 - stroke.y1
-    return [
-        (stroke.x1 + dx * a, stroke.y1 + dy * a, stroke.x1 + dx * b, stroke.y1 + dy * b) for a, b in cuts
-    ]
+    return [(stroke.x1 + dx * a, stroke.y1 + dy * a, stroke.x1 + dx * b, stroke.y1 + dy * b) for a, b in cuts]
 
 
 def _words(pixels: Pixels, words: Words) -> None:
@@ -59,8 +57,8 @@ def _words(pixels: Pixels, words: Words) -> None:
         for a, b in zip(run[:-1].tolist(), run[1:].tolist(), strict=True)
     ]
     if words.halo:
-        _lines(pixels, parts, _HALO_WEIGHT * words.capital, PAPER)
-    _lines(pixels, parts, max(LETTER_WEIGHT * words.capital, 1.0), words.colour)
+        _lines(pixels, parts, HALO_WEIGHT * words.capital, PAPER)
+    _lines(pixels, parts, max(_LETTER_WEIGHT * words.capital, 1.0), words.colour)
 
 
 def _balloon(pixels: Pixels, balloon: Balloon) -> None:

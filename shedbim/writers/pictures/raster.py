@@ -143,9 +143,7 @@ class Canvas:
         )
         return first
 
-    def _stretches(
-        self, ends: Floats, shown: Callable[[_Walk], NDArray[np.bool_]]
-    ) -> tuple[Ints, Floats]:
+    def _stretches(self, ends: Floats, shown: Callable[[_Walk], NDArray[np.bool_]]) -> tuple[Ints, Floats]:
         """The line (m,) and the shares (m, 2) of the stretches of lines (n, 2, 3) that are shown."""
         lines, shares = [np.zeros(0, np.int64)], [np.zeros((0, 2))]
         for walk in self._samples(ends):

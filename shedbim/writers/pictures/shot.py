@@ -7,7 +7,7 @@ the canvas.
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -30,8 +30,9 @@ FINER = 2
 #: Arcs become chords this far off, mm, and no further than this share of a section's radius, so that the
 #: chords of a thin round bar do not turn so sharply that they are drawn as edges.
 _CHORD_ERROR, _CHORD_SHARE = 1.0, 0.02
-#: A bar whose section is no deeper than this many pixels of the canvas is drawn with its axis as a line.
-_SLENDER_PIXELS = 2.0
+#: A bar whose section is no deeper than this many pixels of the canvas is drawn with its axis as a line and
+#: without edges, which would cover it all.
+_SLENDER_PIXELS = 4.0
 #: Triangles of one batch: bounds memory.
 _AT_ONCE = 400_000
 
@@ -48,6 +49,19 @@ class Batch:
     normals: Floats
     pieces: Indices
     placements: Placements
+
+    def of(self, rows: NDArray[np.bool_]) -> Batch:
+        """Only some of the pieces, chosen by a flag (n,) for each."""
+        return replace(self, pieces=self.pieces[rows], placements=self.placements[rows])
+
+    def depth(self, projection: Projection) -> float:
+        """The greater side of the section, pixels of the projection."""
+        section = self.part.bar.section
+        return max(section.width, section.height) * projection.scale
+
+    def slender(self, projection: Projection) -> bool:
+        """Whether its pieces are so thin on the canvas that they are drawn without edges."""
+        return self.depth(projection) <= _SLENDER_PIXELS
 
     def facing(self, projection: Projection) -> NDArray[np.bool_]:
         """Whether each face of each piece (n, g) is turned to the eye."""
@@ -143,7 +157,7 @@ def _batches(shed: Shed, pieces: Indices) -> Iterator[Batch]:
 
 
 def _draw(canvas: Canvas, projection: Projection, batch: Batch, base: int) -> None:
-    """Draw the triangles that face the eye, and the edges between them as lines of the same face.
+    """Draw the triangles that face the eye, and the edges between them, or the axis, as lines of the same face.
 
     The lines keep sheets and bars thinner than a pixel whole, where triangles miss the pixels' centres.
     """
@@ -155,15 +169,14 @@ def _draw(canvas: Canvas, projection: Projection, batch: Batch, base: int) -> No
     canvas.triangles(
         points[row[:, None], mesh.triangles[triangle]], _numbers(base, count, row, batch.face[triangle])
     )
+    if batch.slender(projection):
+        axis = projection.placed(batch.placements, np.array([[0.0, 0, 0], [batch.part.bar.length, 0, 0]]))
+        canvas.lines(axis, _numbers(base, count, np.arange(len(axis)), turned[:, :, 2].argmin(axis=1)))
+        return
     one, other = batch.face[mesh.sides].T
     row, edge = np.nonzero(facing[:, one] | facing[:, other])
     side = np.where(facing[row, one[edge]], one[edge], other[edge])
     canvas.lines(points[row[:, None], mesh.edges[edge]], _numbers(base, count, row, side))
-    section = batch.part.bar.section
-    if max(section.width, section.height) * projection.scale <= _SLENDER_PIXELS:
-        axis = projection.placed(batch.placements, np.array([[0.0, 0, 0], [batch.part.bar.length, 0, 0]]))
-        row = np.arange(len(axis))
-        canvas.lines(axis, _numbers(base, count, row, turned[:, :, 2].argmin(axis=1)))
 
 
 def _numbers(base: int, faces: int, row: Indices, face: Indices) -> NDArray[np.uint32]:

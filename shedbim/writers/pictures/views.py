@@ -5,7 +5,7 @@ Pieces are chosen by where they lie, not by how their keys are spelt, except whe
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from difflib import get_close_matches
 from fnmatch import fnmatchcase
@@ -16,12 +16,15 @@ from numpy.typing import NDArray
 from shedbim.errors import ShedbimError
 from shedbim.model.shed import Shed
 from shedbim.writers.pictures.boxes import piece_boxes
-from shedbim.writers.pictures.picture import picture
+from shedbim.writers.pictures.composition import LABELS, Composition, compose
+from shedbim.writers.pictures.picture import png_picture
 from shedbim.writers.pictures.projection import View
+from shedbim.writers.pictures.svg import svg_picture
+from shedbim.writers.pictures.tints import Emphasis
 
-__all__ = ["VIEWS", "NamedView", "ViewError", "render_view", "selected"]
+__all__ = ["FORMATS", "VIEWS", "Chosen", "NamedView", "ViewError", "render_view", "selected"]
 
-Chosen = tuple[View, NDArray[np.int64]]
+Indices = NDArray[np.int64]
 Direction = tuple[float, float, float]
 
 _FRONT_LEFT_ABOVE: Direction = (0.80, 1.0, -0.62)
@@ -42,28 +45,82 @@ class ViewError(ShedbimError):
 
 
 @dataclass(frozen=True)
+class Chosen:
+    """What a view draws: the pieces (n,), and of those the named ones, which keep their colours while the
+    others go pale; None when none is named.
+    """
+
+    view: View
+    pieces: Indices
+    named: Indices | None = None
+
+
+@dataclass(frozen=True)
 class NamedView:
-    """A row of the table of views: what it shows, what its argument means, and how it is set up."""
+    """A row of the table of views.
+
+    Attributes:
+        shows: what it shows.
+        argument: what its argument means.
+        choose: sets it up.
+        labels: what is written on it unless something else is asked for, one of ``LABELS``.
+    """
 
     shows: str
     argument: str
     choose: Callable[[Shed, str | None], Chosen]
+    labels: str
 
 
 def render_view(
-    shed: Shed, name: str, argument: str | None = None, *, width: int = 1600, height: int = 1000
+    shed: Shed,
+    name: str,
+    argument: str | None = None,
+    *,
+    form: str = "png",
+    width: int = 1600,
+    height: int = 1000,
+    labels: str | None = None,
+    highlight: Sequence[str] = (),
+    caption: bool = True,
 ) -> bytes:
-    """Give the PNG picture (``width`` x ``height`` pixels) of a view of ``VIEWS``.
+    """Give a view of ``VIEWS`` as the bytes of a picture of ``width`` x ``height`` pixels.
+
+    Args:
+        shed: the building.
+        name: of the view.
+        argument: what it shows, where it asks for that.
+        form: one of ``FORMATS``.
+        width: of the picture, pixels.
+        height: of the picture, pixels.
+        labels: one of ``LABELS``; None for what the view has by default.
+        highlight: keys, or patterns of keys, of pieces shown in a loud colour while all others go pale.
+        caption: whether the project and the view are written in the corner.
 
     Raises:
-        ViewError: when the name, or what its argument asks for, does not exist.
+        ViewError: when the name, the form, the labels, or what an argument asks for, does not exist.
     """
-    view, pieces = selected(shed, name, argument)
-    return picture(shed, view, pieces=pieces, width=width, height=height)
+    if form not in FORMATS:
+        raise ViewError(f"no picture format {form!r}; formats: {', '.join(FORMATS)}")
+    chosen = selected(shed, name, argument)
+    if labels is not None and labels not in LABELS:
+        raise ViewError(f"no labels {labels!r}; there are: {', '.join(LABELS)}")
+    loud = [_matching(shed, pattern) for pattern in highlight]
+    composition = compose(
+        shed,
+        chosen.view,
+        chosen.pieces,
+        width=width,
+        height=height,
+        labels=VIEWS[name].labels if labels is None else labels,
+        caption=_caption(shed, name, argument) if caption else "",
+        emphasis=Emphasis(shed, np.unique(np.concatenate([np.zeros(0, np.int64), *loud])), chosen.named),
+    )
+    return FORMATS[form](composition)
 
 
 def selected(shed: Shed, name: str, argument: str | None = None) -> Chosen:
-    """Give the view and the indices (n,) of the pieces that it draws.
+    """Give what a view draws.
 
     Raises:
         ViewError: when the name, or what its argument asks for, does not exist.
@@ -73,12 +130,19 @@ def selected(shed: Shed, name: str, argument: str | None = None) -> Chosen:
     return VIEWS[name].choose(shed, argument)
 
 
+def _caption(shed: Shed, name: str, argument: str | None) -> str:
+    """Project and view in one line."""
+    project = shed.project
+    words = (project.name, project.number, project.revision, f"{name} {argument}" if argument else name)
+    return " · ".join(word for word in words if word)
+
+
 def _whole(direction: Direction, up: Direction = (0.0, 0.0, 1.0)) -> Callable[[Shed, str | None], Chosen]:
     """The view of all pieces, or of those whose keys match, in one direction."""
 
     def choose(shed: Shed, argument: str | None) -> Chosen:
         pieces = np.arange(len(shed.pieces)) if argument is None else _matching(shed, argument)
-        return View(direction, up), pieces
+        return Chosen(View(direction, up), pieces)
 
     return choose
 
@@ -86,7 +150,7 @@ def _whole(direction: Direction, up: Direction = (0.0, 0.0, 1.0)) -> Callable[[S
 def _frame(shed: Shed, argument: str | None) -> Chosen:
     """The frame on a numbered line, seen from the front."""
     y = shed.grid.y[_number(shed, argument)]
-    return View(_ALONG), _between(shed, y, y)
+    return Chosen(View(_ALONG), _between(shed, y, y))
 
 
 def _bay(shed: Shed, argument: str | None) -> Chosen:
@@ -96,7 +160,8 @@ def _bay(shed: Shed, argument: str | None) -> Chosen:
         raise ViewError(
             f"no bay after line {argument}: it is the last; bays begin at {_listed(shed.grid.numbers[:-1])}"
         )
-    return View(_FRONT_LEFT_ABOVE), _between(shed, shed.grid.y[index], shed.grid.y[index + 1])
+    pieces = _between(shed, shed.grid.y[index], shed.grid.y[index + 1])
+    return Chosen(View(_FRONT_LEFT_ABOVE), pieces)
 
 
 def _piece(shed: Shed, argument: str | None) -> Chosen:
@@ -105,7 +170,7 @@ def _piece(shed: Shed, argument: str | None) -> Chosen:
         raise ViewError("the view 'piece' needs a key, or a pattern such as '2/*'")
     named = _matching(shed, argument)
     low, high = piece_boxes(shed, named)
-    return _near(shed, low.min(axis=0) - _NEAR, high.max(axis=0) + _NEAR)
+    return _near(shed, low.min(axis=0) - _NEAR, high.max(axis=0) + _NEAR, named)
 
 
 def _place(shed: Shed, argument: str | None) -> Chosen:
@@ -122,16 +187,18 @@ def _place(shed: Shed, argument: str | None) -> Chosen:
     return _near(shed, point - reach, point + reach)
 
 
-def _near(shed: Shed, low: NDArray[np.float64], high: NDArray[np.float64]) -> Chosen:
+def _near(
+    shed: Shed, low: NDArray[np.float64], high: NDArray[np.float64], named: Indices | None = None
+) -> Chosen:
     """What reaches into a box, the box filling the picture."""
     every = np.arange(len(shed.pieces))
     lows, highs = piece_boxes(shed, every)
     pieces = np.flatnonzero(((lows <= high) & (highs >= low)).all(axis=1))
     box = (float(low[0]), float(low[1]), float(low[2])), (float(high[0]), float(high[1]), float(high[2]))
-    return View(_FRONT_LEFT_ABOVE, box=box), pieces
+    return Chosen(View(_FRONT_LEFT_ABOVE, box=box), pieces, named)
 
 
-def _between(shed: Shed, first: float, last: float) -> NDArray[np.int64]:
+def _between(shed: Shed, first: float, last: float) -> Indices:
     """Pieces that lie wholly between two lines across the building, or on them."""
     low, high = piece_boxes(shed, np.arange(len(shed.pieces)))
     return np.flatnonzero((low[:, 1] >= first - _ON_LINE) & (high[:, 1] <= last + _ON_LINE))
@@ -144,9 +211,11 @@ def _number(shed: Shed, argument: str | None) -> int:
     return shed.grid.numbers.index(argument)
 
 
-def _matching(shed: Shed, pattern: str) -> NDArray[np.int64]:
-    """Pieces whose key is the pattern, begins with it, or matches it with * and ?."""
+def _matching(shed: Shed, pattern: str) -> Indices:
+    """The piece whose key is the pattern, or those whose keys begin with it or match it with * and ?."""
     keys = shed.pieces.keys
+    if pattern in keys:
+        return np.array([keys.index(pattern)], np.int64)
     found = [i for i, key in enumerate(keys) if key.startswith(pattern) or fnmatchcase(key, pattern)]
     if not found:
         nearest = get_close_matches(pattern, keys, n=3, cutoff=0.0)
@@ -162,13 +231,17 @@ def _listed(words: tuple[str, ...]) -> str:
 _KEYS = "key or pattern of the pieces to draw; all when left out"
 #: Every view by name, in the order people are told of them.
 VIEWS: dict[str, NamedView] = {
-    "isometric": NamedView("the building from the front left above", _KEYS, _whole(_FRONT_LEFT_ABOVE)),
-    "back": NamedView("the building from the back right above", _KEYS, _whole(_BACK_RIGHT_ABOVE)),
-    "front": NamedView("the gable elevation on line 1", _KEYS, _whole(_ALONG)),
-    "side": NamedView("the side elevation on line A", _KEYS, _whole(_ACROSS)),
-    "plan": NamedView("the plan from above, line 1 at the bottom", _KEYS, _whole(_DOWN, up=_ALONG)),
-    "frame": NamedView("one frame from the front", "number of its grid line", _frame),
-    "bay": NamedView("one bay and its two frames", "number of the grid line before it", _bay),
-    "piece": NamedView("pieces and what lies near them", "key or pattern of the pieces", _piece),
-    "place": NamedView("what passes a point, close by", "X,Y,Z or X,Y,Z,REACH in mm", _place),
+    "isometric": NamedView(
+        "the building from the front left above", _KEYS, _whole(_FRONT_LEFT_ABOVE), "grid"
+    ),
+    "back": NamedView("the building from the back right above", _KEYS, _whole(_BACK_RIGHT_ABOVE), "grid"),
+    "front": NamedView("the gable elevation on line 1", _KEYS, _whole(_ALONG), "grid"),
+    "side": NamedView("the side elevation on line A", _KEYS, _whole(_ACROSS), "grid"),
+    "plan": NamedView("the plan from above, line 1 at the bottom", _KEYS, _whole(_DOWN, up=_ALONG), "grid"),
+    "frame": NamedView("one frame from the front", "number of its grid line", _frame, "marks"),
+    "bay": NamedView("one bay and its two frames", "number of the grid line before it", _bay, "grid"),
+    "piece": NamedView("pieces and what lies near them", "key or pattern of the pieces", _piece, "marks"),
+    "place": NamedView("what passes a point, close by", "X,Y,Z or X,Y,Z,REACH in mm", _place, "marks"),
 }
+#: Every form of a picture, named as its files end.
+FORMATS: dict[str, Callable[[Composition], bytes]] = {"png": png_picture, "svg": svg_picture}

@@ -132,19 +132,25 @@ class Camera {
     this.distance = distance;
   }
 
-  /** Looks at the whole of a box with a margin, from where it looks now. */
+  /**
+   * Looks at the whole of a box with a margin, from where it looks now.
+   *
+   * With x to the right, z towards the eye and k the slope of the edge of the picture, a corner is seen where
+   * |x - ex| <= k (distance - z); the corners that bind on both sides give the nearest eye and its place.
+   */
   fit(box, margin = 1.07) {
     const { right, up, away } = this.axes();
     const middle = times(add(box.low, box.high), 0.5);
-    const aspect = this.width / this.height;
-    let distance = 300;
-    for (const corner of boxCorners(box)) {
-      const from = sub(corner, middle);
-      const across = Math.max(Math.abs(dot(from, right)) / aspect, Math.abs(dot(from, up))) * margin;
-      distance = Math.max(distance, across / FIELD - (this.parallel ? 0 : dot(from, away)));
-    }
-    this.target = middle;
-    this.distance = distance;
+    const corners = boxCorners(box).map((corner) => sub(corner, middle));
+    const bound = (axis, slope) => {
+      const most = (side) => Math.max(...corners.map((from) => side * dot(from, axis) - (this.parallel ? 0 : slope * dot(from, away))));
+      const [ahead, behind] = [most(1), most(-1)];
+      return { distance: (ahead + behind) / (2 * slope), shift: (ahead - behind) / 2 };
+    };
+    const across = bound(right, (FIELD * this.width) / this.height / margin);
+    const upwards = bound(up, FIELD / margin);
+    this.distance = Math.max(across.distance, upwards.distance, 300);
+    this.target = add(middle, add(times(right, across.shift), times(up, upwards.shift)));
   }
 }
 

@@ -3,7 +3,7 @@
 /**
  * Gives the state of the page.
  *
- * It tells of 'shown', 'selection', 'colour', 'cuts' and 'theme'. Pieces are indices.
+ * It tells of 'shown', 'selection', 'colour', 'grid', 'cuts' and 'theme'. Pieces are indices.
  */
 function createState(model) {
   const listeners = new Map();
@@ -14,6 +14,8 @@ function createState(model) {
     /** The selected pieces, in the order in which they were picked. */
     selected: new Set(),
     colourBy: 'role',
+    /** Whether the lines of the grid are drawn. */
+    gridOn: true,
 
     /** Calls `call` whenever `what` changes. */
     on(what, call) {
@@ -59,6 +61,10 @@ function createState(model) {
       let sum = 0;
       for (const each of state.shown) sum += each;
       return sum;
+    },
+    setGrid(on) {
+      state.gridOn = on;
+      state.tell('grid');
     },
     setColour(by) {
       state.colourBy = by;

@@ -1,0 +1,398 @@
+// Draws the pieces with WebGL2: one draw call for each part, however many pieces it has.
+
+const INSTANCE_BYTES = 56; // three rows of four floats, a colour of four bytes, the number of the piece
+const PICK_SIDE = 9; // pixels, odd: the square around the pointer in which pieces are looked for
+
+/** A program with its uniforms by name. */
+function compiled(gl, source) {
+  const program = gl.createProgram();
+  for (const [kind, text] of [[gl.VERTEX_SHADER, source.vertex], [gl.FRAGMENT_SHADER, source.fragment]]) {
+    const shader = gl.createShader(kind);
+    gl.shaderSource(shader, text);
+    gl.compileShader(shader);
+    if (!gl.getShaderParameter(shader, gl.COMPILE_STATUS) && !gl.isContextLost()) {
+      throw new Error(`a shader does not compile: ${gl.getShaderInfoLog(shader)}`);
+    }
+    gl.attachShader(program, shader);
+  }
+  gl.linkProgram(program);
+  if (!gl.getProgramParameter(program, gl.LINK_STATUS) && !gl.isContextLost()) {
+    throw new Error(`a program does not link: ${gl.getProgramInfoLog(program)}`);
+  }
+  const at = {};
+  const count = gl.getProgramParameter(program, gl.ACTIVE_UNIFORMS) ?? 0;
+  for (let index = 0; index < count; index++) {
+    const { name } = gl.getActiveUniform(program, index);
+    at[name.replace('[0]', '')] = gl.getUniformLocation(program, name);
+  }
+  return { program, at };
+}
+
+/** Some pieces, sorted by part, in a buffer of their own: those shown, or those selected. */
+class InstanceSet {
+  constructor(gl, model, solids, buffers) {
+    this.gl = gl;
+    this.model = model;
+    this.solids = solids;
+    this.buffer = gl.createBuffer();
+    this.groups = solids.parts.map((solid, index) => ({
+      ...solid, count: 0, depth: model.parts[index].depth,
+      faces: gl.createVertexArray(), edges: gl.createVertexArray(),
+    }));
+    this.buffers = buffers;
+    this.count = 0;
+  }
+
+  /**
+   * Fills the set with the pieces for which `kept` is not 0.
+   * @param {Uint8Array} kept  @param {Uint8Array} colours three bytes a piece  @param {Set<number>} selected
+   */
+  fill(kept, colours, selected) {
+    const { gl, model } = this;
+    const total = kept.reduce((sum, each) => sum + each, 0);
+    const bytes = new ArrayBuffer(Math.max(total, 1) * INSTANCE_BYTES);
+    const floats = new Float32Array(bytes);
+    const whole = new Uint32Array(bytes);
+    const small = new Uint8Array(bytes);
+    const p = model.pieces.placement;
+    let at = 0;
+    model.parts.forEach((part, index) => {
+      const first = at;
+      for (const piece of part.pieces) {
+        if (!kept[piece]) continue;
+        const slot = (at * INSTANCE_BYTES) / 4;
+        for (let row = 0; row < 3; row++) {
+          for (let axis = 0; axis < 4; axis++) floats[slot + 4 * row + axis] = p[12 * piece + 3 * axis + row];
+        }
+        small.set(colours.subarray(3 * piece, 3 * piece + 3), 4 * (slot + 12));
+        small[4 * (slot + 12) + 3] = selected.has(piece) ? 128 : 255;
+        whole[slot + 13] = piece;
+        at++;
+      }
+      const group = this.groups[index];
+      group.count = at - first;
+      group.first = first;
+    });
+    gl.bindBuffer(gl.ARRAY_BUFFER, this.buffer);
+    gl.bufferData(gl.ARRAY_BUFFER, bytes, gl.DYNAMIC_DRAW);
+    for (const group of this.groups) {
+      if (!group.count) continue;
+      this.#describe(group.faces, this.buffers.triangles, group.first);
+      this.#describe(group.edges, this.buffers.edges, group.first);
+    }
+    this.count = total;
+  }
+
+  #describe(array, indices, first) {
+    const { gl } = this;
+    gl.bindVertexArray(array);
+    gl.bindBuffer(gl.ELEMENT_ARRAY_BUFFER, indices);
+    gl.bindBuffer(gl.ARRAY_BUFFER, this.buffers.vertices);
+    for (const place of [0, 1]) {
+      gl.enableVertexAttribArray(place);
+      gl.vertexAttribPointer(place, 3, gl.FLOAT, false, 24, 12 * place);
+    }
+    gl.bindBuffer(gl.ARRAY_BUFFER, this.buffer);
+    const start = first * INSTANCE_BYTES;
+    for (let place = 2; place <= 6; place++) {
+      gl.enableVertexAttribArray(place);
+      gl.vertexAttribDivisor(place, 1);
+      if (place < 5) gl.vertexAttribPointer(place, 4, gl.FLOAT, false, INSTANCE_BYTES, start + 16 * (place - 2));
+      else if (place === 5) gl.vertexAttribPointer(place, 4, gl.UNSIGNED_BYTE, true, INSTANCE_BYTES, start + 48);
+      else gl.vertexAttribIPointer(place, 1, gl.UNSIGNED_INT, INSTANCE_BYTES, start + 52);
+    }
+    gl.bindVertexArray(null);
+  }
+}
+
+/** Gives the renderer of a canvas, or null where there is no WebGL2. */
+function createRenderer(canvas, model, solids) {
+  const gl = canvas.getContext('webgl2', { antialias: true, alpha: false, powerPreference: 'high-performance' });
+  return gl ? new Renderer(gl, model, solids) : null;
+}
+
+class Renderer {
+  constructor(gl, model, solids) {
+    this.gl = gl;
+    this.model = model;
+    this.faces = compiled(gl, FACES);
+    this.edges = compiled(gl, EDGES);
+    this.numbers = compiled(gl, NUMBERS);
+    this.lines = compiled(gl, LINES);
+    const filled = (kind, data) => {
+      const buffer = gl.createBuffer();
+      gl.bindBuffer(kind, buffer);
+      gl.bufferData(kind, data, gl.STATIC_DRAW);
+      return buffer;
+    };
+    gl.bindVertexArray(null);
+    const buffers = {
+      vertices: filled(gl.ARRAY_BUFFER, solids.vertices),
+      triangles: filled(gl.ELEMENT_ARRAY_BUFFER, solids.triangles),
+      edges: filled(gl.ELEMENT_ARRAY_BUFFER, solids.edges),
+    };
+    this.shown = new InstanceSet(gl, model, solids, buffers);
+    this.selected = new InstanceSet(gl, model, solids, buffers);
+    this.#makeGrid();
+    this.#makePicking();
+    /** Draw calls of the last picture. */
+    this.drawCalls = 0;
+  }
+
+  #makeGrid() {
+    const { gl } = this;
+    this.gridArray = gl.createVertexArray();
+    this.gridBuffer = gl.createBuffer();
+    this.gridCount = 0;
+    gl.bindVertexArray(this.gridArray);
+    gl.bindBuffer(gl.ARRAY_BUFFER, this.gridBuffer);
+    gl.enableVertexAttribArray(0);
+    gl.vertexAttribPointer(0, 3, gl.FLOAT, false, 12, 0);
+    gl.bindVertexArray(null);
+  }
+
+  /** Sets the lines of the grid: pairs of places, local axes, mm. */
+  setGrid(points) {
+    const { gl } = this;
+    gl.bindBuffer(gl.ARRAY_BUFFER, this.gridBuffer);
+    gl.bufferData(gl.ARRAY_BUFFER, new Float32Array(points.flat()), gl.STATIC_DRAW);
+    this.gridCount = points.length;
+  }
+
+  #makePicking() {
+    const { gl } = this;
+    this.pickFrame = gl.createFramebuffer();
+    const numbers = gl.createTexture();
+    gl.bindTexture(gl.TEXTURE_2D, numbers);
+    gl.texStorage2D(gl.TEXTURE_2D, 1, gl.R32UI, PICK_SIDE, PICK_SIDE);
+    const depth = gl.createRenderbuffer();
+    gl.bindRenderbuffer(gl.RENDERBUFFER, depth);
+    gl.renderbufferStorage(gl.RENDERBUFFER, gl.DEPTH_COMPONENT24, PICK_SIDE, PICK_SIDE);
+    gl.bindFramebuffer(gl.FRAMEBUFFER, this.pickFrame);
+    gl.framebufferTexture2D(gl.FRAMEBUFFER, gl.COLOR_ATTACHMENT0, gl.TEXTURE_2D, numbers, 0);
+    gl.framebufferRenderbuffer(gl.FRAMEBUFFER, gl.DEPTH_ATTACHMENT, gl.RENDERBUFFER, depth);
+    gl.bindFramebuffer(gl.FRAMEBUFFER, null);
+  }
+
+  /** Says which pieces are drawn, in which colours (three bytes a piece), and which are selected. */
+  setPieces(shown, colours, selected) {
+    this.shown.fill(shown, colours, selected);
+    const kept = new Uint8Array(shown.length);
+    for (const piece of selected) kept[piece] = shown[piece];
+    this.selected.fill(kept, colours, selected);
+  }
+
+  /** Uses a program with the matrix, the eye and the cut planes of a scene. */
+  #use({ program, at }, scene, toClip = scene.toClip) {
+    const { gl } = this;
+    gl.useProgram(program);
+    gl.uniformMatrix4fv(at.toClip, false, toClip);
+    if (at.cutCount) {
+      gl.uniform1i(at.cutCount, scene.cuts.length);
+      if (scene.cuts.length) gl.uniform4fv(at.cuts, scene.cuts.flat());
+    }
+    if (at.eye) gl.uniform4fv(at.eye, scene.eye);
+  }
+
+  /** Draws all groups of a set; `each` is called with a group and may say false to leave it out. */
+  #drawSet(set, array, each = () => true) {
+    const { gl } = this;
+    const faces = array === 'faces';
+    for (const group of set.groups) {
+      const count = faces ? group.triangleCount : group.edgeCount;
+      if (!group.count || !count || each(group) === false) continue;
+      gl.bindVertexArray(group[array]);
+      const first = 4 * (faces ? group.firstTriangle : group.firstEdge);
+      const mode = faces ? gl.TRIANGLES : gl.LINES;
+      if (this.separately) this.#drawOneByOne(set, group, mode, count, first);
+      else {
+        gl.drawElementsInstanced(mode, count, gl.UNSIGNED_INT, first, group.count);
+        this.drawCalls++;
+      }
+    }
+    gl.bindVertexArray(null);
+  }
+
+  /** What instancing is compared with: one draw call for each piece, its placement set before. */
+  #drawOneByOne(set, group, mode, count, first) {
+    const { gl } = this;
+    gl.bindBuffer(gl.ARRAY_BUFFER, set.buffer);
+    const placed = (instance) => {
+      const start = (group.first + instance) * INSTANCE_BYTES;
+      for (let row = 0; row < 3; row++) gl.vertexAttribPointer(2 + row, 4, gl.FLOAT, false, INSTANCE_BYTES, start + 16 * row);
+    };
+    for (let instance = 0; instance < group.count; instance++) {
+      placed(instance);
+      gl.drawElementsInstanced(mode, count, gl.UNSIGNED_INT, first, 1);
+      this.drawCalls++;
+    }
+    placed(0);
+  }
+
+  /** Draws faces so that only those towards the eye count, unless a cut lets the eye look inside. */
+  #culled(scene) {
+    const { gl } = this;
+    if (scene.cuts.length) gl.disable(gl.CULL_FACE);
+    else gl.enable(gl.CULL_FACE);
+  }
+
+  /**
+   * Draws one picture.
+   *
+   * @param scene toClip, eye (place and 1, or direction to the eye and 0), right, up, cuts (planes: four
+   *   numbers, kept where x, y, z and 1 give 0 or more), haze [from, to] depths in mm, mmAtOne, nearest depth,
+   *   theme (colours 0-1), grid (whether to draw it), edges (whether to draw them)
+   */
+  draw(scene) {
+    const { gl } = this;
+    const { theme } = scene;
+    this.drawCalls = 0;
+    gl.bindFramebuffer(gl.FRAMEBUFFER, null);
+    gl.viewport(0, 0, gl.drawingBufferWidth, gl.drawingBufferHeight);
+    // A mask left off by the picture before would keep the depth of that picture: set it before clearing.
+    gl.depthMask(true);
+    gl.disable(gl.BLEND);
+    gl.enable(gl.DEPTH_TEST);
+    gl.depthFunc(gl.LEQUAL);
+    gl.clearColor(...theme.paper, 1);
+    gl.clear(gl.COLOR_BUFFER_BIT | gl.DEPTH_BUFFER_BIT);
+
+    this.#culled(scene);
+    this.#use(this.faces, scene);
+    const { at } = this.faces;
+    gl.uniform3fv(at.right, scene.right);
+    gl.uniform3fv(at.up, scene.up);
+    gl.uniform3fv(at.accent, theme.accent);
+    gl.uniform3fv(at.cutColour, theme.cut);
+    gl.uniform3fv(at.paper, theme.paper);
+    gl.uniform2fv(at.haze, scene.haze);
+    gl.uniform1f(at.hazeMost, 0.34);
+    gl.uniform1f(at.dimmed, this.selected.count ? 0.45 : 0);
+    gl.uniform4f(at.ghost, 0, 0, 0, 0);
+    this.#drawSet(this.shown, 'faces');
+
+    gl.disable(gl.CULL_FACE);
+    gl.enable(gl.BLEND);
+    gl.blendFunc(gl.SRC_ALPHA, gl.ONE_MINUS_SRC_ALPHA);
+    gl.depthMask(false);
+    if (scene.grid) this.#drawGrid(scene);
+    if (scene.edges) this.#drawEdges(scene);
+    if (this.selected.count) this.#drawGhost(scene);
+    gl.depthMask(true);
+  }
+
+  #drawGrid(scene) {
+    const { gl } = this;
+    this.#use(this.lines, scene);
+    gl.uniform4fv(this.lines.at.line, scene.theme.grid);
+    gl.bindVertexArray(this.gridArray);
+    gl.drawArrays(gl.LINES, 0, this.gridCount);
+    gl.bindVertexArray(null);
+    this.drawCalls++;
+  }
+
+  #drawEdges(scene) {
+    const { gl } = this;
+    this.#use(this.edges, scene);
+    const { at } = this.edges;
+    const fade = [2.2, 12];
+    gl.uniform3fv(at.ink, scene.theme.ink);
+    gl.uniform3fv(at.accentInk, scene.theme.accentInk);
+    gl.uniform1f(at.mmAtOne, scene.mmAtOne);
+    gl.uniform1f(at.most, scene.theme.edge);
+    gl.uniform2fv(at.fade, fade);
+    const pixel = scene.eye[3] ? scene.mmAtOne * scene.nearest : scene.mmAtOne;
+    this.#drawSet(this.shown, 'edges', (group) => {
+      // Even the nearest piece of such a part is too thin to show an edge.
+      if (group.depth / pixel < fade[0]) return false;
+      gl.uniform1f(at.depth, group.depth);
+      return true;
+    });
+  }
+
+  /** Lets the selected pieces shine faintly through what stands before them. */
+  #drawGhost(scene) {
+    const { gl } = this;
+    this.#culled(scene);
+    gl.depthFunc(gl.GREATER);
+    this.#use(this.faces, scene);
+    gl.uniform4f(this.faces.at.ghost, ...scene.theme.accent, 0.3);
+    this.#drawSet(this.selected, 'faces');
+    gl.depthFunc(gl.LEQUAL);
+    gl.disable(gl.CULL_FACE);
+  }
+
+  /**
+   * Gives the piece at a pixel, or the nearest one within four pixels: {piece, dx, dy} in device pixels, or null.
+   * @param {number} x device pixels from the left  @param {number} y from the top  @param {boolean} exact
+   */
+  pieceAt(scene, x, y, exact = false) {
+    const { gl } = this;
+    const width = gl.drawingBufferWidth;
+    const height = gl.drawingBufferHeight;
+    // A matrix that lets the square around the pixel fill the whole of the small picture.
+    const kx = width / PICK_SIDE;
+    const ky = height / PICK_SIDE;
+    const cx = (2 * (x + 0.5)) / width - 1;
+    const cy = 1 - (2 * (y + 0.5)) / height;
+    const closer = [kx, 0, 0, 0, 0, ky, 0, 0, 0, 0, 1, 0, -cx * kx, -cy * ky, 0, 1];
+    gl.bindFramebuffer(gl.FRAMEBUFFER, this.pickFrame);
+    gl.viewport(0, 0, PICK_SIDE, PICK_SIDE);
+    gl.depthMask(true);
+    gl.disable(gl.BLEND);
+    gl.enable(gl.DEPTH_TEST);
+    gl.depthFunc(gl.LEQUAL);
+    gl.clearBufferuiv(gl.COLOR, 0, [0, 0, 0, 0]);
+    gl.clearBufferfv(gl.DEPTH, 0, [1]);
+    this.#culled(scene);
+    this.#use(this.numbers, scene, product(closer, scene.toClip));
+    const calls = this.drawCalls;
+    this.#drawSet(this.shown, 'faces');
+    this.drawCalls = calls;
+    const found = new Uint32Array(PICK_SIDE * PICK_SIDE);
+    gl.readPixels(0, 0, PICK_SIDE, PICK_SIDE, gl.RED_INTEGER, gl.UNSIGNED_INT, found);
+    gl.bindFramebuffer(gl.FRAMEBUFFER, null);
+    const half = (PICK_SIDE - 1) / 2;
+    let best = null;
+    found.forEach((number, index) => {
+      if (!number) return;
+      const dx = (index % PICK_SIDE) - half;
+      const dy = half - Math.floor(index / PICK_SIDE);
+      const far = dx * dx + dy * dy;
+      if ((!exact || far === 0) && (!best || far < best.far)) best = { piece: number - 1, dx, dy, far };
+    });
+    return best;
+  }
+
+  /** Seconds of each of `count` pictures; `separately` makes one draw call for each piece, to compare. */
+  frameTimes(scene, count, separately) {
+    const { gl } = this;
+    const times = [];
+    const pixel = new Uint8Array(4);
+    for (let frame = 0; frame < count; frame++) {
+      const start = performance.now();
+      this.separately = separately;
+      this.draw(scene);
+      this.separately = false;
+      // Reading a pixel waits until the picture is done.
+      gl.readPixels(0, 0, 1, 1, gl.RGBA, gl.UNSIGNED_BYTE, pixel);
+      times.push((performance.now() - start) / 1000);
+    }
+    return times;
+  }
+
+  /** The share of pixels that differ from the paper, 0 to 1; draws first. */
+  filledShare(scene) {
+    const { gl } = this;
+    this.draw(scene);
+    const width = gl.drawingBufferWidth;
+    const pixels = new Uint8Array(4 * width * gl.drawingBufferHeight);
+    gl.readPixels(0, 0, width, gl.drawingBufferHeight, gl.RGBA, gl.UNSIGNED_BYTE, pixels);
+    const paper = scene.theme.paper.map((value) => Math.round(255 * value));
+    let differ = 0;
+    for (let at = 0; at < pixels.length; at += 4) {
+      if (Math.abs(pixels[at] - paper[0]) + Math.abs(pixels[at + 1] - paper[1]) + Math.abs(pixels[at + 2] - paper[2]) > 12) differ++;
+    }
+    return differ / (pixels.length / 4);
+  }
+}

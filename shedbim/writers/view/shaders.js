@@ -1,0 +1,155 @@
+// The programs of the graphics card, GLSL ES 3.00. Places are mm in local axes.
+
+/** What every drawing of pieces shares: a point of the part's frame carried to its place, and the cut planes. */
+const PLACED = `
+layout(location = 0) in vec3 point;
+layout(location = 2) in vec4 rowX;
+layout(location = 3) in vec4 rowY;
+layout(location = 4) in vec4 rowZ;
+uniform mat4 toClip;
+vec3 carried(vec3 p) {
+  vec4 q = vec4(p, 1.0);
+  return vec3(dot(rowX, q), dot(rowY, q), dot(rowZ, q));
+}
+vec3 turned(vec3 d) { return vec3(dot(rowX.xyz, d), dot(rowY.xyz, d), dot(rowZ.xyz, d)); }
+`;
+
+const CUT = `
+uniform vec4 cuts[6];
+uniform int cutCount;
+void keepOrLeave(vec3 place) {
+  for (int i = 0; i < cutCount; i++) if (dot(cuts[i].xyz, place) + cuts[i].w < 0.0) discard;
+}
+`;
+
+/**
+ * Faces. Parts are closed solids, so where a cut plane opens one, the first thing seen behind the plane is a
+ * back face: painted flat in the colour of cuts it fills the cut face exactly.
+ */
+const FACES = {
+  vertex: `#version 300 es
+${PLACED}
+layout(location = 1) in vec3 normal;
+layout(location = 5) in vec4 tint;
+out vec3 place;
+out vec3 facing;
+out vec4 colour;
+void main() {
+  place = carried(point);
+  facing = turned(normal);
+  colour = tint;
+  gl_Position = toClip * vec4(place, 1.0);
+}`,
+  fragment: `#version 300 es
+precision highp float;
+in vec3 place;
+in vec3 facing;
+in vec4 colour;
+uniform vec4 eye;        // xyz place and w 1, or direction to the eye and w 0
+uniform vec3 right, up;  // of the picture
+uniform vec3 accent, cutColour, paper;
+uniform vec2 haze;       // depths mm between which far pieces turn towards the paper
+uniform float hazeMost;
+uniform float dimmed;    // share by which pieces that are not selected turn grey
+uniform vec4 ghost;      // a colour laid over everything, by its alpha
+out vec4 result;
+${CUT}
+void main() {
+  keepOrLeave(place);
+  bool selected = colour.a < 0.75;
+  if (ghost.a > 0.0) { result = vec4(ghost.rgb, ghost.a); return; }
+  if (!gl_FrontFacing) {
+    result = vec4(selected ? mix(accent, cutColour, 0.25) : cutColour, 1.0);
+    return;
+  }
+  vec3 toEye = eye.w > 0.5 ? normalize(eye.xyz - place) : eye.xyz;
+  vec3 n = normalize(facing);
+  vec3 light = normalize(toEye * 0.62 + up * 0.66 - right * 0.42);
+  float sky = 0.5 + 0.5 * n.z;
+  float shade = 0.50 + 0.38 * max(dot(n, light), 0.0) + 0.17 * sky;
+  vec3 base = selected ? accent : mix(colour.rgb, vec3(dot(colour.rgb, vec3(0.3, 0.6, 0.1))), dimmed);
+  vec3 lit = base * shade;
+  float depth = eye.w > 0.5 ? distance(eye.xyz, place) : -dot(eye.xyz, place);
+  float far = selected ? 0.0 : hazeMost * clamp((depth - haze.x) / max(haze.y - haze.x, 1.0), 0.0, 1.0);
+  result = vec4(mix(lit, paper, far), 1.0);
+}`,
+};
+
+/**
+ * Edges, drawn a little nearer to the eye than their faces. Their strength goes with how many pixels the
+ * section is deep, so that a model seen from afar does not turn black.
+ */
+const EDGES = {
+  vertex: `#version 300 es
+${PLACED}
+layout(location = 5) in vec4 tint;
+uniform vec4 eye;
+uniform float mmAtOne;   // mm a pixel shows at depth 1 mm, or everywhere where w of the eye is 0
+uniform float depth;     // of the part's section, mm
+uniform vec2 fade;       // pixels of section between which edges gain their strength
+out vec3 place;
+out float strength;
+out float selected;
+void main() {
+  place = carried(point);
+  vec3 way = eye.w > 0.5 ? eye.xyz - place : eye.xyz;
+  float far = length(way);
+  float pixel = eye.w > 0.5 ? mmAtOne * far : mmAtOne;
+  strength = smoothstep(fade.x, fade.y, depth / pixel);
+  selected = tint.a < 0.75 ? 1.0 : 0.0;
+  gl_Position = toClip * vec4(place + way / max(far, 1e-6) * pixel * 0.8, 1.0);
+}`,
+  fragment: `#version 300 es
+precision highp float;
+in vec3 place;
+in float strength;
+in float selected;
+uniform vec3 ink, accentInk;
+uniform float most;
+out vec4 result;
+${CUT}
+void main() {
+  keepOrLeave(place);
+  if (strength <= 0.004) discard;
+  result = vec4(mix(ink, accentInk, selected), most * strength);
+}`,
+};
+
+/** The number of the piece, plus one, at each pixel: hidden and cut-away pieces leave no number. */
+const NUMBERS = {
+  vertex: `#version 300 es
+precision highp int;
+${PLACED}
+layout(location = 6) in uint piece;
+out vec3 place;
+flat out uint number;
+void main() {
+  place = carried(point);
+  number = piece + 1u;
+  gl_Position = toClip * vec4(place, 1.0);
+}`,
+  fragment: `#version 300 es
+precision highp float;
+precision highp int;
+in vec3 place;
+flat in uint number;
+out uint result;
+${CUT}
+void main() {
+  keepOrLeave(place);
+  result = number;
+}`,
+};
+
+/** Lines of the grid on the floor. */
+const LINES = {
+  vertex: `#version 300 es
+layout(location = 0) in vec3 point;
+uniform mat4 toClip;
+void main() { gl_Position = toClip * vec4(point, 1.0); }`,
+  fragment: `#version 300 es
+precision highp float;
+uniform vec4 line;
+out vec4 result;
+void main() { result = line; }`,
+};

@@ -1,0 +1,214 @@
+// The stage: canvas, camera and renderer together. It draws when something changed, and at no other time.
+
+/** Reads a colour of the style sheet, such as --paper, as three numbers 0 to 1. */
+function styleColour(name) {
+  const text = getComputedStyle(document.documentElement).getPropertyValue(name).trim();
+  return [1, 3, 5].map((at) => parseInt(text.slice(at, at + 2), 16) / 255);
+}
+
+/**
+ * Gives the stage.
+ * @param model the unpacked model  @param state see state.js  @param cuts see cuts.js
+ */
+function createStage(model, state, cuts) {
+  const canvas = byId('canvas');
+  const camera = new Camera();
+  const still = matchMedia('(prefers-reduced-motion: reduce)');
+  const solids = solidBuffers(model);
+  const colours = new Uint8Array(3 * model.pieces.count);
+  const drawn = []; // called after each picture
+  let renderer = null;
+  let theme = null;
+  let shownBox = model.box;
+  let waiting = false;
+  let flight = null;
+  let restTimer = 0;
+  let resting = true;
+  let lastFrame = 0; // when the last picture of a movement was asked for, ms
+  let hurried = false;
+
+  const stage = {
+    canvas, camera, model,
+    /** How many pictures were drawn. */
+    frames: 0,
+    get renderer() { return renderer; },
+    get idle() { return !waiting && !flight && resting; },
+    onDraw: (call) => drawn.push(call),
+
+    /** Asks for a picture. `moving` allows a slow machine to leave out the edges until the movement ends. */
+    redraw(moving = false) {
+      if (moving) {
+        resting = false;
+        clearTimeout(restTimer);
+        restTimer = setTimeout(() => { resting = true; stage.redraw(); }, 140);
+      }
+      if (waiting || !renderer) return;
+      waiting = true;
+      requestAnimationFrame(() => { waiting = false; drawNow(); });
+    },
+    /** Tells the camera the size of the canvas; gives whether it changed. */
+    resize() {
+      const box = canvas.getBoundingClientRect();
+      const ratio = Math.min(window.devicePixelRatio || 1, 2.5);
+      const width = Math.max(1, Math.round(box.width * ratio));
+      const height = Math.max(1, Math.round(box.height * ratio));
+      camera.width = Math.max(1, box.width);
+      camera.height = Math.max(1, box.height);
+      if (canvas.width === width && canvas.height === height) return false;
+      canvas.width = width;
+      canvas.height = height;
+      return true;
+    },
+    /** Moves the camera to another in a short flight, or at once for who wants no motion. */
+    fly(to) {
+      if (still.matches || !renderer) {
+        Object.assign(camera, to, { width: camera.width, height: camera.height });
+        flight = null;
+        stage.redraw();
+        return;
+      }
+      flight = { from: camera.copy(), to, start: performance.now() };
+      stage.redraw();
+    },
+    /** Looks at the shown pieces, or at those given, from where the eye is or from a standard view. */
+    fit(pieces = null, view = null) {
+      const to = camera.copy();
+      if (view) [, , to.yaw, to.pitch] = STANDARD_VIEWS.find(([name]) => name === view);
+      const whole = state.gridOn && state.shownCount() === model.pieces.count;
+      const box = pieces ? boxOf(model, pieces) : whole ? withGrid(shownBox) : shownBox;
+      to.fit(box, pieces ? 1.35 : 1.05);
+      if (pieces) to.distance = Math.max(to.distance, 1800);
+      stage.fly(to);
+    },
+    /** Flies to a place, local axes, with about `reach` mm around it in view. */
+    flyTo(place, reach = 1500) {
+      const to = camera.copy();
+      to.fit({ low: place.map((value) => value - reach), high: place.map((value) => value + reach) });
+      stage.fly(to);
+    },
+    setParallel(on) {
+      camera.parallel = on;
+      stage.redraw();
+    },
+    /** Stops a flight: the hand of the user takes over. */
+    takeOver() { flight = null; },
+    /** What the line of sight through a canvas pixel meets first among what is shown and left by the cuts. */
+    meet: (x, y) => meetAny(model, state.shown, camera.ray(x, y), cuts.planes()),
+    /** The piece at a canvas pixel by the numbers the graphics card draws; near it unless `exact`. */
+    pieceAt(x, y, exact = false) {
+      if (!renderer) return null;
+      const ratio = canvas.width / camera.width;
+      const found = renderer.pieceAt(scene(), Math.floor(x * ratio), Math.floor(y * ratio), exact);
+      return found && { piece: found.piece, x: x + found.dx / ratio, y: y + found.dy / ratio };
+    },
+    frameTimes: (count, separately) => renderer.frameTimes(scene(), count, separately),
+    filledShare: () => renderer.filledShare(scene()),
+    readTheme() {
+      const [r, g, b] = styleColour('--grid-line');
+      theme = {
+        paper: styleColour('--paper'), ink: styleColour('--edge'), accent: styleColour('--accent'),
+        accentInk: styleColour('--accent-edge'), cut: styleColour('--cut'), grid: [r, g, b, 0.85],
+        edge: parseFloat(getComputedStyle(document.documentElement).getPropertyValue('--edge-strength')),
+      };
+      stage.redraw();
+    },
+  };
+
+  /** A box widened to hold the lines of the grid as well. */
+  function withGrid(box) {
+    const { x, y } = model.grid;
+    const low = sub([x[0] - GRID_REACH, y[0] - GRID_REACH, 0], model.middle);
+    const high = sub([x[x.length - 1] + GRID_REACH, y[y.length - 1] + GRID_REACH, 0], model.middle);
+    return {
+      low: box.low.map((value, axis) => Math.min(value, low[axis])),
+      high: box.high.map((value, axis) => Math.max(value, high[axis])),
+    };
+  }
+
+  function scene() {
+    const { toClip, near, far } = camera.matrix(state.gridOn ? withGrid(shownBox) : shownBox);
+    const { right, up, away } = camera.axes();
+    const eye = camera.parallel ? [...times(away, -1), 0] : [...camera.eye(), 1];
+    const from = camera.parallel ? near + dot(camera.eye(), away) : near;
+    const ratio = canvas.width / camera.width;
+    return {
+      toClip, eye, right, up, theme, near,
+      cuts: cuts.planes(),
+      haze: [from, from + (far - near)],
+      mmAtOne: (camera.parallel ? camera.scale() : camera.scale(1)) / ratio,
+      nearest: near,
+      grid: state.gridOn,
+      edges: resting || !hurried,
+    };
+  }
+
+  function drawNow() {
+    if (!renderer) return;
+    if (flight) {
+      const share = clamp((performance.now() - flight.start) / 420, 0, 1);
+      const eased = share * share * (3 - 2 * share);
+      const { width, height } = camera;
+      Object.assign(camera, between(flight.from, flight.to, eased), { width, height });
+      if (share === 1) flight = null;
+    }
+    stage.resize();
+    // Pictures that follow one another slowly while the model moves are drawn without edges.
+    const now = performance.now();
+    if (!resting && now - lastFrame < 1000) hurried = now - lastFrame > (hurried ? 25 : 60);
+    lastFrame = now;
+    renderer.draw(scene());
+    stage.frames++;
+    for (const call of drawn) call();
+    if (flight) stage.redraw();
+  }
+
+  function fillColours() {
+    for (const { colour, pieces } of COLOURINGS[state.colourBy].entries(model)) {
+      for (const piece of pieces) colours.set(colour, 3 * piece);
+    }
+  }
+
+  function fillPieces() {
+    renderer?.setPieces(state.shown, colours, state.selected);
+    stage.redraw();
+  }
+
+  function start() {
+    renderer = createRenderer(canvas, model, solids);
+    byId('no-webgl').hidden = renderer !== null;
+    canvas.hidden = renderer === null;
+    if (!renderer) return;
+    renderer.setGrid(gridLines(model).flatMap((line) => [line.from, line.to]));
+    fillPieces();
+  }
+
+  canvas.addEventListener('webglcontextlost', (event) => {
+    event.preventDefault();
+    renderer = null;
+    byId('lost').hidden = false;
+  });
+  canvas.addEventListener('webglcontextrestored', () => {
+    byId('lost').hidden = true;
+    start();
+  });
+  state.on('shown', () => {
+    const pieces = [];
+    state.shown.forEach((on, piece) => on && pieces.push(piece));
+    shownBox = boxOf(model, pieces);
+    fillPieces();
+  });
+  state.on('selection', fillPieces);
+  state.on('colour', () => { fillColours(); fillPieces(); });
+  state.on('cuts', () => stage.redraw());
+  state.on('grid', () => stage.redraw());
+  state.on('theme', () => stage.readTheme());
+  new ResizeObserver(() => stage.redraw()).observe(canvas);
+
+  stage.resize();
+  stage.readTheme();
+  fillColours();
+  start();
+  camera.fit(withGrid(shownBox), 1.0);
+  stage.redraw();
+  return stage;
+}
