@@ -11,10 +11,11 @@ from functools import lru_cache
 
 import numpy as np
 from manifold3d import Manifold
-from scipy.spatial import ConvexHull, cKDTree
+from scipy.spatial import cKDTree
 
 from shedbim.description.models import Description
 from shedbim.geometry.placements import apply, compose, inverse
+from shedbim.model.bars import Bar
 from shedbim.model.joints import At, JointKind, JointRun
 from shedbim.model.roles import Role
 from shedbim.model.shed import Shed
@@ -262,7 +263,7 @@ def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
         if group >= 0:
             members[group].append(piece)
     inside = np.unique(pieces.part[pieces.assembly >= 0]).tolist()
-    corners = {i: _corners(bodies(shed)[i]) for i in inside}
+    corners = {i: _corners(shed.parts[i].bar) for i in inside}
     seen: dict[int, list[tuple[np.ndarray, np.ndarray]]] = {}
     clouds: dict[int, cKDTree] = {}
     for group, kind in enumerate(groups.type.tolist()):
@@ -287,14 +288,16 @@ def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
                 yield f"{groups.keys[group]} differs from its like by {away:.2f} mm"
 
 
-#: Half the distance of two points of a polygon drawn for the widest tube: a tube may be turned by this much.
+#: Half the distance of two corners of the polygon drawn for the widest tube: a tube may be turned by as much.
 _CORNERS = 4.0
 
 
-def _corners(body: Manifold) -> np.ndarray:
-    """The corners of the hull of a body (n, 3), mm: what lies on a straight edge between two others is none."""
-    points = np.asarray(body.to_mesh().vert_properties, float)[:, :3]
-    return points[ConvexHull(points).vertices]
+def _corners(bar: Bar) -> np.ndarray:
+    """The corners at both ends of a bar (n, 3), mm."""
+    points = bar.section.outline.outer.polygon(0.05)
+    first, last = bar.axis
+    ends = (first + bar.start.offsets(points, at_end=False), last + bar.end.offsets(points, at_end=True))
+    return np.concatenate([np.column_stack([x, points]) for x in ends])
 
 
 def eccentricities_are_true(shed: Shed, _: Description) -> Iterator[str]:

@@ -2,88 +2,47 @@
 
 from __future__ import annotations
 
-import struct
-import zlib
+from typing import Any
 
 import numpy as np
 import pytest
 from numpy.typing import NDArray
+from picture_scenes import HALL, Pixels, block, decoded, scene
 
 from shedbim.geometry.placements import placement
 from shedbim.model.bars import Bar
 from shedbim.model.roles import Role
-from shedbim.model.shed import Assemblies, Grid, Part, Pieces, ProjectInfo, Shed
-from shedbim.outputs import VIEW_NAMES
+from shedbim.model.shed import Part, Shed
+from shedbim.outputs import LABEL_NAMES, PICTURE_ENDINGS, VIEW_NAMES
 from shedbim.sections.profiles import Flat, LippedZ, Pipe, Round
 from shedbim.sections.section import Profile, Section
 from shedbim.writers.palette import PALETTE
+from shedbim.writers.pictures.composition import LABELS, compose
 from shedbim.writers.pictures.meshes import bar_mesh
-from shedbim.writers.pictures.picture import part_mesh, picture
+from shedbim.writers.pictures.picture import png_picture
 from shedbim.writers.pictures.png import png
 from shedbim.writers.pictures.projection import View, box_corners, fitted
 from shedbim.writers.pictures.raster import Canvas
-from shedbim.writers.pictures.views import VIEWS, ViewError, render_view, selected
+from shedbim.writers.pictures.shot import part_mesh
+from shedbim.writers.pictures.tints import HIGHLIGHT, PALE
+from shedbim.writers.pictures.views import FORMATS, VIEWS, ViewError, render_view, selected
 
 FRONT = View((0.0, 1.0, 0.0))
-Pixels = NDArray[np.uint8]
-#: One piece: key, role, profile, start, end and the way its z axis leans.
-Stick = tuple[str, Role, Profile, tuple[float, ...], tuple[float, ...], tuple[float, ...]]
 
 
-def decoded(data: bytes) -> Pixels:
-    """Read a PNG (8-bit truecolour, no filters) by the letter of ISO/IEC 15948, check sums included."""
-    assert data[:8] == bytes([137, 80, 78, 71, 13, 10, 26, 10])
-    chunks, at = [], 8
-    while at < len(data):
-        (length,) = struct.unpack(">I", data[at : at + 4])
-        kind, body = data[at + 4 : at + 8], data[at + 8 : at + 8 + length]
-        (check,) = struct.unpack(">I", data[at + 8 + length : at + 12 + length])
-        assert check == zlib.crc32(kind + body)
-        chunks.append((kind, body))
-        at += 12 + length
-    assert [kind for kind, _ in chunks] == [b"IHDR", b"IDAT", b"IEND"]
-    width, height, *rest = struct.unpack(">IIBBBBB", chunks[0][1])
-    assert rest == [8, 2, 0, 0, 0]
-    rows = np.frombuffer(zlib.decompress(chunks[1][1]), np.uint8).reshape(height, 1 + 3 * width)
-    assert not rows[:, 0].any()
-    return rows[:, 1:].reshape(height, width, 3)
-
-
-def scene(*sticks: Stick) -> Shed:
-    parts, placements = [], []
-    for index, (_, role, profile, start, end, up) in enumerate(sticks):
-        name = f"section {index}"
-        length = float(np.linalg.norm(np.subtract(end, start)))
-        parts.append(
-            Part(f"{role.prefix}{index}", role, Bar(Section(name, name, profile, "test"), length), "S355", "")
-        )
-        placements.append(placement(start, np.subtract(end, start), up))
-    n = len(sticks)
-    pieces = Pieces(
-        tuple(s[0] for s in sticks), np.arange(n), np.array(placements).reshape(n, 3, 4), np.full(n, -1)
-    )
-    none = np.zeros(0, np.int64)
-    return Shed(
-        project=ProjectInfo("p", "test", "1", "P01"),
-        georeference=None,
-        grid=Grid(("A", "B"), (0.0, 9000.0), ("1", "2", "3"), (0.0, 5000.0, 12000.0)),
-        parts=tuple(parts),
-        pieces=pieces,
-        assembly_types=(),
-        assemblies=Assemblies((), none, np.zeros((0, 3, 4)), none),
-        joints=(),
-    )
-
-
-def block(key: str, role: Role, x: float, y: float, size: float) -> Stick:
-    """A cube with its least corner at (x, y, 0)."""
-    half = size / 2
-    return key, role, Flat(size, size), (x, y + half, half), (x + size, y + half, half), (0.0, 0.0, 1.0)
+def picture(shed: Shed, view: View, **options: Any) -> bytes:
+    """A picture with nothing written on it."""
+    return png_picture(compose(shed, view, **options))
 
 
 def hue_of(pixels: Pixels, role: Role) -> NDArray[np.bool_]:
     """Where a picture shows a role's colour, lit one way or another and unmixed with others."""
-    colour = np.array(PALETTE[role], float)
+    return shade_of(pixels, PALETTE[role])
+
+
+def shade_of(pixels: Pixels, mixed: tuple[float, ...]) -> NDArray[np.bool_]:
+    """Where a picture shows a colour, lit one way or another and unmixed with others."""
+    colour = np.array(mixed, float)
     shade = pixels.astype(float) @ colour / (colour @ colour)
     far = np.abs(pixels - shade[..., None] * colour).max(axis=-1)
     shown: NDArray[np.bool_] = (far <= 1.0) & (shade > 0.5) & (shade <= 1.01)
@@ -176,11 +135,11 @@ def test_a_fitted_view_reaches_its_margins_and_not_beyond(direction: tuple[float
 
 def test_front_view_has_x_to_the_right_and_z_up_and_plan_has_y_up() -> None:
     corners = np.array([[0.0, 0, 0], [1000, 0, 0], [0, 1000, 0], [0, 0, 1000]])
-    front = fitted(selected(scene(), "front")[0], corners, 100, 100).points(corners)
+    front = fitted(selected(scene(), "front").view, corners, 100, 100).points(corners)
     assert front[1, 0] > front[0, 0] + 10
     assert front[3, 1] < front[0, 1] - 10
     assert front[2, 2] == front[0, 2] + 1000
-    plan = fitted(selected(scene(), "plan")[0], corners, 100, 100).points(corners)
+    plan = fitted(selected(scene(), "plan").view, corners, 100, 100).points(corners)
     assert plan[1, 0] > plan[0, 0] + 10
     assert plan[2, 1] < plan[0, 1] - 10
     assert plan[3, 2] == plan[0, 2] - 1000
@@ -197,11 +156,11 @@ def test_placed_points_are_those_of_the_placement_projected() -> None:
 def test_two_triangles_fill_a_square_once_and_at_the_right_depth() -> None:
     square = np.array([[10, 20, 5], [40, 20, 5], [40, 60, 9], [10, 60, 9]], float)
     canvas = Canvas(50, 80, 0.0, 20.0)
-    canvas.triangles(square[[[0, 1, 2], [0, 2, 3]]], np.full(2, 0x112233, np.uint32))
+    canvas.triangles(square[[[0, 1, 2], [0, 2, 3]]], np.zeros(2, np.uint32))
     # A level sheet at depth 7 cuts the sloping square where it has fallen to 7: in its middle row.
     sheet = np.array([[0, 0, 7], [50, 0, 7], [50, 80, 7], [0, 80, 7]], float)
-    canvas.triangles(sheet[[[0, 1, 2], [0, 2, 3]]], np.full(2, 0x445566, np.uint32))
-    pixels = canvas.pixels(0xFFFFFF, 0)
+    canvas.triangles(sheet[[[0, 1, 2], [0, 2, 3]]], np.ones(2, np.uint32))
+    pixels = canvas.pixels(np.array([0x112233, 0x445566], np.uint32), 0xFFFFFF, 0, 1)
     expected = np.full((80, 50, 3), (0x44, 0x55, 0x66))
     expected[20:40, 10:40] = (0x11, 0x22, 0x33)
     assert np.array_equal(pixels, expected)
@@ -212,8 +171,8 @@ def test_triangles_partly_outside_are_cut_at_the_border() -> None:
     canvas.triangles(
         np.array([[[-500, -500, 0.5], [900, -500, 0.5], [-500, 900, 0.5]]], float), np.zeros(1, np.uint32)
     )
-    canvas.lines(np.array([[[-1e6, 10.2, 0.1], [1e6, 10.2, 0.1]]]), np.array([0xFF0000], np.uint32))
-    pixels = canvas.pixels(0xFFFFFF, 0)
+    canvas.lines(np.array([[[-1e6, 10.2, 0.1], [1e6, 10.2, 0.1]]]), np.ones(1, np.uint32))
+    pixels = canvas.pixels(np.array([0, 0xFF0000], np.uint32), 0xFFFFFF, 0, 1)
     assert (pixels[10] == (255, 0, 0)).all()
     assert (np.delete(pixels, 10, axis=0) == 0).all()
 
@@ -242,20 +201,6 @@ def test_the_palette_colours_each_role_and_no_two_alike() -> None:
     assert apart.min() > 20
 
 
-UP, OUT = (0.0, 0.0, 1.0), (1.0, 0.0, 0.0)
-#: Three columns on lines of unequal bays, and a rail in each bay.
-HALL = scene(
-    *(
-        (f"{line}/column/A", Role.COLUMN, Flat(200.0, 200.0), (0.0, y, 0.0), (0.0, y, 6000.0), OUT)
-        for line, y in ((1, 0.0), (2, 5000.0), (3, 12000.0))
-    ),
-    *(
-        (f"{bay}/rail/A", Role.SIDE_RAIL, Flat(150.0, 60.0), (-200.0, y, 900.0), (-200.0, end, 900.0), UP)
-        for bay, y, end in (("1-2", 5.0, 4995.0), ("2-3", 5005.0, 11995.0))
-    ),
-)
-
-
 @pytest.mark.parametrize(
     ("name", "argument", "pieces"),
     [
@@ -271,17 +216,17 @@ HALL = scene(
     ],
 )
 def test_views_choose_their_pieces(name: str, argument: str | None, pieces: list[int]) -> None:
-    assert selected(HALL, name, argument)[1].tolist() == pieces
+    assert selected(HALL, name, argument).pieces.tolist() == pieces
 
 
 @pytest.mark.parametrize("name", VIEWS)
 def test_every_view_gives_the_same_whole_picture_twice(name: str) -> None:
     argument = {"frame": "1", "bay": "2", "piece": "1/*", "place": "0,0,900"}.get(name)
-    data = render_view(HALL, name, argument, width=160, height=100)
+    data = render_view(HALL, name, argument, width=160, height=100, labels="none", caption=False)
     pixels = decoded(data)
     assert pixels.shape == (100, 160, 3)
     assert 40 < (pixels < 250).any(axis=2).sum() < 0.9 * 16000
-    assert render_view(HALL, name, argument, width=160, height=100) == data
+    assert render_view(HALL, name, argument, width=160, height=100, labels="none", caption=False) == data
 
 
 @pytest.mark.parametrize(
@@ -303,5 +248,61 @@ def test_what_does_not_exist_is_answered_with_what_does(name: str, argument: str
         render_view(HALL, name, argument)
 
 
-def test_help_lists_every_view() -> None:
-    assert set(VIEW_NAMES) == set(VIEWS)
+def test_lines_are_cut_where_something_lies_before_them() -> None:
+    canvas = Canvas(200, 40, 0.0, 10.0)
+    plate = np.array([[60, 0, 3], [130, 0, 3], [130, 40, 3], [60, 40, 3]], float)
+    canvas.triangles(plate[[[0, 1, 2], [0, 2, 3]]], np.zeros(2, np.uint32))
+    lines = np.array([[[10, 8, 5], [190, 22, 5]], [[10, 30, 2], [190, 30, 2]], [[70, 5, 5], [120, 9, 5]]], float)
+    index, shares = canvas.uncovered(lines, 0.5)
+    assert index.tolist() == [0, 0, 1]
+    # A pixel of the 180 that a line crosses is how sharply it can be cut.
+    expected = [[0.0, 50 / 180], [120 / 180, 1.0], [0.0, 1.0]]
+    assert shares == pytest.approx(np.array(expected), abs=1 / 180)
+    canvas.lines(lines, np.array([1, 2, 3], np.uint32))
+    index, shares = canvas.of_number(lines, np.array([7, 8, 9]), np.array([6, 7, 8, 9]))
+    assert index.tolist() == [0, 0, 1]
+    assert shares == pytest.approx(np.array(expected), abs=1 / 180)
+
+
+def test_highlighted_pieces_are_red_and_all_others_pale() -> None:
+    plain = decoded(render_view(HALL, "isometric", labels="none", caption=False))
+    loud = decoded(render_view(HALL, "isometric", labels="none", caption=False, highlight=["2/col*", "2-3/*"]))
+
+    def shows(pixels: Pixels, colour: tuple[float, ...]) -> bool:
+        return bool(shade_of(pixels, colour).sum() > 20)
+
+    for role in (Role.COLUMN, Role.SIDE_RAIL):
+        pale = tuple(255 - (255 - channel) * PALE for channel in PALETTE[role])
+        assert hue_of(plain, role).any()
+        assert not hue_of(loud, role).any()
+        assert shows(loud, pale)
+    assert shows(loud, HIGHLIGHT)
+    assert not shows(plain, HIGHLIGHT)
+    with pytest.raises(ViewError, match="nearest: 2/column/A"):
+        render_view(HALL, "isometric", highlight=["2/colum/A"])
+
+
+def test_a_whole_key_names_one_piece_and_its_beginning_all_that_begin_so() -> None:
+    shed = scene(*(block(f"1/post/{n}", Role.POST, 400.0 * n, 0, 100) for n in range(1, 13)))
+    assert selected(shed, "front", "1/post/1").pieces.tolist() == [0]
+    assert selected(shed, "front", "1/post/1*").pieces.tolist() == [0, 9, 10, 11]
+    assert selected(shed, "front", "1/pos").pieces.tolist() == list(range(12))
+    named = selected(shed, "piece", "1/post/3")
+    assert named.named is not None
+    assert named.named.tolist() == [2]
+
+
+def test_help_lists_every_view_label_and_form() -> None:
+    assert tuple(VIEWS) == VIEW_NAMES
+    assert LABELS == LABEL_NAMES
+    assert tuple(FORMATS) == PICTURE_ENDINGS
+    assert {row.labels for row in VIEWS.values()} <= set(LABELS)
+
+
+@pytest.mark.parametrize(
+    ("option", "told"),
+    [({"labels": "names"}, "none, grid, marks, keys"), ({"form": "jpg"}, "formats: png, svg")],
+)
+def test_options_that_do_not_exist_are_answered_with_those_that_do(option: dict[str, Any], told: str) -> None:
+    with pytest.raises(ViewError, match=told):
+        render_view(HALL, "front", **option)

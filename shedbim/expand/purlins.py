@@ -24,7 +24,7 @@ from shedbim.expand.frame import Frame
 from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout, Pitched, Surface
-from shedbim.expand.set_out import even_places, places_over, sag_bar_rows
+from shedbim.expand.set_out import NEAREST, even_places, places_over, sag_bar_rows
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 
@@ -113,8 +113,12 @@ def _places(description: Description, layout: Layout, frame: Frame, surface: Sur
     end = last.slope.x1 - _offset(description, layout, last.right_column) * to_plan
     spacing = options.spacing * to_plan
     if options.set_out == "nodes":
+        # Where a surface runs on over a column, one purlin there serves the end nodes of both trusses.
+        lines = layout.grid.x
+        beside = description.frames.columns.section.height / 2 + END_PLATE + NEAREST
         nodes = [x for made in frame.trusses for x in made.top_nodes]
-        return places_over(nodes, start, end, spacing)
+        nodes = [x for x in nodes if min(abs(x - line) for line in lines) > beside]
+        return places_over([*nodes, *lines], start, end, spacing)
     return even_places(start, end, spacing)
 
 

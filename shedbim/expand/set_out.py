@@ -6,10 +6,10 @@ import itertools
 from collections.abc import Sequence
 from math import ceil, radians
 
-__all__ = ["even_places", "places_over", "sag_bar_rows"]
+__all__ = ["NEAREST", "even_places", "places_over", "sag_bar_rows"]
 
 #: Two purlins nearer than this would foul each other's cleats (common practice).
-_NEAREST = 300.0
+NEAREST = 300.0
 _STEEP = radians(14.04)  # 1 in 4
 
 
@@ -21,7 +21,7 @@ def even_places(first: float, last: float, spacing: float) -> list[float]:
 
 def places_over(points: Sequence[float], first: float, last: float, spacing: float) -> list[float]:
     """Give the places over ``points`` between ``first`` and ``last``, with equal steps between them."""
-    inner = [p for p in sorted(points) if first + _NEAREST < p < last - _NEAREST]
+    inner = [p for p in sorted(points) if first + NEAREST < p < last - NEAREST]
     stops = [first, *inner, last]
     places = [first]
     for a, b in itertools.pairwise(stops):

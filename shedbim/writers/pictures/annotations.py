@@ -93,4 +93,4 @@ Annotation = Stroke | Words | Balloon
 
 def capital_height(wide: int, high: int) -> float:
     """Give the height of capitals that can be read on a picture of that size, pixels."""
-    return min(max(0.0072 * min(wide, 1.6 * high), 6.0), 36.0)
+    return min(max(0.0072 * min(wide, 1.6 * high), 5.5), 36.0)

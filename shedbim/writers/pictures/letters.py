@@ -39,11 +39,11 @@ def strokes(text: str, capital: float) -> list[Points]:
     unit, at, found = capital / _CAPITAL, 0.0, []
     for base, accents in _composed(text):
         wide, runs = _letter(base)
-        found += [(run + (at, 0.0)) * (unit, -unit) for run in runs]
+        found += [(run + np.array([at, 0.0])) * (unit, -unit) for run in runs]
         small = base.islower() and base not in _TALL_SMALL
         for accent in accents:
             foot = 0.0 if unicodedata.combining(accent) < 220 else (_SMALL if small else _CAPITAL)
-            found += [(run + (at + wide / 2, foot)) * (unit, -unit) for run in _letter(accent)[1]]
+            found += [(run + np.array([at + wide / 2, foot])) * (unit, -unit) for run in _letter(accent)[1]]
         at += wide + _GAP
     return found
 

@@ -17,16 +17,12 @@ Indices = NDArray[np.int64]
 _LEAST_THICK = 2.5
 
 
-def main_faces(seen: Indices, owners: Indices) -> tuple[Indices, Indices]:
-    """Give the face that each face is coloured as, and the face of each piece that is seen most.
+def main_faces(seen: Indices, owners: Indices) -> Indices:
+    """Give the face that each face is coloured as, (f + 1,) int with none at the end.
 
     Args:
         seen: (height, width) int, the face seen at each pixel, ``len(owners)`` where none is.
         owners: (f,) int, the piece of each face.
-
-    Returns:
-        (f + 1,) int, a face for each face and for none; and (p,) int for each piece up to the last, -1 where
-        nothing is seen of it.
     """
     faces = len(owners)
     row, column = np.nonzero(seen < faces)
@@ -44,7 +40,7 @@ def main_faces(seen: Indices, owners: Indices) -> tuple[Indices, Indices]:
     most = np.full(int(owners.max(initial=-1)) + 1, -1)
     most[pieces] = ranked[first]
     thick = count >= _LEAST_THICK * extent
-    return np.append(np.where(thick, np.arange(faces), most[owners]), faces), most
+    return np.append(np.where(thick, np.arange(faces), most[owners]), faces)
 
 
 def despeckled(image: Indices) -> Indices:

@@ -85,19 +85,17 @@ def _lines(pixels: Pixels, parts: list[Segment], width: float, colour: int) -> N
     if x0 >= x1 or y0 >= y1:
         return
     cover = np.zeros((y1 - y0, x1 - x0), np.float32)
-    for (ax, ay, bx, by), l, t, r, b in zip(
-        ends.tolist(), left.tolist(), top.tolist(), right.tolist(), bottom.tolist(), strict=True
-    ):
-        if l >= r or t >= b:
+    corners = np.stack([left, top, right, bottom], axis=1)
+    for (ax, ay, bx, by), (x_from, y_from, x_to, y_to) in zip(ends.tolist(), corners.tolist(), strict=True):
+        if x_from >= x_to or y_from >= y_to:
             continue
-        x = np.arange(l, r, dtype=np.float32)[None, :] + np.float32(0.5 - ax)
-        y = np.arange(t, b, dtype=np.float32)[:, None] + np.float32(0.5 - ay)
+        x = np.arange(x_from, x_to, dtype=np.float32)[None, :] + np.float32(0.5 - ax)
+        y = np.arange(y_from, y_to, dtype=np.float32)[:, None] + np.float32(0.5 - ay)
         dx, dy = bx - ax, by - ay
         along = np.clip((x * dx + y * dy) / max(dx * dx + dy * dy, 1e-9), 0.0, 1.0)
         distance = np.hypot(x - along * dx, y - along * dy)
-        part = np.clip(width / 2 + 0.5 - distance, 0.0, min(width, 1.0))
-        view = cover[t - y0 : b - y0, l - x0 : r - x0]
-        np.maximum(view, part, out=view)
+        view = cover[y_from - y0 : y_to - y0, x_from - x0 : x_to - x0]
+        np.maximum(view, np.clip(width / 2 + 0.5 - distance, 0.0, min(width, 1.0)), out=view)
     ink = np.array([(colour >> shift) & 0xFF for shift in (16, 8, 0)], np.float32)
     under = pixels[y0:y1, x0:x1]
     under += (ink - under) * cover[:, :, None]

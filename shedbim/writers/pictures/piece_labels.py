@@ -18,7 +18,7 @@ from shedbim.model.shed import Shed
 from shedbim.writers.pictures.annotations import INK, Annotation, Stroke, Words
 from shedbim.writers.pictures.placing import Room
 from shedbim.writers.pictures.projection import Projection
-from shedbim.writers.pictures.shot import FINER, Shot
+from shedbim.writers.pictures.shot import Shot
 
 __all__ = ["Seen", "piece_labels", "seen_pieces"]
 
@@ -26,7 +26,7 @@ Floats = NDArray[np.float64]
 Indices = NDArray[np.int64]
 
 #: A piece is labelled when it shows this many pixels.
-_LEAST_PIXELS = 25
+_LEAST_PIXELS = 8
 #: No more labels than this on a picture.
 _MOST_LABELS = 160
 #: Where along what is seen of a piece a label may be, best first.
@@ -35,14 +35,16 @@ _PLACES = (0.5, 0.35, 0.65, 0.2, 0.8)
 _ANGLES = np.arange(16) * (np.pi / 8) + np.pi / 16
 _LENGTHS = (2.2, 3.5, 5.5, 8.0, 12.0)
 #: What covering the drawing costs, and each height of a capital that a leader is long; a leader costs as such.
-_COVER_COST, _LENGTH_COST, _LEADER_COST, _PLACE_COST, _SIDE_COST = 4.0, 0.06, 0.35, 0.05, 0.12
+_COVER_COST, _LENGTH_COST, _LEADER_COST, _PLACE_COST, _SIDE_COST = 10.0, 0.06, 0.35, 0.05, 0.12
 #: A piece leans more than it lies when the way across it goes so far sideways.
 _UPRIGHT = 0.3
 #: Words lie on their piece when this share of what they cover is the piece; words beside it stand off by this
 #: many heights of a capital.
 _ON_PIECE, _BESIDE = 0.97, 0.25
+#: Points looked at between a piece and words beside it.
+_STEPS = 16
 #: A repeat is left out rather than cover more than this share of its rectangle.
-_REPEAT_COVER = 0.15
+_REPEAT_COVER = 0.06
 
 
 @dataclass(frozen=True, eq=False)
@@ -102,7 +104,9 @@ def piece_labels(
     """
     pale = shot.emphasis.pale
     order = sorted(seen, key=lambda each: (bool(pale[each.piece]), -each.pixels, each.piece))
-    firsts, repeats, told = [], [], set()
+    firsts: list[Seen] = []
+    repeats: list[Seen] = []
+    told: set[str] = set()
     for each in order:
         (repeats if texts[each.piece] in told else firsts).append(each)
         told.add(texts[each.piece])
@@ -163,6 +167,7 @@ def _best(
     middles, costs = _beside(each, size, label.capital)
     covered = room.covered(_rectangles(middles, size))
     free = room.free(_rectangles(middles, size)) & (with_leaders | (covered <= _REPEAT_COVER))
+    free &= _next_to(each, middles, owners)
     costs = np.where(free, costs + _COVER_COST * covered, np.inf)
     near = int(costs.argmin())
     if with_leaders:
@@ -193,8 +198,18 @@ def _beside(each: Seen, size: Floats, capital: float) -> tuple[Floats, Floats]:
     sides = np.array([each.across, -each.across])
     reach = each.half[:, None] + _BESIDE * capital + np.abs(sides) @ size / 2
     middles = each.middle[:, None] + sides * reach[:, :, None]
-    costs = (np.arange(len(each.middle)) * _PLACE_COST)[:, None] + (0.0, _SIDE_COST)
+    costs: Floats = (np.arange(len(each.middle)) * _PLACE_COST)[:, None] + np.array([0.0, _SIDE_COST])
     return middles.reshape(-1, 2), costs.ravel()
+
+
+def _next_to(each: Seen, middles: Floats, owners: Indices) -> NDArray[np.bool_]:
+    """Whether nothing else lies between the piece and each middle (k, 2) beside it, two for each place."""
+    starts = np.repeat(each.middle, 2, axis=0)
+    steps = starts[:, None] + (middles - starts)[:, None] * np.linspace(0.0, 1.0, _STEPS)[:, None]
+    column, row = (np.clip(steps[..., i].astype(np.int64), 0, owners.shape[1 - i] - 1) for i in (0, 1))
+    between = owners[row, column]
+    alone: NDArray[np.bool_] = ((between == each.piece) | (between < 0)).all(axis=1)
+    return alone
 
 
 def _farther(each: Seen, size: Floats, capital: float) -> tuple[Floats, Floats, Floats]:
@@ -206,7 +221,8 @@ def _farther(each: Seen, size: Floats, capital: float) -> tuple[Floats, Floats, 
     heights = np.array(_LENGTHS)[length]
     starts = each.middle[place]
     middles = starts + away * (heights * capital + each.half[place] + np.abs(away) @ size / 2)[:, None]
-    return middles, starts, place * _PLACE_COST + _LEADER_COST + heights * _LENGTH_COST
+    costs: Floats = place * _PLACE_COST + _LEADER_COST + heights * _LENGTH_COST
+    return middles, starts, costs
 
 
 def _entry(starts: Floats, middles: Floats, size: Floats) -> Floats:

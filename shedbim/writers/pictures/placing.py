@@ -49,12 +49,15 @@ class Room:
         inside &= (rectangles[:, 2] <= self.width) & (rectangles[:, 3] <= self.height)
         a, b = rectangles[:, None], self._rectangles[None]
         touching = (a[..., :2] < b[..., 2:]).all(axis=2) & (b[..., :2] < a[..., 2:]).all(axis=2)
-        return inside & ~touching.any(axis=1) & ~_enters(self._leaders, rectangles).any(axis=0)
+        crossed = _enters(self._leaders, rectangles)
+        free: Flags = inside & ~np.any(touching, axis=1) & ~np.any(crossed, axis=0)
+        return free
 
     def clear(self, leaders: Floats) -> Flags:
         """Whether each leader (k,) crosses nothing taken."""
-        crossing = _crosses(leaders, self._leaders).any(axis=1)
-        return ~crossing & ~_enters(leaders, self._rectangles).any(axis=1)
+        crossing = np.any(_crosses(leaders, self._leaders), axis=1)
+        clear: Flags = ~crossing & ~np.any(_enters(leaders, self._rectangles), axis=1)
+        return clear
 
 
 def _enters(lines: Floats, rectangles: Floats) -> Flags:
@@ -65,14 +68,16 @@ def _enters(lines: Floats, rectangles: Floats) -> Flags:
     high = (rectangles[None, :, 2:] - start) / step
     enter = np.minimum(low, high).max(axis=2, initial=0.0)
     leave = np.maximum(low, high).min(axis=2, initial=1.0)
-    return enter < leave
+    entered: Flags = enter < leave
+    return entered
 
 
 def _crosses(lines: Floats, others: Floats) -> Flags:
     """Whether lines (m, 4) cross other lines (k, 4): (m, k)."""
     a, b = lines[:, None, :2], lines[:, None, 2:]
     c, d = others[None, :, :2], others[None, :, 2:]
-    return (_side(a, b, c) * _side(a, b, d) < 0) & (_side(c, d, a) * _side(c, d, b) < 0)
+    crossed: Flags = (_side(a, b, c) * _side(a, b, d) < 0) & (_side(c, d, a) * _side(c, d, b) < 0)
+    return crossed
 
 
 def _side(a: Floats, b: Floats, c: Floats) -> Floats:

@@ -107,4 +107,5 @@ def _chained(number: Indices, start: Indices, way: Indices, stride: int) -> Indi
     second = np.minimum(found + 1, len(ranked) - 1)
     double = (second > found) & (ranked[second] == wanted)
     other = double & (way[order[found]] != (way + 1) % 4)
-    return order[np.where(other, second, found)]
+    after: Indices = order[np.where(other, second, found)]
+    return after

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass, replace
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
@@ -49,6 +50,14 @@ class Batch:
     normals: Floats
     pieces: Indices
     placements: Placements
+
+    @cached_property
+    def areas(self) -> Floats:
+        """The area (g,) of each face, mm²."""
+        a, b, c = np.moveaxis(self.mesh.points[self.mesh.triangles], 1, 0)
+        area = np.linalg.norm(np.cross(b - a, c - a), axis=1) / 2
+        areas: Floats = np.bincount(self.face, weights=area, minlength=len(self.normals)).astype(float)
+        return areas
 
     def of(self, rows: NDArray[np.bool_]) -> Batch:
         """Only some of the pieces, chosen by a flag (n,) for each."""

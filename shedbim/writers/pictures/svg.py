@@ -43,16 +43,16 @@ def svg_picture(composition: Composition) -> bytes:
         f"<title>{_text(composition.caption or 'steel shed')}</title>",
         f'<rect width="{wide}" height="{high}" fill="{_colour(PAPER)}"/>',
         f'<g transform="scale({1 / _FINE:g})" fill="none">',
-        f'<g stroke-width="{_SEAL * _FINE:g}" stroke-linejoin="round" fill-rule="evenodd">',
     ]
-    for colour, polygons in sorted(seen.faces.items()):
-        data = "".join(_polygon(points) for points in polygons)
-        lines.append(f'<path fill="{_colour(colour)}" stroke="{_colour(colour)}" d="{data}"/>')
-    lines.append("</g>")
     for (colour, width), ends in seen.bars.items():
         lines.append(
             f'<path stroke="{_colour(colour)}" stroke-width="{width * _FINE:g}" d="{_lines(ends)}"/>'
         )
+    lines.append(f'<g stroke-width="{_SEAL * _FINE:g}" stroke-linejoin="round" fill-rule="evenodd">')
+    for colour, polygons in sorted(seen.faces.items()):
+        data = "".join(_polygon(points) for points in polygons)
+        lines.append(f'<path fill="{_colour(colour)}" stroke="{_colour(colour)}" d="{data}"/>')
+    lines.append("</g>")
     lines.append(f'<g stroke="{_colour(INK)}" stroke-width="{_EDGE * _FINE:g}" stroke-linecap="round">')
     for strength, ends in seen.edges.items():
         lines.append(f'<path stroke-opacity="{strength:g}" d="{_lines(ends)}"/>')
@@ -98,7 +98,8 @@ def _written(annotations: Iterable[Annotation]) -> list[str]:
 def _stroke(stroke: Stroke) -> str:
     """A line; one without length is a dot."""
     if (stroke.x1, stroke.y1) == (stroke.x2, stroke.y2):
-        return f'<circle cx="{stroke.x1:.1f}" cy="{stroke.y1:.1f}" r="{stroke.width / 2:.1f}" fill="{_colour(stroke.colour)}"/>'
+        place = f'cx="{stroke.x1:.1f}" cy="{stroke.y1:.1f}" r="{stroke.width / 2:.1f}"'
+        return f'<circle {place} fill="{_colour(stroke.colour)}"/>'
     dashes = " ".join(f"{step * stroke.width:.1f}" for step in CHAIN)
     chain = f' stroke-dasharray="{dashes}"' if stroke.chain else ""
     return (

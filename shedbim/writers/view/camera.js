@@ -133,24 +133,26 @@ class Camera {
   }
 
   /**
-   * Looks at the whole of a box with a margin, from where it looks now.
+   * Looks at the whole of a box with a margin, from where it looks now; `covered` pixels at the right of the
+   * picture are left free.
    *
-   * With x to the right, z towards the eye and k the slope of the edge of the picture, a corner is seen where
-   * |x - ex| <= k (distance - z); the corners that bind on both sides give the nearest eye and its place.
+   * With x to the right and z towards the eye, a corner is inside the right edge of the picture, whose slope is
+   * k, where x - ex <= k (distance - z). The corners that bind on both sides give the nearest eye.
    */
-  fit(box, margin = 1.07) {
+  fit(box, margin = 1.07, covered = 0) {
     const { right, up, away } = this.axes();
     const middle = times(add(box.low, box.high), 0.5);
     const corners = boxCorners(box).map((corner) => sub(corner, middle));
-    const bound = (axis, slope) => {
-      const most = (side) => Math.max(...corners.map((from) => side * dot(from, axis) - (this.parallel ? 0 : slope * dot(from, away))));
-      const [ahead, behind] = [most(1), most(-1)];
-      return { distance: (ahead + behind) / (2 * slope), shift: (ahead - behind) / 2 };
-    };
-    const across = bound(right, (FIELD * this.width) / this.height / margin);
-    const upwards = bound(up, FIELD / margin);
-    this.distance = Math.max(across.distance, upwards.distance, 300);
-    this.target = add(middle, add(times(right, across.shift), times(up, upwards.shift)));
+    const most = (axis, slope) => Math.max(...corners.map((from) => dot(from, axis) - (this.parallel ? 0 : slope * dot(from, away))));
+    const half = (FIELD * this.width) / this.height / margin;
+    const sides = [
+      { axis: right, ahead: half * (1 - (2 * covered) / this.width), behind: half },
+      { axis: up, ahead: FIELD / margin, behind: FIELD / margin },
+    ].map((side) => ({ ...side, most: most(side.axis, side.ahead), least: most(times(side.axis, -1), side.behind) }));
+    this.distance = Math.max(300, ...sides.map((side) => (side.most + side.least) / (side.ahead + side.behind)));
+    // What room is left is shared by both sides.
+    const shifts = sides.map((side) => (side.most - side.least + this.distance * (side.behind - side.ahead)) / 2);
+    this.target = add(middle, add(times(right, shifts[0]), times(up, shifts[1])));
   }
 }
 

@@ -48,7 +48,7 @@ function createDetails(model, state, stage, cuts, say) {
 
   function one(piece) {
     const part = model.parts[model.pieces.part[piece]];
-    const state_ = !state.shown[piece] ? 'hidden' : !isReached(model, piece, cuts.planes()) ? 'cut away' : '';
+    const state_ = !state.shown[piece] ? 'hidden' : !leftOf(model, piece, cuts.planes()) ? 'cut away' : '';
     return [
       element('h3', { id: 'piece-mark' }, part.mark, element('span', { class: 'detail' }, ` ${part.role}`)),
       element('p', { id: 'piece-key', class: 'key' }, model.pieces.keys[piece]),

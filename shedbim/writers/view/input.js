@@ -4,7 +4,7 @@ const TAP_REACH = 5; // pixels a pointer may wander while it still is a tap
 
 /**
  * Lets the pointer turn, move and zoom the model.
- * @param call {tap(x, y, extend), hover(x, y)} in canvas pixels
+ * @param call {tap(x, y, extend), open(x, y) for a double tap, hover(x, y)} in canvas pixels
  */
 function listenToPointer(stage, call) {
   const { canvas, camera } = stage;
@@ -95,6 +95,7 @@ function listenToPointer(stage, call) {
   };
   canvas.addEventListener('pointerup', end);
   canvas.addEventListener('pointercancel', end);
+  canvas.addEventListener('dblclick', (event) => call.open(...spot(event)));
   canvas.addEventListener('contextmenu', (event) => event.preventDefault());
 
   let wheel = null;

@@ -38,29 +38,20 @@ function withRoom(places) {
   return places.map((_, index) => index === 0 || index === last);
 }
 
-/** Gives the corners of the outline around some points of the picture, anticlockwise. */
-function outline(points) {
-  const sorted = [...points].sort((a, b) => a[0] - b[0] || a[1] - b[1]);
-  const half = (list) => {
-    const chain = [];
-    for (const point of list) {
-      const left = () => {
-        const [a, b] = chain.slice(-2);
-        return (b[0] - a[0]) * (point[1] - a[1]) - (b[1] - a[1]) * (point[0] - a[0]) <= 0;
-      };
-      while (chain.length > 1 && left()) chain.pop();
-      chain.push(point);
-    }
-    return chain.slice(0, -1);
-  };
-  return [...half(sorted), ...half(sorted.reverse())];
+/** Whether a box stands between the eye and a place; no box does when the eye is inside it. */
+function isBehind(box, camera, place) {
+  const { away } = camera.axes();
+  const from = camera.parallel ? sub(place, times(away, 1e6)) : camera.eye();
+  const way = sub(place, from);
+  let [first, last] = [0, 1];
+  for (let axis = 0; axis < 3; axis++) {
+    const step = way[axis] || 1e-9;
+    const ends = [(box.low[axis] - from[axis]) / step, (box.high[axis] - from[axis]) / step];
+    first = Math.max(first, Math.min(...ends));
+    last = Math.min(last, Math.max(...ends));
+  }
+  return first > 0 && first < last;
 }
-
-/** Whether a point of the picture lies inside an outline. */
-const isInside = (corners, x, y) => corners.every(([ax, ay], index) => {
-  const [bx, by] = corners[(index + 1) % corners.length];
-  return (bx - ax) * (y - ay) - (by - ay) * (x - ax) > 0;
-});
 
 /** Puts labels at both ends of every line of the grid, and keeps the scale bar true. */
 function createLabels(stage, state) {
@@ -76,16 +67,13 @@ function createLabels(stage, state) {
   function place() {
     const { camera } = stage;
     const taken = [];
-    // Labels that would stand before the steel stay away, unless the eye is among it.
-    const corners = boxCorners(stage.model.box).map((corner) => camera.project(corner));
-    const around = corners.every(([, , depth]) => depth > 0) ? outline(corners) : null;
     for (const row of rows) {
       const places = row.map(({ place }) => camera.project(place));
       const room = withRoom(places);
-      row.forEach(({ bubble }, index) => {
+      row.forEach(({ bubble, place }, index) => {
         const [x, y, depth] = places[index];
         const inside = depth > 0 && x > 14 && y > 14 && x < camera.width - 14 && y < camera.height - 14;
-        const free = inside && room[index] && state.gridOn && !(around && isInside(around, x, y)) && taken.every(([a, b]) => Math.hypot(a - x, b - y) > BUBBLE + 1);
+        const free = inside && room[index] && state.gridOn && !isBehind(stage.model.box, camera, place) && taken.every(([a, b]) => Math.hypot(a - x, b - y) > BUBBLE + 1);
         if (free) taken.push([x, y]);
         bubble.hidden = !free;
         if (free) bubble.style.transform = `translate(${x.toFixed(1)}px, ${y.toFixed(1)}px) translate(-50%, -50%)`;

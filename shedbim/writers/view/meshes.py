@@ -13,8 +13,8 @@ from shedbim.writers.pictures.meshes import bar_mesh
 
 __all__ = ["ViewMesh", "view_mesh"]
 
-#: Arcs become chords this far off, mm: below a pixel until one is closer than a metre.
-_CHORD_ERROR = 1.0
+#: Arcs become chords this far off, mm: a rolled corner becomes two chords with an edge between them.
+_CHORD_ERROR = 1.6
 #: Round sections become ten-sided: this far off as a share of the radius, at most.
 _ROUND_SHARE = 0.06
 

@@ -110,7 +110,7 @@ function createPanels(tabs) {
 function listenToKeys({ model, state, stage, measure, cuts }) {
   const step = (by) => {
     const shown = [];
-    state.shown.forEach((on, piece) => on && isReached(model, piece, cuts.planes()) && shown.push(piece));
+    state.shown.forEach((on, piece) => on && leftOf(model, piece, cuts.planes()) && shown.push(piece));
     if (!shown.length) return;
     const at = shown.indexOf(state.lead);
     state.select([shown[(at + by + shown.length) % shown.length]]);
@@ -144,6 +144,9 @@ function listenToKeys({ model, state, stage, measure, cuts }) {
       keys[event.key]();
     }
   });
+  // The ring around the model is for who steers by keys.
+  document.addEventListener('keydown', () => (document.body.dataset.keys = ''), true);
+  document.addEventListener('pointerdown', () => delete document.body.dataset.keys, true);
   byId('help-open').addEventListener('click', () => byId('help').showModal());
   byId('help-close').addEventListener('click', () => byId('help').close());
 }
@@ -160,6 +163,8 @@ function testHandle({ model, state, stage, cuts, measure }) {
     pieceCount: model.pieces.count,
     keys: model.pieces.keys,
     get visibleCount() { return state.shownCount(); },
+    /** Pieces shown and not wholly cut away. */
+    get drawnCount() { return stage.drawnCount(); },
     get drawCalls() { return stage.renderer?.drawCalls ?? 0; },
     get frames() { return stage.frames; },
     get selection() { return Array.from(state.selected, (piece) => model.pieces.keys[piece]); },
@@ -217,7 +222,7 @@ function testHandle({ model, state, stage, cuts, measure }) {
       return met && { key: model.pieces.keys[met.piece], place: add(met.point, model.middle), normal: met.normal, cut: met.cut };
     },
     isShown: (key) => state.shown[index(key)] === 1,
-    isCutAway: (key) => !isReached(model, index(key), cuts.planes()),
+    isCutAway: (key) => leftOf(model, index(key), cuts.planes()) === 0,
     /** Places of a piece's axis ends in building axes, mm. */
     ends: (key) => {
       const piece = index(key);
@@ -276,6 +281,10 @@ async function startPage() {
       const found = stage.pieceAt(x, y);
       state.select(found ? [found.piece] : [], { extend });
       if (found) panels('details');
+    },
+    open(x, y) {
+      const found = measure.on ? null : stage.pieceAt(x, y);
+      if (found) stage.fit([found.piece]);
     },
     hover: (x, y) => measure.hover(x, y),
   });

@@ -89,14 +89,22 @@ function meetAny(model, shown, ray, cuts) {
 /** Whether a place is left by all cuts. */
 const isKept = (place, cuts) => cuts.every((cut) => dot(cut, place) + cut[3] >= -0.01);
 
-/** Whether any of a piece's box is left by all cuts. */
-function isReached(model, piece, cuts) {
+/** What the cuts leave of a piece, by its box: 0 nothing, 1 all of it, 2 perhaps a part. */
+function leftOf(model, piece, cuts) {
   const { low, high } = model.pieces;
-  return cuts.every((cut) => {
+  let left = 1;
+  for (const cut of cuts) {
     let most = cut[3];
-    for (let axis = 0; axis < 3; axis++) most += Math.max(cut[axis] * low[3 * piece + axis], cut[axis] * high[3 * piece + axis]);
-    return most >= 0;
-  });
+    let least = cut[3];
+    for (let axis = 0; axis < 3; axis++) {
+      const ends = [cut[axis] * low[3 * piece + axis], cut[axis] * high[3 * piece + axis]];
+      most += Math.max(...ends);
+      least += Math.min(...ends);
+    }
+    if (most <= 0) return 0;
+    if (least < 0) left = 2;
+  }
+  return left;
 }
 
 /**

@@ -131,7 +131,9 @@ class Renderer {
       triangles: filled(gl.ELEMENT_ARRAY_BUFFER, solids.triangles),
       edges: filled(gl.ELEMENT_ARRAY_BUFFER, solids.edges),
     };
-    this.shown = new InstanceSet(gl, model, solids, buffers);
+    /** Pieces that no cut touches, and those that a cut may have opened. */
+    this.whole = new InstanceSet(gl, model, solids, buffers);
+    this.opened = new InstanceSet(gl, model, solids, buffers);
     this.selected = new InstanceSet(gl, model, solids, buffers);
     this.#makeGrid();
     this.#makePicking();
@@ -174,24 +176,31 @@ class Renderer {
     gl.bindFramebuffer(gl.FRAMEBUFFER, null);
   }
 
-  /** Says which pieces are drawn, in which colours (three bytes a piece), and which are selected. */
-  setPieces(shown, colours, selected) {
-    this.shown.fill(shown, colours, selected);
-    const kept = new Uint8Array(shown.length);
-    for (const piece of selected) kept[piece] = shown[piece];
+  /**
+   * Says which pieces are drawn: 0 not at all, 1 whole, 2 where the cuts leave them; in which colours (three
+   * bytes a piece), and which are selected.
+   */
+  setPieces(drawn, colours, selected) {
+    this.whole.fill(drawn.map((each) => (each === 1 ? 1 : 0)), colours, selected);
+    this.opened.fill(drawn.map((each) => (each === 2 ? 1 : 0)), colours, selected);
+    const kept = new Uint8Array(drawn.length);
+    for (const piece of selected) kept[piece] = drawn[piece] ? 1 : 0;
     this.selected.fill(kept, colours, selected);
   }
 
-  /** Uses a program with the matrix, the eye and the cut planes of a scene. */
+  /** Uses a program with the matrix and the eye of a scene. */
   #use({ program, at }, scene, toClip = scene.toClip) {
     const { gl } = this;
     gl.useProgram(program);
     gl.uniformMatrix4fv(at.toClip, false, toClip);
-    if (at.cutCount) {
-      gl.uniform1i(at.cutCount, scene.cuts.length);
-      if (scene.cuts.length) gl.uniform4fv(at.cuts, scene.cuts.flat());
-    }
     if (at.eye) gl.uniform4fv(at.eye, scene.eye);
+  }
+
+  /** Says by which planes the program that is in use cuts. */
+  #cutBy({ at }, cuts) {
+    const { gl } = this;
+    gl.uniform1i(at.cutCount, cuts.length);
+    if (cuts.length) gl.uniform4fv(at.cuts, cuts.flat());
   }
 
   /** Draws all groups of a set; `each` is called with a group and may say false to leave it out. */
@@ -229,13 +238,6 @@ class Renderer {
     placed(0);
   }
 
-  /** Draws faces so that only those towards the eye count, unless a cut lets the eye look inside. */
-  #culled(scene) {
-    const { gl } = this;
-    if (scene.cuts.length) gl.disable(gl.CULL_FACE);
-    else gl.enable(gl.CULL_FACE);
-  }
-
   /**
    * Draws one picture.
    *
@@ -257,7 +259,6 @@ class Renderer {
     gl.clearColor(...theme.paper, 1);
     gl.clear(gl.COLOR_BUFFER_BIT | gl.DEPTH_BUFFER_BIT);
 
-    this.#culled(scene);
     this.#use(this.faces, scene);
     const { at } = this.faces;
     gl.uniform3fv(at.right, scene.right);
@@ -269,7 +270,10 @@ class Renderer {
     gl.uniform1f(at.hazeMost, 0.34);
     gl.uniform1f(at.dimmed, this.selected.count ? 0.45 : 0);
     gl.uniform4f(at.ghost, 0, 0, 0, 0);
-    this.#drawSet(this.shown, 'faces');
+    gl.enable(gl.CULL_FACE);
+    this.#cutBy(this.faces, []);
+    this.#drawSet(this.whole, 'faces');
+    if (this.opened.count) this.#drawOpened(scene);
 
     gl.disable(gl.CULL_FACE);
     gl.enable(gl.BLEND);
@@ -279,6 +283,21 @@ class Renderer {
     if (scene.edges) this.#drawEdges(scene);
     if (this.selected.count) this.#drawGhost(scene);
     gl.depthMask(true);
+  }
+
+  /** Draws the pieces that a cut may open, their back faces a little deeper, so that only openings show them. */
+  #drawOpened(scene) {
+    const { gl } = this;
+    this.#cutBy(this.faces, scene.cuts);
+    gl.enable(gl.SAMPLE_ALPHA_TO_COVERAGE);
+    this.#drawSet(this.opened, 'faces');
+    gl.cullFace(gl.FRONT);
+    gl.enable(gl.POLYGON_OFFSET_FILL);
+    gl.polygonOffset(1, 2);
+    this.#drawSet(this.opened, 'faces');
+    gl.disable(gl.POLYGON_OFFSET_FILL);
+    gl.cullFace(gl.BACK);
+    gl.disable(gl.SAMPLE_ALPHA_TO_COVERAGE);
   }
 
   #drawGrid(scene) {
@@ -302,20 +321,25 @@ class Renderer {
     gl.uniform1f(at.most, scene.theme.edge);
     gl.uniform2fv(at.fade, fade);
     const pixel = scene.eye[3] ? scene.mmAtOne * scene.nearest : scene.mmAtOne;
-    this.#drawSet(this.shown, 'edges', (group) => {
+    const each = (group) => {
       // Even the nearest piece of such a part is too thin to show an edge.
       if (group.depth / pixel < fade[0]) return false;
       gl.uniform1f(at.depth, group.depth);
       return true;
-    });
+    };
+    this.#cutBy(this.edges, []);
+    this.#drawSet(this.whole, 'edges', each);
+    this.#cutBy(this.edges, scene.cuts);
+    this.#drawSet(this.opened, 'edges', each);
   }
 
   /** Lets the selected pieces shine faintly through what stands before them. */
   #drawGhost(scene) {
     const { gl } = this;
-    this.#culled(scene);
+    gl.enable(gl.CULL_FACE);
     gl.depthFunc(gl.GREATER);
     this.#use(this.faces, scene);
+    this.#cutBy(this.faces, scene.cuts);
     gl.uniform4f(this.faces.at.ghost, ...scene.theme.accent, 0.3);
     this.#drawSet(this.selected, 'faces');
     gl.depthFunc(gl.LEQUAL);
@@ -344,10 +368,14 @@ class Renderer {
     gl.depthFunc(gl.LEQUAL);
     gl.clearBufferuiv(gl.COLOR, 0, [0, 0, 0, 0]);
     gl.clearBufferfv(gl.DEPTH, 0, [1]);
-    this.#culled(scene);
     this.#use(this.numbers, scene, product(closer, scene.toClip));
     const calls = this.drawCalls;
-    this.#drawSet(this.shown, 'faces');
+    gl.enable(gl.CULL_FACE);
+    this.#cutBy(this.numbers, []);
+    this.#drawSet(this.whole, 'faces');
+    gl.disable(gl.CULL_FACE);
+    this.#cutBy(this.numbers, scene.cuts);
+    this.#drawSet(this.opened, 'faces');
     this.drawCalls = calls;
     const found = new Uint32Array(PICK_SIDE * PICK_SIDE);
     gl.readPixels(0, 0, PICK_SIDE, PICK_SIDE, gl.RED_INTEGER, gl.UNSIGNED_INT, found);

@@ -20,6 +20,16 @@ uniform int cutCount;
 void keepOrLeave(vec3 place) {
   for (int i = 0; i < cutCount; i++) if (dot(cuts[i].xyz, place) + cuts[i].w < 0.0) discard;
 }
+/** The share of the pixel that the cuts leave, for a soft rim. */
+float keptShare(vec3 place) {
+  float share = 1.0;
+  for (int i = 0; i < cutCount; i++) {
+    float inside = dot(cuts[i].xyz, place) + cuts[i].w;
+    share = min(share, inside / max(fwidth(inside), 1e-6) + 0.5);
+  }
+  if (share <= 0.0) discard;
+  return min(share, 1.0);
+}
 `;
 
 /**
@@ -55,11 +65,11 @@ uniform vec4 ghost;      // a colour laid over everything, by its alpha
 out vec4 result;
 ${CUT}
 void main() {
-  keepOrLeave(place);
+  float share = keptShare(place);
   bool selected = colour.a < 0.75;
   if (ghost.a > 0.0) { result = vec4(ghost.rgb, ghost.a); return; }
   if (!gl_FrontFacing) {
-    result = vec4(selected ? mix(accent, cutColour, 0.25) : cutColour, 1.0);
+    result = vec4(selected ? mix(accent, cutColour, 0.25) : cutColour, share);
     return;
   }
   vec3 toEye = eye.w > 0.5 ? normalize(eye.xyz - place) : eye.xyz;
@@ -71,7 +81,7 @@ void main() {
   vec3 lit = base * shade;
   float depth = eye.w > 0.5 ? distance(eye.xyz, place) : -dot(eye.xyz, place);
   float far = selected ? 0.0 : hazeMost * clamp((depth - haze.x) / max(haze.y - haze.x, 1.0), 0.0, 1.0);
-  result = vec4(mix(lit, paper, far), 1.0);
+  result = vec4(mix(lit, paper, far), share);
 }`,
 };
 

@@ -20,6 +20,7 @@ function createStage(model, state, cuts) {
   let renderer = null;
   let theme = null;
   let shownBox = model.box;
+  let drawnPieces = state.shown;
   let waiting = false;
   let flight = null;
   let restTimer = 0;
@@ -32,6 +33,8 @@ function createStage(model, state, cuts) {
     /** How many pictures were drawn. */
     frames: 0,
     get renderer() { return renderer; },
+    /** How many pieces are shown and not wholly cut away. */
+    drawnCount: () => drawnPieces.reduce((sum, each) => sum + (each ? 1 : 0), 0),
     get idle() { return !waiting && !flight && resting; },
     onDraw: (call) => drawn.push(call),
 
@@ -74,16 +77,15 @@ function createStage(model, state, cuts) {
     fit(pieces = null, view = null) {
       const to = camera.copy();
       if (view) [, , to.yaw, to.pitch] = STANDARD_VIEWS.find(([name]) => name === view);
-      const whole = state.gridOn && state.shownCount() === model.pieces.count;
-      const box = pieces ? boxOf(model, pieces) : whole ? withGrid(shownBox) : shownBox;
-      to.fit(box, pieces ? 1.35 : 1.05);
-      if (pieces) to.distance = Math.max(to.distance, 1800);
+      const whole = state.gridOn && !cuts.any && state.shownCount() === model.pieces.count;
+      const box = pieces ? boxOf(model, pieces) : whole ? withGrid(shownBox) : leftBox();
+      to.fit(box, pieces ? 1.35 : 1.05, covered());
       stage.fly(to);
     },
     /** Flies to a place, local axes, with about `reach` mm around it in view. */
     flyTo(place, reach = 1500) {
       const to = camera.copy();
-      to.fit({ low: place.map((value) => value - reach), high: place.map((value) => value + reach) });
+      to.fit({ low: place.map((value) => value - reach), high: place.map((value) => value + reach) }, 1, covered());
       stage.fly(to);
     },
     setParallel(on) {
@@ -93,7 +95,7 @@ function createStage(model, state, cuts) {
     /** Stops a flight: the hand of the user takes over. */
     takeOver() { flight = null; },
     /** What the line of sight through a canvas pixel meets first among what is shown and left by the cuts. */
-    meet: (x, y) => meetAny(model, state.shown, camera.ray(x, y), cuts.planes()),
+    meet: (x, y) => meetAny(model, drawnPieces, camera.ray(x, y), cuts.planes()),
     /** The piece at a canvas pixel by the numbers the graphics card draws; near it unless `exact`. */
     pieceAt(x, y, exact = false) {
       if (!renderer) return null;
@@ -113,6 +115,26 @@ function createStage(model, state, cuts) {
       stage.redraw();
     },
   };
+
+  /** The box of what is shown, as far as the cuts leave it. */
+  function leftBox() {
+    const box = { low: [...shownBox.low], high: [...shownBox.high] };
+    for (const [x, y, z, w] of cuts.planes()) {
+      const axis = [x, y, z].findIndex((value) => value !== 0);
+      const at = -w / [x, y, z][axis];
+      const side = [x, y, z][axis] > 0 ? 'low' : 'high';
+      box[side][axis] = clamp(at, shownBox.low[axis], shownBox.high[axis]);
+    }
+    return box;
+  }
+
+  /** How many pixels of the picture the card of the selection covers at its right. */
+  function covered() {
+    const card = byId('details').getBoundingClientRect();
+    const box = canvas.getBoundingClientRect();
+    const over = card.width > 0 && card.left > box.left && card.top < box.bottom && card.left < box.right;
+    return over ? Math.min(box.right - card.left, box.width / 2) : 0;
+  }
 
   /** A box widened to hold the lines of the grid as well. */
   function withGrid(box) {
@@ -169,7 +191,9 @@ function createStage(model, state, cuts) {
   }
 
   function fillPieces() {
-    renderer?.setPieces(state.shown, colours, state.selected);
+    const planes = cuts.planes();
+    drawnPieces = state.shown.map((on, piece) => (on ? leftOf(model, piece, planes) : 0));
+    renderer?.setPieces(drawnPieces, colours, state.selected);
     stage.redraw();
   }
 
@@ -199,7 +223,7 @@ function createStage(model, state, cuts) {
   });
   state.on('selection', fillPieces);
   state.on('colour', () => { fillColours(); fillPieces(); });
-  state.on('cuts', () => stage.redraw());
+  state.on('cuts', fillPieces);
   state.on('grid', () => stage.redraw());
   state.on('theme', () => stage.readTheme());
   new ResizeObserver(() => stage.redraw()).observe(canvas);
