@@ -91,6 +91,12 @@ def _summary(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
     sink.write(summary_text(shed, imprint).encode())
 
 
+def _view(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    from shedbim.writers.view import write
+
+    write(shed, sink, imprint)
+
+
 OUTPUTS: tuple[Output, ...] = (
     Output("model", "model", "model.ifc", "the building model", _model),
     Output("mesh", "mesh", "model.glb", "the model as meshes, for any 3D viewer", _mesh),
@@ -100,6 +106,9 @@ OUTPUTS: tuple[Output, ...] = (
         "sections", "schedules", "sections.csv", "totals by section, by role and of everything", _sections
     ),
     Output("workbook", "schedules", "schedule.xlsx", "all schedules in one workbook that prints", _workbook),
+    Output(
+        "view", "view", "view.html", "the building in three dimensions, for a browser, as one file", _view
+    ),
     Output("summary", "summary", "summary.json", "counts, masses, defaults and cautions", _summary),
 )
 

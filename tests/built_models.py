@@ -78,7 +78,9 @@ def model(name: str, schema: str = "IFC4") -> Model:
 
 def _body(settings: ifcopenshell.geom.settings, kind: ifcopenshell.entity_instance) -> Manifold:
     """The closed solid of a type's body, mm; the library meshes in metres."""
-    (held,) = [m for m in kind.RepresentationMaps if m.MappedRepresentation.RepresentationIdentifier == "Body"]
+    (held,) = [
+        m for m in kind.RepresentationMaps if m.MappedRepresentation.RepresentationIdentifier == "Body"
+    ]
     origin = held.MappingOrigin
     assert np.array_equal(ifcopenshell.util.placement.get_axis2placement(origin), np.eye(4))
     shape = ifcopenshell.geom.create_shape(settings, held.MappedRepresentation)

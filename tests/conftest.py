@@ -7,6 +7,9 @@ import cast
 import pytest
 from hypothesis import HealthCheck, settings
 
+# Helpers that assert say what they compared.
+pytest.register_assert_rewrite("view_pages")
+
 # The same examples in every run, so that a run that fails can be repeated; slow machines are no failure.
 settings.register_profile(
     "steady",
@@ -34,3 +37,12 @@ def description(specimen):
 def shed(specimen):
     """Give the building of each specimen."""
     return cast.shed_of(specimen)
+
+
+@pytest.fixture(scope="session")
+def desk(tmp_path_factory):
+    """Give the running browser; it starts with the first test that asks for it."""
+    from view_browser import started  # noqa: PLC0415 - only tests of the page load the driver
+
+    with started(tmp_path_factory.mktemp("view")) as running:
+        yield running

@@ -3,23 +3,27 @@
 from __future__ import annotations
 
 import ast
-import re
 from pathlib import Path
 
-ROOT = Path(__file__).parent.parent
+from marked_text import ROOT, mark
+
 DEVELOPERS = ROOT / "DEVELOPERS.md"
-_START, _END = "<!-- modules -->", "<!-- end of modules -->"
 
 
 def sentence(path: Path) -> str:
-    """The first line of a module's docstring."""
-    docstring = ast.get_docstring(ast.parse(path.read_text(encoding="utf-8"))) or ""
-    return docstring.splitlines()[0].replace("|", "or") if docstring else ""
+    """The first line of a module's docstring, or of a script's opening comment."""
+    text = path.read_text(encoding="utf-8")
+    if path.suffix == ".py":
+        lines = (ast.get_docstring(ast.parse(text)) or "").splitlines()
+    else:
+        lines = [line.removeprefix("//").strip() for line in text.splitlines() if line.startswith("//")]
+    return next((line.replace("|", "or") for line in lines if line), "")
 
 
 def modules() -> list[Path]:
-    """Every module of the package, folder by folder."""
-    found = (ROOT / "shedbim").rglob("*.py")
+    """Every module and script of the package, folder by folder."""
+    package = ROOT / "shedbim"
+    found = [*package.rglob("*.py"), *package.rglob("*.js")]
     return sorted(found, key=lambda path: (path.parent.parts, path.name))
 
 
@@ -29,18 +33,5 @@ def table() -> str:
     return "| file | what it gives |\n| --- | --- |\n" + "\n".join(rows)
 
 
-def shown() -> str:
-    """What stands in DEVELOPERS.md."""
-    text = DEVELOPERS.read_text(encoding="utf-8")
-    return text[text.index(_START) + len(_START) : text.index(_END)].strip()
-
-
-def main() -> None:
-    """Write the table into DEVELOPERS.md."""
-    text = DEVELOPERS.read_text(encoding="utf-8")
-    pattern = re.compile(re.escape(_START) + ".*?" + re.escape(_END), re.DOTALL)
-    DEVELOPERS.write_text(pattern.sub(lambda _: f"{_START}\n{table()}\n{_END}", text), encoding="utf-8")
-
-
 if __name__ == "__main__":
-    main()
+    mark(DEVELOPERS, "modules", table())

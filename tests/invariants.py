@@ -8,6 +8,7 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Iterator
 from functools import lru_cache
+from itertools import pairwise
 
 import numpy as np
 from manifold3d import Manifold
@@ -59,7 +60,6 @@ class Bars:
         #: (n, 3) each: the corners of the box that a bar fills in its own frame.
         self.low = np.column_stack([np.zeros(len(part)), bounds[:, 0], bounds[:, 1]])
         self.high = np.column_stack([length, bounds[:, 2], bounds[:, 3]])
-        self.size = np.array([max(p.bar.section.width, p.bar.section.height) for p in shed.parts])[part]
         self.height = np.array([p.bar.section.height for p in shed.parts])[part]
         self.width = np.array([p.bar.section.width for p in shed.parts])[part]
         self.role = [shed.parts[i].role for i in part.tolist()]
@@ -142,7 +142,7 @@ def _end_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarra
     """How far an end may lie from the work point of each joint of a run (m,), mm."""
     first = run.pieces[:, 0]
     columns = description.frames.columns.section
-    purlins, rails, bracing = description.purlins, description.rails, description.bracing
+    purlins, rails = description.purlins, description.rails
     plain = {
         # The axis ends at the work point itself.
         JointKind.PINNED_BASE: 0.0,
@@ -174,13 +174,21 @@ def _end_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarra
         webs = run.pieces[:, 1:]
         sine = np.linalg.norm(np.cross(bars.x[webs], bars.x[first][:, None]), axis=2).min(axis=1)
         return (bars.height[first] / 2 + bars.height[webs].sum(axis=1)) / sine
+    return _brace_reach(run, bars, description)
+
+
+def _brace_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarray:
+    """The same for the ends of braces."""
+    columns, bracing = description.frames.columns.section, description.bracing
+    first, last = run.pieces[:, 0], run.pieces[:, -1]
     brace = bars.x[last]
-    room = 20.0 + bars.size[last]  # a set-back, and the corner of the brace itself
-    off_plane = 5.0 + bars.size[last]  # an angle stands on one side of its gusset
+    corner = np.hypot(bars.width[last], bars.height[last])
+    room = 20.0 + corner  # a set-back, and the corner of the brace itself
+    off_plane = 5.0 + corner  # an angle stands on one side of its gusset
     if run.kind is JointKind.BRACE_GUSSET:
-        # Whichever is met first: the steel at the line, or the strut that runs along the building.
-        strut = max(bracing.struts.section.width, bracing.eaves_strut.section.width,
-                    bracing.struts.section.height, bracing.eaves_strut.section.height)  # fmt: skip
+        # Whichever is met first: the steel at the line, or what runs along the building, strut or wall brace.
+        strut = max(max(s.section.width, s.section.height) for s in (bracing.struts, bracing.eaves_strut))
+        strut = max(strut, bracing.walls.section.width + 5.0)
         lengthwise, across = np.abs(brace[:, 1]), np.hypot(brace[:, 0], brace[:, 2])
         beside = np.maximum(bars.width[first], columns.width) / 2 + room
         return np.maximum(beside / lengthwise, (strut + room) / across) + off_plane
@@ -211,8 +219,9 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
         JointKind.RAIL_CLEAT: rails.lift
         + rails.section.height / 2
         + max(0.0, (max(bars.width[roof_steel], default=0.0) - columns.width) / 2),
-        # The carrier ends an end plate of 20 mm away (a valley column lower by a stub), or is above the head of a post by a gap of 25 mm, at a ridge beside it.
+        # The carrier ends an end plate of 20 mm away (a valley column is lower by a stub).
         JointKind.CHORD_COLUMN: 20.0 + stub,
+        # It is above the head of a post by a gap of 25 mm; at a ridge also beside it.
         JointKind.POST_HEAD: float(np.hypot(25.0, ridge)),
         # Angles stand on either side of the gusset's plane.
         JointKind.BRACE_CROSSING: off_plane,
@@ -324,7 +333,7 @@ def _misses(bars: Bars, chords: list[int], webs: list[int]) -> list[float]:
     middles = [bars.ends[i].mean(axis=0)[0] for i in webs]
     lines = [line for _, line in sorted(zip(middles, lines, strict=True), key=lambda pair: pair[0])]
     found = []
-    for (p, d), (q, e) in zip(lines, lines[1:], strict=False):
+    for (p, d), (q, e) in pairwise(lines):
         crossing = p + d * np.linalg.solve(np.column_stack([d, -e]), q - p)[0]
         found.append(float(crossing[1]) - _level(bars, chords, float(crossing[0])))
     return found

@@ -73,7 +73,9 @@ def solved(truss: Placed) -> tuple[Forces, dict[int, tuple]]:
         for i, node in enumerate(row):
             for web in node.webs:
                 ends.setdefault(web, []).append((node.chord.word, i))
-    bars = [pair for row in rows.values() for pair in pairwise([(n.chord.word, i) for i, n in enumerate(row)])]
+    bars = [
+        pair for row in rows.values() for pair in pairwise([(n.chord.word, i) for i, n in enumerate(row)])
+    ]
     webs = {web: tuple(pair) for web, pair in ends.items()}
     x = np.array([node.place[0] for node in rows[Role.TOP_CHORD]])
     edges = np.concatenate([[truss.nodes[0].place[0]], (x[1:] + x[:-1]) / 2, [truss.nodes[-1].place[0]]])

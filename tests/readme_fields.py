@@ -2,14 +2,13 @@
 
 from __future__ import annotations
 
-import re
 from itertools import groupby
-from pathlib import Path
+
+from marked_text import ROOT, mark
 
 from shedbim.description.listing import FieldRow, all_fields
 
-README = Path(__file__).parent.parent / "README.md"
-_START, _END = "<!-- fields -->", "<!-- end of fields -->"
+README = ROOT / "README.md"
 
 
 def _cell(text: str) -> str:
@@ -19,7 +18,7 @@ def _cell(text: str) -> str:
 def _row(row: FieldRow, group: str) -> str:
     name = row.path.removeprefix(f"{group}.")
     meaning = row.explanation + (f" (only with `{row.condition}`)" if row.condition else "")
-    standing = f"{row.default}" if row.default else "**needed**"
+    standing = row.default or "**needed**"
     return f"| `{name}` | {_cell(meaning)} | {_cell(row.allowed)} | {_cell(standing)} |"
 
 
@@ -33,18 +32,5 @@ def table() -> str:
     return "\n\n".join(parts)
 
 
-def shown() -> str:
-    """What stands in README.md."""
-    text = README.read_text(encoding="utf-8")
-    return text[text.index(_START) + len(_START) : text.index(_END)].strip()
-
-
-def main() -> None:
-    """Write the table into README.md."""
-    text = README.read_text(encoding="utf-8")
-    pattern = re.compile(re.escape(_START) + ".*?" + re.escape(_END), re.DOTALL)
-    README.write_text(pattern.sub(lambda _: f"{_START}\n{table()}\n{_END}", text), encoding="utf-8")
-
-
 if __name__ == "__main__":
-    main()
+    mark(README, "fields", table())

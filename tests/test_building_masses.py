@@ -11,7 +11,7 @@ import built_models
 import cast
 import pytest
 
-from shedbim.outputs import SCHEMAS, OUTPUTS
+from shedbim.outputs import OUTPUTS, SCHEMAS
 from shedbim.writers.imprint import Imprint
 
 #: kg/mm³: EN 1991-1-1 Table A.4 and the section tables: 7 850 kg/m³.
@@ -21,7 +21,7 @@ SAME = 1e-3
 
 
 def members(name: str) -> list[dict[str, str]]:
-    """The rows of the members schedule as a spreadsheet reads them, the total last."""
+    """The rows of the members schedule as a spreadsheet reads them."""
     (row,) = [output for output in OUTPUTS if output.name == "members"]
     sink = io.BytesIO()
     row.write(cast.shed_of(name), Imprint(), sink)
@@ -29,13 +29,10 @@ def members(name: str) -> list[dict[str, str]]:
 
 
 def scheduled(name: str) -> tuple[float, int]:
-    """Mass (kg) and number of all pieces by the schedule: its rows added up, its stated total held beside."""
-    *rows, total = members(name)
-    mass = next(heading for heading in total if heading.startswith("mass total"))
-    added = sum(float(row[mass]) for row in rows), sum(int(float(row["quantity"])) for row in rows)
-    assert float(total[mass]) == pytest.approx(added[0], abs=0.01 * len(rows))
-    assert int(float(total["quantity"])) == added[1]
-    return added
+    """Mass (kg) and number of all pieces by the schedule: its rows added up."""
+    rows = members(name)
+    mass = next(heading for heading in rows[0] if heading.startswith("mass total"))
+    return sum(float(row[mass]) for row in rows), sum(int(row["quantity"]) for row in rows)
 
 
 @pytest.mark.parametrize("name", cast.PRESETS)
@@ -77,7 +74,10 @@ def test_a_lost_piece_is_found():
     mass, _ = scheduled("seed-store")
     keep = [i for i, name in enumerate(model.names) if name != "2/column/A"]
     less = replace(
-        model, names=tuple(model.names[i] for i in keep), body=model.body[keep], placement=model.placement[keep]
+        model,
+        names=tuple(model.names[i] for i in keep),
+        body=model.body[keep],
+        placement=model.placement[keep],
     )
     assert less.volume * DENSITY != pytest.approx(mass, rel=SAME)
 
@@ -86,7 +86,6 @@ def test_a_lost_piece_is_found():
 def test_the_number_of_pieces_is_the_same_in_every_output(name):
     shed = cast.shed_of(name)
     quantities = Counter(shed.parts[i].mark for i in shed.pieces.part.tolist())
-    *rows, _ = members(name)
-    assert {row["mark"]: int(float(row["quantity"])) for row in rows} == quantities
+    assert {row["mark"]: int(row["quantity"]) for row in members(name)} == quantities
     tags = Counter(e.Tag for e in built_models.opened(name).by_type("IfcElement") if e.Representation)
     assert tags == quantities

@@ -80,7 +80,10 @@ def test_the_search_misses_no_pair():
     }
     assert len(wanted) > 3
     assert {tuple(sorted(pair)) for pair in found} == wanted
-    near = {tuple(sorted(pair)) for pair in zip(*(t.tolist() for t in touching(model.bodies, body, placement)), strict=True)}
+    near = {
+        tuple(sorted(pair))
+        for pair in zip(*(t.tolist() for t in touching(model.bodies, body, placement)), strict=True)
+    }
     assert wanted <= near
 
 

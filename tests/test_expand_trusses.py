@@ -15,7 +15,6 @@ from invariants import Bars, bodies
 from placed_trusses import Node, Placed, placed_trusses, solved
 
 from shedbim.geometry.placements import apply, inverse
-from shedbim.model.joints import JointKind
 from shedbim.model.roles import Role
 from shedbim.tolerance import SAME_LENGTH
 

@@ -252,7 +252,9 @@ def test_lines_are_cut_where_something_lies_before_them() -> None:
     canvas = Canvas(200, 40, 0.0, 10.0)
     plate = np.array([[60, 0, 3], [130, 0, 3], [130, 40, 3], [60, 40, 3]], float)
     canvas.triangles(plate[[[0, 1, 2], [0, 2, 3]]], np.zeros(2, np.uint32))
-    lines = np.array([[[10, 8, 5], [190, 22, 5]], [[10, 30, 2], [190, 30, 2]], [[70, 5, 5], [120, 9, 5]]], float)
+    lines = np.array(
+        [[[10, 8, 5], [190, 22, 5]], [[10, 30, 2], [190, 30, 2]], [[70, 5, 5], [120, 9, 5]]], float
+    )
     index, shares = canvas.uncovered(lines, 0.5)
     assert index.tolist() == [0, 0, 1]
     # A pixel of the 180 that a line crosses is how sharply it can be cut.
@@ -265,8 +267,18 @@ def test_lines_are_cut_where_something_lies_before_them() -> None:
 
 
 def test_highlighted_pieces_are_red_and_all_others_pale() -> None:
-    plain = decoded(render_view(HALL, "isometric", labels="none", caption=False))
-    loud = decoded(render_view(HALL, "isometric", labels="none", caption=False, highlight=["2/col*", "2-3/*"]))
+    plain = decoded(render_view(HALL, "isometric", labels="none", caption=False, width=800, height=500))
+    loud = decoded(
+        render_view(
+            HALL,
+            "isometric",
+            labels="none",
+            caption=False,
+            width=800,
+            height=500,
+            highlight=["2/col*", "2-3/*"],
+        )
+    )
 
     def shows(pixels: Pixels, colour: tuple[float, ...]) -> bool:
         return bool(shade_of(pixels, colour).sum() > 20)

@@ -14,10 +14,10 @@ from shedbim.expand.kits import Meeting, Meets, Member
 from shedbim.expand.sticks import stick, stop_before
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
-from shedbim.sections.profiles import Angle
+from shedbim.sections.profiles import Angle, Pipe
 from shedbim.sections.section import Section
 
-__all__ = ["BraceEnd", "Panel", "brace_reach", "braces"]
+__all__ = ["BraceEnd", "Panel", "brace_reach", "braces", "strut_reach"]
 
 Array = NDArray[np.float64]
 
@@ -62,6 +62,13 @@ class _Steel:
 def brace_reach(section: Section) -> float:
     """Give how far a brace reaches from the plane of its gussets, mm."""
     return GUSSET / 2 + section.height if isinstance(section.profile, Angle) else section.height / 2
+
+
+def strut_reach(strut: Section, direction: Array) -> float:
+    """Give how far a strut reaches from its axis along a unit vector (3,) in the frame's plane, mm."""
+    if isinstance(strut.profile, Pipe):
+        return strut.width / 2
+    return float(abs(direction[0]) * strut.width + abs(direction[2]) * strut.height) / 2
 
 
 def braces(

@@ -12,7 +12,7 @@ from numpy.typing import NDArray
 
 from shedbim.description.models import Description
 from shedbim.expand.bays import Bay, braced_bays, runs_of_bays
-from shedbim.expand.braces import BraceEnd, Panel, brace_reach, braces
+from shedbim.expand.braces import BraceEnd, Panel, brace_reach, braces, strut_reach
 from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, POST_HEAD_GAP, STRUT_END_GAP
 from shedbim.expand.frame import Frame
 from shedbim.expand.gables import post_places
@@ -24,7 +24,7 @@ from shedbim.expand.set_out import even_places
 from shedbim.expand.sticks import stick
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
-from shedbim.sections.profiles import IShape, Pipe
+from shedbim.sections.profiles import IShape
 from shedbim.sections.section import Section
 
 __all__ = ["bracing"]
@@ -208,7 +208,8 @@ class _Maker:
         for number, pitched in enumerate(self.layout.slopes):
             places = self.roof_places(pitched)
             for k, (x0, x1) in enumerate(pairwise(places), start=1):
-                panel = self.roof_panel(number, pitched, k, x0, x1)
+                from_low = k if pitched.slope.rises else len(places) - k
+                panel = self.roof_panel(number, pitched, k, from_low, x0, x1)
                 members, meetings = braces(
                     panel, options.pattern, options.section, Role.ROOF_BRACE, options.grade, self.finish
                 )
@@ -241,8 +242,8 @@ class _Maker:
         )
         self.strut(f"strut/{pitched.name}/{k}", Role.STRUT, options.section, options.grade, at, carriers)
 
-    def roof_panel(self, number: int, pitched: Pitched, k: int, x0: float, x1: float) -> Panel:
-        """One panel of roof bracing between two nodes of a slope."""
+    def roof_panel(self, number: int, pitched: Pitched, k: int, from_low: int, x0: float, x1: float) -> Panel:
+        """The k-th panel of roof bracing of a slope; ``from_low`` counts from the slope's low end."""
         ends = {}
         for line, y, _ in self.lines():
             frame = self.frames.at(line)
@@ -256,16 +257,22 @@ class _Maker:
                     else frame.carrier.width / 2
                 )
                 strut, middle = self.strut_at_node(x, column)
-                planes = (
+                planes = [
                     (at + inwards * (side + BRACE_SET_BACK), inwards),
-                    (middle + along_slope * (_reach(strut, along_slope) + BRACE_SET_BACK), along_slope),
-                )
+                    (middle + along_slope * (strut_reach(strut, along_slope) + BRACE_SET_BACK), along_slope),
+                ]
+                if column in self.braced_lines():
+                    across = _ACROSS * np.sign(along_slope[0])
+                    beside = brace_reach(self.options.walls.section) + BRACE_SET_BACK
+                    planes.append((middle + across * beside, across))
                 carrier = (
                     f"column/{self.layout.grid.letters[column]}" if column >= 0 else frame.carriers[number]
                 )
-                ends[line, x] = BraceEnd(at, Meets(carrier, At.ALONG, line), planes)
-        corners = (ends[FIRST_LINE, x0], ends[SECOND_LINE, x1], ends[FIRST_LINE, x1], ends[SECOND_LINE, x0])
-        return Panel(f"roof brace/{pitched.name}/{k}", corners, pitched.normal, turned=k % 2 == 0)
+                ends[line, x] = BraceEnd(at, Meets(carrier, At.ALONG, line), tuple(planes))
+        # A slope that falls to the right is braced as the mirror image of one that rises.
+        near, far = (FIRST_LINE, SECOND_LINE) if pitched.slope.rises else (SECOND_LINE, FIRST_LINE)
+        corners = (ends[near, x0], ends[far, x1], ends[near, x1], ends[far, x0])
+        return Panel(f"roof brace/{pitched.name}/{k}", corners, pitched.normal, turned=from_low % 2 == 0)
 
     def strut_at_node(self, x: float, column: int) -> tuple[Section, Array]:
         """The strut at a bracing node, and where its axis crosses the frame's plane (3,).
@@ -288,14 +295,16 @@ class _Maker:
 
     # Walls
 
+    def braced_lines(self) -> Sequence[int]:
+        """Numbers of the column lines with wall braces."""
+        every = range(len(self.layout.grid.x))
+        return (every[0], every[-1]) if self.options.walls.lines == "outer" else every
+
     def walls(self) -> None:
         """Braces between the columns of every braced column line, and struts between tiers."""
         options = self.options.walls
-        last = len(self.layout.grid.x) - 1
-        for column, letter in enumerate(self.layout.grid.letters):
-            if options.lines == "outer" and column not in (0, last):
-                continue
-            x = self.layout.grid.x[column]
+        for column in self.braced_lines():
+            letter, x = self.layout.grid.letters[column], self.layout.grid.x[column]
             low, high = self.layout.base + BASE_NODE, self.eaves_level(column)
             tiers = options.tiers or max(ceil((high - low) / self.length / _STEEPEST_TIER), 1)
             levels = even_places(low, high, (high - low) / tiers)
@@ -335,10 +344,3 @@ class _Maker:
                 ends[line, z] = BraceEnd(at, Meets(f"column/{letter}", At.ALONG, line), planes)
         corners = (ends[FIRST_LINE, z0], ends[SECOND_LINE, z1], ends[FIRST_LINE, z1], ends[SECOND_LINE, z0])
         return Panel(f"wall brace/{letter}/{k}", corners, _ACROSS, turned=k % 2 == 0)
-
-
-def _reach(strut: Section, direction: Array) -> float:
-    """How far a strut along the building reaches from its axis along a unit vector (3,) in the frame's plane."""
-    if isinstance(strut.profile, Pipe):
-        return strut.width / 2
-    return float(abs(direction[0]) * strut.width + abs(direction[2]) * strut.height) / 2

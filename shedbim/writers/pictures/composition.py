@@ -71,7 +71,7 @@ def compose(
         caption: written in the lower left corner; shortened where it is too long.
         emphasis: which pieces stand out; None for none.
     """
-    chosen = np.arange(len(shed.pieces)) if pieces is None else pieces
+    chosen = np.arange(len(shed.pieces)) if pieces is None else np.asarray(pieces, np.int64)
     emphasis = emphasis or Emphasis(shed, np.zeros(0, np.int64))
     capital = capital_height(width, height)
     corners = piece_corners(shed, chosen).reshape(-1, 3) if len(chosen) else np.zeros((1, 3))

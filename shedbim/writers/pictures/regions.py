@@ -1,6 +1,6 @@
 """Outlines of the regions of equal number in an image, as polygons of few points.
 
-Outlines run along the middles of the cracks between pixels, and leave those by less than a pixel where they are
+Outlines run along the middles of the cracks between pixels and leave those by about a pixel where they are
 straightened. Image frame: x to the right, y down, pixel (i, j) covers [j, j + 1] x [i, i + 1].
 """
 
@@ -18,11 +18,17 @@ Indices = NDArray[np.int64]
 _WAYS = np.array([[1, 0], [0, 1], [-1, 0], [0, -1]])
 #: How far the middles of cracks may lie from a straightened outline, pixels: a slanting edge wavers by a pixel
 #: where faces are drawn as lines besides triangles.
-_TOLERANCE = 1.1
+_TOLERANCE = 1.0
+#: An outline of so few cracks goes round one pixel or two.
+_SPECK = 6
+#: Cracks in a row that make a straight stretch beside a corner.
+_STRAIGHT = 4
 
 
 def outlines(image: Indices) -> list[tuple[int, Floats]]:
     """Give the number and the points (n, 2) of each closed outline, clockwise round its region as seen.
+
+    Specks of one pixel or two, and holes as small, are left out.
 
     Args:
         image: (height, width) int; what is negative belongs to no region.
@@ -30,7 +36,6 @@ def outlines(image: Indices) -> list[tuple[int, Floats]]:
     number, start, way = _cracks(image)
     after = _chained(number, start, way, image.shape[1] + 1)
     corner = np.stack([start % (image.shape[1] + 1), start // (image.shape[1] + 1)], axis=1)
-    middle = corner + _WAYS[way] / 2
     found = []
     todo, following = np.ones(len(after), bool), after.tolist()
     for first in range(len(after)):
@@ -40,8 +45,27 @@ def outlines(image: Indices) -> list[tuple[int, Floats]]:
                 todo[at] = False
                 loop.append(at)
                 at = following[at]
-            found.append((int(number[first]), straightened(middle[loop])))
+            if len(loop) > _SPECK:
+                found.append((int(number[first]), straightened(_points(corner[loop], way[loop]))))
     return found
+
+
+def _points(corners: Indices, ways: Indices) -> Floats:
+    """Points (m, 2) along a loop of cracks (n,): the middle of each, and true corners.
+
+    A corner is one where the outline runs straight for a while on both sides; the many small ones are the
+    steps of a slanting edge.
+    """
+    turn = int(np.argmax(ways[1:] != ways[:-1])) + 1
+    corners, ways = (
+        np.concatenate([corners[turn:], corners[:turn]]),
+        np.concatenate([ways[turn:], ways[:turn]]),
+    )
+    begins = np.concatenate([[0], np.flatnonzero(ways[1:] != ways[:-1]) + 1])
+    long = np.diff(np.append(begins, len(ways))) >= _STRAIGHT
+    true = begins[long & np.concatenate([long[-1:], long[:-1]])]
+    points = np.concatenate([corners[true], corners + _WAYS[ways] / 2])
+    return points[np.argsort(np.concatenate([true - 0.5, np.arange(len(ways))]), kind="stable")]
 
 
 def straightened(points: Floats) -> Floats:

@@ -153,6 +153,8 @@ def part_mesh(part: Part) -> Mesh:
 
 def _batches(shed: Shed, pieces: Indices) -> Iterator[Batch]:
     """Cut pieces (n,) into those of one part, and those into runs of about ``_AT_ONCE`` triangles."""
+    if not len(pieces):
+        return
     part = shed.pieces.part[pieces]
     order = np.argsort(part, kind="stable")
     kinds, starts = np.unique(part[order], return_index=True)

@@ -61,13 +61,14 @@ def svg_picture(composition: Composition) -> bytes:
 
 
 def _polygon(points: Floats) -> str:
-    """Path data of a closed polygon (n, 2); nothing for one without area."""
+    """Path data of a closed polygon (n, 2); a line for one that is too thin to have an area."""
     whole = np.rint(points * _FINE).astype(np.int64)
     steps = np.diff(whole, axis=0)
     steps = steps[steps.any(axis=1)]
+    start = f"M{whole[0, 0]} {whole[0, 1]}"
     if len(steps) < 2:
-        return ""
-    return f"M{whole[0, 0]} {whole[0, 1]}l{_numbers(steps.ravel().tolist())}z"
+        return f"{start}l{_numbers(steps[0].tolist())}" if np.abs(steps).max(initial=0) >= _FINE else ""
+    return f"{start}l{_numbers(steps.ravel().tolist())}z"
 
 
 def _lines(ends: Floats) -> str:

@@ -63,7 +63,7 @@ def vectors(shot: Shot) -> Vectors:
     for batch in shot.batches:
         ends, width = _axes(batch, shot)
         length = np.hypot(*(ends[:, 1, :2] - ends[:, 0, :2]).T) / FINER
-        thin = (width <= _SLENDER) & (length >= _LONGER * width)
+        thin = (width <= _SLENDER) & (length >= np.maximum(_LONGER * width, 1.0))
         slender[batch.pieces[thin]] = True
         own = shot.colours[base : base + len(batch.pieces) * len(batch.normals)]
         base += len(own)

@@ -35,7 +35,11 @@ class Camera {
 
   /** The axes of the picture in local axes: right, up, and away from the eye. */
   axes() {
-    const away = [Math.cos(this.pitch) * Math.sin(this.yaw), Math.cos(this.pitch) * Math.cos(this.yaw), -Math.sin(this.pitch)];
+    const away = [
+      Math.cos(this.pitch) * Math.sin(this.yaw),
+      Math.cos(this.pitch) * Math.cos(this.yaw),
+      -Math.sin(this.pitch),
+    ];
     const right = [Math.cos(this.yaw), -Math.sin(this.yaw), 0];
     return { right, up: cross(right, away), away };
   }
@@ -93,7 +97,11 @@ class Camera {
     const from = sub(place, this.target);
     const depth = dot(from, away) + this.distance;
     const scale = this.parallel ? this.scale() : (2 * FIELD * depth) / this.height;
-    return [this.width / 2 + dot(from, right) / scale, this.height / 2 - dot(from, up) / scale, this.parallel ? Math.max(depth, 1) : depth];
+    return [
+      this.width / 2 + dot(from, right) / scale,
+      this.height / 2 - dot(from, up) / scale,
+      this.parallel ? Math.max(depth, 1) : depth,
+    ];
   }
 
   /** The line of sight through a pixel: {origin, direction}, direction of length 1 mm. */
@@ -101,7 +109,8 @@ class Camera {
     const { right, up, away } = this.axes();
     const scale = this.scale();
     const across = add(times(right, (x - this.width / 2) * scale), times(up, (this.height / 2 - y) * scale));
-    if (this.parallel) return { origin: sub(add(this.target, across), times(away, this.distance + 1e6)), direction: away };
+    if (this.parallel)
+      return { origin: sub(add(this.target, across), times(away, this.distance + 1e6)), direction: away };
     const origin = this.eye();
     return { origin, direction: unit(sub(add(this.target, across), origin)) };
   }
@@ -143,7 +152,8 @@ class Camera {
     const { right, up, away } = this.axes();
     const middle = times(add(box.low, box.high), 0.5);
     const corners = boxCorners(box).map((corner) => sub(corner, middle));
-    const most = (axis, slope) => Math.max(...corners.map((from) => dot(from, axis) - (this.parallel ? 0 : slope * dot(from, away))));
+    const most = (axis, slope) =>
+      Math.max(...corners.map((from) => dot(from, axis) - (this.parallel ? 0 : slope * dot(from, away))));
     const half = (FIELD * this.width) / this.height / margin;
     const sides = [
       { axis: right, ahead: half * (1 - (2 * covered) / this.width), behind: half },

@@ -1,4 +1,4 @@
-// Colours of pieces by what they are, and how numbers are written.
+// Colours of pieces by what they are.
 
 /** Gives [red, green, blue], 0 to 255, of a colour in the OKLCH space: lightness 0-1, chroma, hue in degrees. */
 function oklch(lightness, chroma, hue) {
@@ -34,39 +34,56 @@ const COLOURINGS = {
   role: {
     label: 'role',
     offered: () => true,
-    entries: (model) => byPart(model, (part) => part.role, (word) => model.roles.find((role) => role.word === word).colour),
+    entries: (model) =>
+      byPart(
+        model,
+        (part) => part.role,
+        (word) => model.roles.find((role) => role.word === word).colour,
+      ),
   },
   section: {
     label: 'section',
     offered: () => true,
-    entries: (model) => byPart(model, (part) => part.section, (_, index) => rowColour(index)),
+    entries: (model) =>
+      byPart(
+        model,
+        (part) => part.section,
+        (_, index) => rowColour(index),
+      ),
   },
   mark: {
     label: 'mark',
     offered: () => true,
-    entries: (model) => byPart(model, (part) => part.mark, (_, index) => rowColour(index)),
+    entries: (model) =>
+      byPart(
+        model,
+        (part) => part.mark,
+        (_, index) => rowColour(index),
+      ),
   },
   finding: {
     label: 'finding',
     offered: (model) => model.findings.length > 0,
-    entries: (model) => byPiece(
-      model,
-      SEVERITIES.map((word) => ({
-        label: word,
-        colour: SEVERITY_COLOURS[word],
-        pieces: model.findings.filter((finding) => finding.severity === word).flatMap((finding) => finding.pieces),
-      })),
-      'no finding',
-    ),
+    entries: (model) =>
+      byPiece(
+        model,
+        SEVERITIES.map((word) => ({
+          label: word,
+          colour: SEVERITY_COLOURS[word],
+          pieces: model.findings.filter((finding) => finding.severity === word).flatMap((finding) => finding.pieces),
+        })),
+        'no finding',
+      ),
   },
   change: {
     label: 'change',
     offered: (model) => model.changes.length > 0,
-    entries: (model) => byPiece(
-      model,
-      model.changes.map(({ word, pieces }, index) => ({ label: word, colour: rowColour(index), pieces })),
-      'unchanged',
-    ),
+    entries: (model) =>
+      byPiece(
+        model,
+        model.changes.map(({ word, pieces }, index) => ({ label: word, colour: rowColour(index), pieces })),
+        'unchanged',
+      ),
   },
 };
 
@@ -93,34 +110,3 @@ function byPiece(model, entries, rest) {
   const others = Array.from(taken.keys()).filter((piece) => !taken[piece]);
   return [...result, { label: rest, colour: PLAIN_COLOUR, pieces: others }].filter((entry) => entry.pieces.length);
 }
-
-/** Writes a number with a narrow space between thousands and a fixed count of decimals. */
-function written(value, decimals = 0) {
-  const fixed = Math.abs(value).toFixed(decimals);
-  const [whole, part] = fixed.split('.');
-  const grouped = whole.replace(/\B(?=(\d{3})+$)/g, '\u202f');
-  const sign = value < 0 && Number(fixed) !== 0 ? '\u2212' : '';
-  return sign + grouped + (part ? `.${part}` : '');
-}
-
-/** Writes a mass: kg below ten tonnes, tonnes above. */
-const writtenMass = (kg) => (kg < 1e4 ? `${written(kg, kg < 100 ? 2 : 0)} kg` : `${written(kg / 1000, 1)} t`);
-
-/** Writes a count with its word, in the plural where that is due. */
-const counted = (count, word, many = `${word}s`) => `${written(count)} ${count === 1 ? word : many}`;
-
-/** Gives an element with properties and children; texts are always put in as text. */
-function element(name, properties = {}, ...children) {
-  const made = document.createElement(name);
-  for (const [key, value] of Object.entries(properties)) {
-    if (key === 'class') made.className = value;
-    else if (key === 'data') Object.assign(made.dataset, value);
-    else if (key.startsWith('on')) made.addEventListener(key.slice(2), value);
-    else if (key in made && !key.includes('-')) made[key] = value;
-    else made.setAttribute(key, value);
-  }
-  made.append(...children);
-  return made;
-}
-
-const byId = (id) => document.getElementById(id);

@@ -18,12 +18,15 @@ function createCuts(model, state) {
     axes,
     /** Planes in local axes: [x, y, z, w], kept where the sum with (place, 1) is 0 or more. */
     planes: () => planes,
-    get any() { return planes.length > 0; },
+    get any() {
+      return planes.length > 0;
+    },
     set(axis, change) {
       Object.assign(axes[axis], change);
       planes = axes.flatMap(({ on, at, keep, depth }, index) => {
         if (!on) return [];
-        const plane = (side, value) => [0, 1, 2].map((each) => (each === index ? side : 0)).concat(-side * (value - model.middle[index]));
+        const plane = (side, value) =>
+          [0, 1, 2].map((each) => (each === index ? side : 0)).concat(-side * (value - model.middle[index]));
         return depth > 0 ? [plane(keep, at), plane(-keep, at + keep * depth)] : [plane(keep, at)];
       });
       state.tell('cuts');
@@ -48,7 +51,10 @@ function createCutPanel(model, state, cuts, say) {
     byId('cut-clear').disabled = !cuts.any;
     byId('cut').setAttribute('aria-pressed', String(cuts.any));
   });
-  byId('cut-clear').addEventListener('click', () => { cuts.clear(); say('No cuts'); });
+  byId('cut-clear').addEventListener('click', () => {
+    cuts.clear();
+    say('No cuts');
+  });
 
   function axisControls(index) {
     const axis = cuts.axes[index];
@@ -56,22 +62,63 @@ function createCutPanel(model, state, cuts, say) {
     const high = Math.ceil(model.middle[index] + model.box.high[index]);
     const id = `cut-${axis.name}`;
     const on = element('input', { type: 'checkbox', id, onchange: () => change({ on: on.checked }) });
-    const line = element('select', { id: `${id}-line`, onchange: () => line.value !== '' && change({ on: true, at: lines[index][Number(line.value)][1] }) },
-      element('option', { value: '' }, 'anywhere'), ...lines[index].map(([label], at) => element('option', { value: String(at) }, `line ${label}`)));
-    const slider = element('input', { type: 'range', id: `${id}-slider`, min: String(low), max: String(high), step: '10', 'aria-label': `${axis.title}: place of the cut`, oninput: () => change({ on: true, at: Number(slider.value) }) });
-    const place = element('input', { type: 'number', id: `${id}-at`, step: '10', onchange: () => change({ on: true, at: Number(place.value) || 0 }) });
-    const side = element('select', { id: `${id}-side`, onchange: () => change({ on: true, keep: Number(side.value) }) },
-      element('option', { value: '1' }, axis.ahead), element('option', { value: '-1' }, axis.behind));
-    const depth = element('input', { type: 'number', id: `${id}-depth`, min: '0', step: '100', placeholder: 'all', onchange: () => change({ on: true, depth: Math.max(0, Number(depth.value) || 0) }) });
+    const line = element(
+      'select',
+      {
+        id: `${id}-line`,
+        onchange: () => line.value !== '' && change({ on: true, at: lines[index][Number(line.value)][1] }),
+      },
+      element('option', { value: '' }, 'anywhere'),
+      ...lines[index].map(([label], at) => element('option', { value: String(at) }, `line ${label}`)),
+    );
+    const slider = element('input', {
+      type: 'range',
+      id: `${id}-slider`,
+      min: String(low),
+      max: String(high),
+      step: '10',
+      'aria-label': `${axis.title}: place of the cut`,
+      oninput: () => change({ on: true, at: Number(slider.value) }),
+    });
+    const place = element('input', {
+      type: 'number',
+      id: `${id}-at`,
+      step: '10',
+      onchange: () => change({ on: true, at: Number(place.value) || 0 }),
+    });
+    const side = element(
+      'select',
+      { id: `${id}-side`, onchange: () => change({ on: true, keep: Number(side.value) }) },
+      element('option', { value: '1' }, axis.ahead),
+      element('option', { value: '-1' }, axis.behind),
+    );
+    const depth = element('input', {
+      type: 'number',
+      id: `${id}-depth`,
+      min: '0',
+      step: '100',
+      placeholder: 'all',
+      onchange: () => change({ on: true, depth: Math.max(0, Number(depth.value) || 0) }),
+    });
     const labelled = (text, control) => element('label', { class: 'field' }, element('span', {}, text), control);
     const controls = [slider, labelled('at, mm', place), labelled('side', side), labelled('depth, mm', depth)];
     if (lines[index].length) controls.splice(1, 0, labelled('grid', line));
-    byId('cut-axes').append(element('fieldset', { class: 'cut-axis' },
-      element('legend', {}, element('label', {}, on, ` ${axis.title} (${axis.name})`)), ...controls));
+    byId('cut-axes').append(
+      element(
+        'fieldset',
+        { class: 'cut-axis' },
+        element('legend', {}, element('label', {}, on, ` ${axis.title} (${axis.name})`)),
+        ...controls,
+      ),
+    );
 
     function change(what) {
       cuts.set(index, what);
-      say(axis.on ? `Cut ${axis.title.toLowerCase()} at ${written(axis.at)} mm, ${axis.keep > 0 ? axis.ahead : axis.behind}` : `No cut ${axis.title.toLowerCase()}`);
+      say(
+        axis.on
+          ? `Cut ${axis.title.toLowerCase()} at ${written(axis.at)} mm, ${axis.keep > 0 ? axis.ahead : axis.behind}`
+          : `No cut ${axis.title.toLowerCase()}`,
+      );
     }
     const show = () => {
       on.checked = axis.on;

@@ -69,7 +69,11 @@ async function unpackModel(text) {
     assemblies: readAssemblies(head, columns, pieces),
     joints: readJoints(head, columns, pieces.count),
     findings: head.findings.map(([code, severity, sentence, point, about]) => ({
-      code, severity, text: sentence, point, pieces: about,
+      code,
+      severity,
+      text: sentence,
+      point,
+      pieces: about,
     })),
     changes: head.changes.map(([word, about]) => ({ word, pieces: about })),
   };
@@ -97,7 +101,14 @@ function readParts(head, columns) {
     used[1] += triangleCount;
     used[2] += edgeCount;
     return {
-      index, mark, role: head.roles[role][0], section, grade, finish, assemblies, mesh,
+      index,
+      mark,
+      role: head.roles[role][0],
+      section,
+      grade,
+      finish,
+      assemblies,
+      mesh,
       length: sizes[4 * index] / 100,
       mass: sizes[4 * index + 1] / 1000,
       surface: sizes[4 * index + 2] / 1e4,
@@ -116,7 +127,8 @@ function readPieces(head, columns) {
   for (let piece = 0; piece < count; piece++) {
     // A turn travels row after row; its columns are the axes of the part.
     for (let axis = 0; axis < 3; axis++) {
-      for (let row = 0; row < 3; row++) placement[12 * piece + 3 * axis + row] = turns[9 * turn[piece] + 3 * row + axis] / 1e9;
+      for (let row = 0; row < 3; row++)
+        placement[12 * piece + 3 * axis + row] = turns[9 * turn[piece] + 3 * row + axis] / 1e9;
       placement[12 * piece + 9 + axis] = place[3 * piece + axis] / 100;
     }
   }
@@ -133,7 +145,14 @@ function readPieces(head, columns) {
 function readAssemblies(head, columns, pieces) {
   const parent = columns.get('assembly parent').values;
   const assemblies = head.assemblies.map(([key, mark, kind, made], index) => ({
-    index, key, mark, kind, made, parent: parent[index], pieces: [], children: [],
+    index,
+    key,
+    mark,
+    kind,
+    made,
+    parent: parent[index],
+    pieces: [],
+    children: [],
   }));
   pieces.assembly.forEach((assembly, piece) => assembly >= 0 && assemblies[assembly].pieces.push(piece));
   assemblies.forEach((each) => each.parent >= 0 && assemblies[each.parent].children.push(each.index));
@@ -143,7 +162,8 @@ function readAssemblies(head, columns, pieces) {
 /** Joints by piece: `of(piece)` gives [{kind, fastening, at, others}], `at` being start, end or along. */
 function readJoints(head, columns, count) {
   const runs = head.joints.map(([kind, fastening], number) => ({
-    kind, fastening,
+    kind,
+    fastening,
     pieces: columns.get(`joint ${number} pieces`),
     at: columns.get(`joint ${number} at`).values,
   }));
@@ -166,7 +186,9 @@ function readJoints(head, columns, count) {
       const run = runs[places[2 * slot]];
       const cell = places[2 * slot + 1];
       const row = Math.floor(cell / run.pieces.width) * run.pieces.width;
-      const others = Array.from(run.pieces.values.subarray(row, row + run.pieces.width)).filter((each) => each !== piece);
+      const others = Array.from(run.pieces.values.subarray(row, row + run.pieces.width)).filter(
+        (each) => each !== piece,
+      );
       found.push({ kind: run.kind, fastening: run.fastening, at: words[run.at[cell]], others });
     }
     return found;
@@ -183,6 +205,7 @@ function placeBoxes(model) {
       part.box.low[at % 3] = Math.min(part.box.low[at % 3], value);
       part.box.high[at % 3] = Math.max(part.box.high[at % 3], value);
     });
+    part.breadth = Math.max(part.box.high[1] - part.box.low[1], part.box.high[2] - part.box.low[2]);
   }
   pieces.low = new Float64Array(3 * pieces.count);
   pieces.high = new Float64Array(3 * pieces.count);
@@ -236,5 +259,7 @@ function carried(model, piece, point) {
 function turnedBack(model, piece, direction) {
   const p = model.pieces.placement;
   const o = 12 * piece;
-  return [0, 1, 2].map((axis) => p[o + 3 * axis] * direction[0] + p[o + 3 * axis + 1] * direction[1] + p[o + 3 * axis + 2] * direction[2]);
+  return [0, 1, 2].map(
+    (axis) => p[o + 3 * axis] * direction[0] + p[o + 3 * axis + 1] * direction[1] + p[o + 3 * axis + 2] * direction[2],
+  );
 }

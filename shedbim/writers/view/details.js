@@ -4,9 +4,20 @@ function createDetails(model, state, stage, cuts, say) {
   const box = byId('details-body');
   const MANY = 40;
 
-  const pairs = (list) => element('dl', { class: 'pairs' }, ...list.filter(([, value]) => value !== '').map(([name, value]) =>
-    element('div', {}, element('dt', {}, name), element('dd', {}, value))));
-  const link = (label, pieces, title) => element('button', { type: 'button', class: 'link', title: title ?? 'Select and show', onclick: () => go(pieces) }, label);
+  const pairs = (list) =>
+    element(
+      'dl',
+      { class: 'pairs' },
+      ...list
+        .filter(([, value]) => value !== '')
+        .map(([name, value]) => element('div', {}, element('dt', {}, name), element('dd', {}, value))),
+    );
+  const link = (label, pieces, title) =>
+    element(
+      'button',
+      { type: 'button', class: 'link', title: title ?? 'Select and show', onclick: () => go(pieces) },
+      label,
+    );
 
   /** Selects pieces and brings them into view when they are outside of it. */
   function go(pieces) {
@@ -19,8 +30,13 @@ function createDetails(model, state, stage, cuts, say) {
     const act = (id, label, call) => element('button', { type: 'button', id, onclick: call }, label);
     const list = [
       act('piece-fly', 'Fly to', () => stage.fit(pieces)),
-      hidden ? act('piece-show', 'Show', () => state.show(pieces)) : act('piece-hide', 'Hide', () => state.show(pieces, false)),
-      act('piece-only', 'Only this', () => { state.isolate(pieces); stage.fit(); }),
+      hidden
+        ? act('piece-show', 'Show', () => state.show(pieces))
+        : act('piece-hide', 'Hide', () => state.show(pieces, false)),
+      act('piece-only', 'Only this', () => {
+        state.isolate(pieces);
+        stage.fit();
+      }),
     ];
     if (mark) list.push(act('piece-same', `All ${mark.mark}`, () => state.select(mark.pieces)));
     return element('div', { class: 'actions' }, ...list);
@@ -28,23 +44,56 @@ function createDetails(model, state, stage, cuts, say) {
 
   function assemblyLine(piece) {
     const line = [];
-    for (let index = model.pieces.assembly[piece]; index >= 0; index = model.assemblies[index].parent) line.push(model.assemblies[index]);
+    for (let index = model.pieces.assembly[piece]; index >= 0; index = model.assemblies[index].parent)
+      line.push(model.assemblies[index]);
     if (!line.length) return 'none: a loose piece';
-    const within = (assembly) => assembly.pieces.concat(...assembly.children.map((child) => within(model.assemblies[child])));
-    return element('ul', { class: 'lines' }, ...line.map((assembly) => element('li', {},
-      link(`${assembly.mark} ${assembly.key}`, within(assembly), 'Select the whole assembly'), element('span', { class: 'detail' }, ` made ${assembly.made === 'shop' ? 'in the shop' : 'on site'}`))));
+    const within = (assembly) =>
+      assembly.pieces.concat(...assembly.children.map((child) => within(model.assemblies[child])));
+    return element(
+      'ul',
+      { class: 'lines' },
+      ...line.map((assembly) =>
+        element(
+          'li',
+          {},
+          link(`${assembly.mark} ${assembly.key}`, within(assembly), 'Select the whole assembly'),
+          element('span', { class: 'detail' }, ` made ${assembly.made === 'shop' ? 'in the shop' : 'on site'}`),
+        ),
+      ),
+    );
   }
 
   function jointList(piece) {
     const joints = model.joints.of(piece);
     const order = { start: 0, end: 1, along: 2 };
     joints.sort((a, b) => order[a.at] - order[b.at]);
-    return element('ul', { id: 'piece-joints', class: 'lines' }, ...joints.map(({ kind, fastening, at, others }) => element('li', {},
-      element('span', { class: 'at' }, at), ` ${kind}`, fastening === 'none' ? '' : element('span', { class: 'detail' }, ` ${fastening}`),
-      ...others.map((other) => element('div', {}, link(model.pieces.keys[other], [other]), element('span', { class: 'detail' }, ` ${model.parts[model.pieces.part[other]].mark}`))))));
+    return element(
+      'ul',
+      { id: 'piece-joints', class: 'lines' },
+      ...joints.map(({ kind, fastening, at, others }) =>
+        element(
+          'li',
+          {},
+          element('span', { class: 'at' }, at),
+          ` ${kind}`,
+          fastening === 'none' ? '' : element('span', { class: 'detail' }, ` ${fastening}`),
+          ...others.map((other) =>
+            element(
+              'div',
+              {},
+              link(model.pieces.keys[other], [other]),
+              element('span', { class: 'detail' }, ` ${model.parts[model.pieces.part[other]].mark}`),
+            ),
+          ),
+        ),
+      ),
+    );
   }
 
-  const places = (place) => add(place, model.middle).map((value) => written(value)).join(', ');
+  const places = (place) =>
+    add(place, model.middle)
+      .map((value) => written(value))
+      .join(', ');
 
   function one(piece) {
     const part = model.parts[model.pieces.part[piece]];
@@ -65,8 +114,10 @@ function createDetails(model, state, stage, cuts, say) {
         ['from, mm', places(carried(model, piece, [0, 0, 0]))],
         ['to, mm', places(carried(model, piece, [part.length, 0, 0]))],
       ]),
-      element('h4', {}, 'Assembly'), assemblyLine(piece),
-      element('h4', {}, 'Joints'), jointList(piece),
+      element('h4', {}, 'Assembly'),
+      assemblyLine(piece),
+      element('h4', {}, 'Joints'),
+      jointList(piece),
     ];
   }
 
@@ -80,13 +131,47 @@ function createDetails(model, state, stage, cuts, say) {
       actions(pieces, null),
       pairs([
         ['mass of all', writtenMass(mass)],
-        ...(single ? [['mark', single.mark], ['role', single.role], ['section', single.section], ['length', `${written(single.length, 1)} mm`], ['mass each', `${written(single.mass, 2)} kg`], ['grade', single.grade], ['finish', single.finish]] : []),
+        ...(single
+          ? [
+              ['mark', single.mark],
+              ['role', single.role],
+              ['section', single.section],
+              ['length', `${written(single.length, 1)} mm`],
+              ['mass each', `${written(single.mass, 2)} kg`],
+              ['grade', single.grade],
+              ['finish', single.finish],
+            ]
+          : []),
       ]),
-      ...(single ? [] : [element('h4', {}, 'Marks'), element('ul', { class: 'lines' }, ...[...parts].map(([index, count]) => element('li', {},
-        link(model.parts[index].mark, pieces.filter((piece) => model.pieces.part[piece] === index)), ` ${written(count)} × ${model.parts[index].section}`)))]),
+      ...(single
+        ? []
+        : [
+            element('h4', {}, 'Marks'),
+            element(
+              'ul',
+              { class: 'lines' },
+              ...[...parts].map(([index, count]) =>
+                element(
+                  'li',
+                  {},
+                  link(
+                    model.parts[index].mark,
+                    pieces.filter((piece) => model.pieces.part[piece] === index),
+                  ),
+                  ` ${written(count)} × ${model.parts[index].section}`,
+                ),
+              ),
+            ),
+          ]),
       element('h4', {}, 'Pieces'),
-      element('ul', { class: 'lines' }, ...pieces.slice(0, MANY).map((piece) => element('li', {}, link(model.pieces.keys[piece], [piece]))),
-        ...(pieces.length > MANY ? [element('li', { class: 'detail' }, `and ${written(pieces.length - MANY)} more`)] : [])),
+      element(
+        'ul',
+        { class: 'lines' },
+        ...pieces.slice(0, MANY).map((piece) => element('li', {}, link(model.pieces.keys[piece], [piece]))),
+        ...(pieces.length > MANY
+          ? [element('li', { class: 'detail' }, `and ${written(pieces.length - MANY)} more`)]
+          : []),
+      ),
     ];
   }
 
@@ -94,18 +179,27 @@ function createDetails(model, state, stage, cuts, say) {
     if (!pieces.length) return 'Nothing selected';
     if (pieces.length > 1) return `${counted(pieces.length, 'piece')} selected`;
     const part = model.parts[model.pieces.part[pieces[0]]];
-    return `Selected ${model.pieces.keys[pieces[0]]}: mark ${part.mark}, ${part.section}, ${written(part.length, 1)} mm, ${written(part.mass, 2)} kg`;
+    const sizes = `${written(part.length, 1)} mm, ${written(part.mass, 2)} kg`;
+    return `Selected ${model.pieces.keys[pieces[0]]}: mark ${part.mark}, ${part.section}, ${sizes}`;
   }
 
   function render() {
     const pieces = [...state.selected];
-    box.replaceChildren(...(pieces.length === 0
-      ? [element('p', { class: 'hint' }, 'Pick a piece in the model, the tree or the schedule to read what it is.')]
-      : pieces.length === 1 ? one(pieces[0]) : many(pieces)));
+    box.replaceChildren(
+      ...(pieces.length === 0
+        ? [element('p', { class: 'hint' }, 'Pick a piece in the model, the tree or the schedule to read what it is.')]
+        : pieces.length === 1
+          ? one(pieces[0])
+          : many(pieces)),
+    );
     byId('details').classList.toggle('empty', !pieces.length);
   }
 
-  state.on('selection', () => { render(); box.scrollTop = 0; say(spoken([...state.selected])); });
+  state.on('selection', () => {
+    render();
+    box.scrollTop = 0;
+    say(spoken([...state.selected]));
+  });
   state.on('shown', render);
   state.on('cuts', () => state.selected.size === 1 && render());
   render();

@@ -22,7 +22,10 @@ function listenToPointer(stage, call) {
     if (met) return met.point;
     const { right, up } = camera.axes();
     const scale = camera.scale();
-    return add(camera.target, add(times(right, (x - camera.width / 2) * scale), times(up, (camera.height / 2 - y) * scale)));
+    return add(
+      camera.target,
+      add(times(right, (x - camera.width / 2) * scale), times(up, (camera.height / 2 - y) * scale)),
+    );
   };
   const middleOf = (spots) => [(spots[0][0] + spots[1][0]) / 2, (spots[0][1] + spots[1][1]) / 2];
   const apart = (spots) => Math.max(1, Math.hypot(spots[0][0] - spots[1][0], spots[0][1] - spots[1][1]));
@@ -99,18 +102,23 @@ function listenToPointer(stage, call) {
   canvas.addEventListener('contextmenu', (event) => event.preventDefault());
 
   let wheel = null;
-  canvas.addEventListener('wheel', (event) => {
-    event.preventDefault();
-    stage.takeOver();
-    const [x, y] = spot(event);
-    const now = performance.now();
-    // One place holds for one turn of the wheel, so that the zoom goes straight to it.
-    if (!wheel || now - wheel.time > 400 || Math.hypot(wheel.x - x, wheel.y - y) > 3) wheel = { anchor: anchorAt(x, y), x, y };
-    wheel.time = now;
-    const lines = event.deltaMode === 1 ? 30 : event.deltaMode === 2 ? 400 : 1;
-    camera.zoom(Math.exp(clamp(event.deltaY * lines, -300, 300) * 0.0016), wheel.anchor);
-    stage.redraw(true);
-  }, { passive: false });
+  canvas.addEventListener(
+    'wheel',
+    (event) => {
+      event.preventDefault();
+      stage.takeOver();
+      const [x, y] = spot(event);
+      const now = performance.now();
+      // One place holds for one turn of the wheel, so that the zoom goes straight to it.
+      if (!wheel || now - wheel.time > 400 || Math.hypot(wheel.x - x, wheel.y - y) > 3)
+        wheel = { anchor: anchorAt(x, y), x, y };
+      wheel.time = now;
+      const lines = event.deltaMode === 1 ? 30 : event.deltaMode === 2 ? 400 : 1;
+      camera.zoom(Math.exp(clamp(event.deltaY * lines, -300, 300) * 0.0016), wheel.anchor);
+      stage.redraw(true);
+    },
+    { passive: false },
+  );
 }
 
 /** Keys that move the eye while the model has the focus; gives whether the key was one of them. */

@@ -11,10 +11,16 @@ function gridLines(model) {
   const reach = GRID_REACH - 900;
   const local = (a, b) => sub([a, b, 0], model.middle);
   const across = letters.map((label, index) => ({
-    label, axis: 0, from: local(x[index], y[0] - reach), to: local(x[index], y[y.length - 1] + reach),
+    label,
+    axis: 0,
+    from: local(x[index], y[0] - reach),
+    to: local(x[index], y[y.length - 1] + reach),
   }));
   const along = numbers.map((label, index) => ({
-    label, axis: 1, from: local(x[0] - reach, y[index]), to: local(x[x.length - 1] + reach, y[index]),
+    label,
+    axis: 1,
+    from: local(x[0] - reach, y[index]),
+    to: local(x[x.length - 1] + reach, y[index]),
   }));
   return [...across, ...along];
 }
@@ -30,7 +36,7 @@ function withRoom(places) {
     const chosen = places.filter((_, index) => kept[index]);
     // The last one counts more than its neighbour in the row of steps.
     if (step > 1 && chosen.length > 2 && near(chosen[chosen.length - 2], places[last])) {
-      kept[last - ((last % step) || step)] = false;
+      kept[last - (last % step || step)] = false;
     }
     const left = places.filter((_, index) => kept[index]);
     if (left.every((place, index) => index === 0 || !near(place, left[index - 1]))) return kept;
@@ -57,12 +63,18 @@ function isBehind(box, camera, place) {
 function createLabels(stage, state) {
   const layer = byId('labels');
   const lines = gridLines(stage.model);
-  const rows = [0, 1].flatMap((axis) => ['from', 'to'].map((end) => lines.filter((line) => line.axis === axis).map((line) => {
-    const bubble = element('div', { class: 'bubble', data: { grid: line.label } }, line.label);
-    layer.append(bubble);
-    const way = unit(sub(line[end], end === 'from' ? line.to : line.from));
-    return { bubble, place: add(line[end], times(way, 700)) };
-  })));
+  const rows = [0, 1].flatMap((axis) =>
+    ['from', 'to'].map((end) =>
+      lines
+        .filter((line) => line.axis === axis)
+        .map((line) => {
+          const bubble = element('div', { class: 'bubble', data: { grid: line.label } }, line.label);
+          layer.append(bubble);
+          const way = unit(sub(line[end], end === 'from' ? line.to : line.from));
+          return { bubble, line, place: add(line[end], times(way, 700)) };
+        }),
+    ),
+  );
 
   function place() {
     const { camera } = stage;
@@ -70,13 +82,24 @@ function createLabels(stage, state) {
     for (const row of rows) {
       const places = row.map(({ place }) => camera.project(place));
       const room = withRoom(places);
+      // A line that is looked along is a point on the floor: its label hangs below.
+      const endOn = row.map(({ line }) => {
+        const [a, b] = [camera.project(line.from), camera.project(line.to)];
+        return Math.hypot(a[0] - b[0], a[1] - b[1]) < 2 * BUBBLE;
+      });
       row.forEach(({ bubble, place }, index) => {
-        const [x, y, depth] = places[index];
+        const [x, , depth] = places[index];
+        const y = places[index][1] + (endOn[index] ? BUBBLE * 0.9 : 0);
         const inside = depth > 0 && x > 14 && y > 14 && x < camera.width - 14 && y < camera.height - 14;
-        const free = inside && room[index] && state.gridOn && !isBehind(stage.model.box, camera, place) && taken.every(([a, b]) => Math.hypot(a - x, b - y) > BUBBLE + 1);
+        const free =
+          inside &&
+          room[index] &&
+          state.gridOn &&
+          !isBehind(stage.model.box, camera, place) &&
+          taken.every(([a, b]) => Math.hypot(a - x, b - y) > BUBBLE + 1);
         if (free) taken.push([x, y]);
         bubble.hidden = !free;
-        if (free) bubble.style.transform = `translate(${x.toFixed(1)}px, ${y.toFixed(1)}px) translate(-50%, -50%)`;
+        if (free) pin(bubble, x, y);
       });
     }
   }
@@ -92,5 +115,8 @@ function createLabels(stage, state) {
     byId('scale').title = stage.camera.parallel ? 'Scale of the picture' : 'Scale at the middle of the picture';
   }
 
-  stage.onDraw(() => { place(); measureScale(); });
+  stage.onDraw(() => {
+    place();
+    measureScale();
+  });
 }

@@ -23,8 +23,14 @@ function createMeasure(stage, state, cuts, say) {
     }
     if (!met) return null;
     const planes = cuts.planes();
-    const snap = byId('measure-what').value === 'points' ? snapped(stage.model, met, stage.camera, planes, x, y, 11) : null;
-    return { piece: met.piece, point: snap ? snap.point : met.point, kind: snap ? snap.kind : 'face', normal: met.normal };
+    const snap =
+      byId('measure-what').value === 'points' ? snapped(stage.model, met, stage.camera, planes, x, y, 11) : null;
+    return {
+      piece: met.piece,
+      point: snap ? snap.point : met.point,
+      kind: snap ? snap.kind : 'face',
+      normal: met.normal,
+    };
   }
 
   /** Gives what lies between two spots: straight distance and its parts along the axes, and between faces. */
@@ -33,7 +39,9 @@ function createMeasure(stage, state, cuts, say) {
     const facing = a.kind === 'face' && b.kind === 'face' && Math.abs(dot(a.normal, b.normal)) > PARALLEL;
     return {
       distance: size(step),
-      dx: Math.abs(step[0]), dy: Math.abs(step[1]), dz: Math.abs(step[2]),
+      dx: Math.abs(step[0]),
+      dy: Math.abs(step[1]),
+      dz: Math.abs(step[2]),
       faces: facing ? Math.abs(dot(step, a.normal)) : null,
     };
   }
@@ -67,20 +75,38 @@ function createMeasure(stage, state, cuts, say) {
       tool.done.push(made);
       tool.first = null;
       show();
-      say(`Distance ${written(made.distance, 1)} mm${made.faces === null ? '' : `, between the faces ${written(made.faces, 1)} mm`}`);
+      const faces = made.faces === null ? '' : `, between the faces ${written(made.faces, 1)} mm`;
+      say(`Distance ${written(made.distance, 1)} mm${faces}`);
     }
     stage.redraw();
   }
 
   function show() {
-    list.replaceChildren(...tool.done.map((each, index) => {
-      const value = (label, mm) => element('div', {}, element('dt', {}, label), element('dd', {}, `${written(mm, 1)} mm`));
-      const values = [value('distance', each.distance), value('dx', each.dx), value('dy', each.dy), value('dz', each.dz)];
-      if (each.faces !== null) values.unshift(value('between faces', each.faces));
-      else if (byId('measure-what').value === 'faces') values.unshift(element('p', { class: 'hint' }, 'These faces are not parallel.'));
-      return element('li', {}, element('dl', { class: 'pairs' }, ...values),
-        element('button', { type: 'button', 'aria-label': `Remove measurement ${index + 1}`, onclick: () => remove(each) }, 'Remove'));
-    }));
+    list.replaceChildren(
+      ...tool.done.map((each, index) => {
+        const value = (label, mm) =>
+          element('div', {}, element('dt', {}, label), element('dd', {}, `${written(mm, 1)} mm`));
+        const values = [
+          value('distance', each.distance),
+          value('dx', each.dx),
+          value('dy', each.dy),
+          value('dz', each.dz),
+        ];
+        if (each.faces !== null) values.unshift(value('between faces', each.faces));
+        else if (byId('measure-what').value === 'faces')
+          values.unshift(element('p', { class: 'hint' }, 'These faces are not parallel.'));
+        return element(
+          'li',
+          {},
+          element('dl', { class: 'pairs' }, ...values),
+          element(
+            'button',
+            { type: 'button', 'aria-label': `Remove measurement ${index + 1}`, onclick: () => remove(each) },
+            'Remove',
+          ),
+        );
+      }),
+    );
     byId('measure-clear').hidden = !tool.done.length;
   }
 
@@ -109,7 +135,7 @@ function createMeasure(stage, state, cuts, say) {
       end.setAttribute('cx', b[0]);
       end.setAttribute('cy', b[1]);
       each.text.textContent = `${written(each.faces ?? each.distance, 1)} mm`;
-      each.text.style.transform = `translate(${((a[0] + b[0]) / 2).toFixed(1)}px, ${((a[1] + b[1]) / 2).toFixed(1)}px) translate(-50%, -50%)`;
+      pin(each.text, (a[0] + b[0]) / 2, (a[1] + b[1]) / 2);
     }
     mark(tool.first ?? hoverAt);
   }
@@ -119,7 +145,7 @@ function createMeasure(stage, state, cuts, say) {
     marker.hidden = !at;
     if (!at) return;
     marker.dataset.kind = spot.kind;
-    marker.style.transform = `translate(${at[0].toFixed(1)}px, ${at[1].toFixed(1)}px) translate(-50%, -50%)`;
+    pin(marker, at[0], at[1]);
   }
 
   /** Shows what would be taken at a pixel. */
@@ -141,7 +167,11 @@ function createMeasure(stage, state, cuts, say) {
 
   button.addEventListener('click', () => setOn(!tool.on));
   byId('measure-clear').addEventListener('click', clear);
-  byId('measure-close').addEventListener('click', () => { clear(); setOn(false); button.focus(); });
+  byId('measure-close').addEventListener('click', () => {
+    clear();
+    setOn(false);
+    button.focus();
+  });
   stage.onDraw(draw);
   return Object.assign(tool, { setOn, tap, hover, clear });
 }

@@ -21,12 +21,14 @@ __all__ = ["SCRIPTS", "page", "write"]
 #: The scripts in the order in which they use one another; together they are one function of the page.
 SCRIPTS = (
     "vectors.js",
+    "words.js",
     "data.js",
     "solids.js",
     "colours.js",
     "state.js",
     "camera.js",
     "shaders.js",
+    "instances.js",
     "renderer.js",
     "picking.js",
     "stage.js",
@@ -39,6 +41,7 @@ SCRIPTS = (
     "details.js",
     "search.js",
     "findings.js",
+    "handle.js",
     "page.js",
 )
 

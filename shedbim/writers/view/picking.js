@@ -53,7 +53,9 @@ function meetPiece(model, piece, ray, stretch) {
   const along = best.front ? best.along : from;
   const turn = model.pieces.placement;
   const normal = best.front
-    ? [0, 1, 2].map((row) => [0, 1, 2].reduce((sum, axis) => sum + turn[12 * piece + 3 * axis + row] * best.normal[axis], 0))
+    ? [0, 1, 2].map((row) =>
+        [0, 1, 2].reduce((sum, axis) => sum + turn[12 * piece + 3 * axis + row] * best.normal[axis], 0),
+      )
     : times(plane, -1).slice(0, 3);
   return { piece, along, point: add(ray.origin, times(ray.direction, along)), normal: unit(normal), cut: !best.front };
 }
@@ -122,14 +124,16 @@ function snapped(model, met, camera, cuts, x, y, reach) {
     for (const end of ends) {
       const [px, py, depth] = camera.project(end);
       const far = Math.hypot(px - x, py - y);
-      if (depth > 0 && far < (corner?.far ?? reach) && size(sub(end, met.point)) < tolerance && isKept(end, cuts)) corner = { far, point: end };
+      if (depth > 0 && far < (corner?.far ?? reach) && size(sub(end, met.point)) < tolerance && isKept(end, cuts))
+        corner = { far, point: end };
     }
     const along = sub(ends[1], ends[0]);
     const share = clamp(dot(sub(met.point, ends[0]), along) / dot(along, along), 0, 1);
     const point = mix(ends[0], ends[1], share);
     const [px, py, depth] = camera.project(point);
     const far = Math.hypot(px - x, py - y);
-    if (depth > 0 && far < (edge?.far ?? reach * 0.7) && size(sub(point, met.point)) < tolerance && isKept(point, cuts)) edge = { far, point };
+    if (depth > 0 && far < (edge?.far ?? reach * 0.7) && size(sub(point, met.point)) < tolerance && isKept(point, cuts))
+      edge = { far, point };
   }
   if (corner) return { kind: 'corner', point: corner.point };
   return edge && { kind: 'edge', point: edge.point };

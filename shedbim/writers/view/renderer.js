@@ -1,109 +1,6 @@
-// Draws the pieces with WebGL2: one draw call for each part, however many pieces it has.
+// Draws the pieces with WebGL2: few draw calls for each part, however many pieces it has.
 
-const INSTANCE_BYTES = 56; // three rows of four floats, a colour of four bytes, the number of the piece
 const PICK_SIDE = 9; // pixels, odd: the square around the pointer in which pieces are looked for
-
-/** A program with its uniforms by name. */
-function compiled(gl, source) {
-  const program = gl.createProgram();
-  for (const [kind, text] of [[gl.VERTEX_SHADER, source.vertex], [gl.FRAGMENT_SHADER, source.fragment]]) {
-    const shader = gl.createShader(kind);
-    gl.shaderSource(shader, text);
-    gl.compileShader(shader);
-    if (!gl.getShaderParameter(shader, gl.COMPILE_STATUS) && !gl.isContextLost()) {
-      throw new Error(`a shader does not compile: ${gl.getShaderInfoLog(shader)}`);
-    }
-    gl.attachShader(program, shader);
-  }
-  gl.linkProgram(program);
-  if (!gl.getProgramParameter(program, gl.LINK_STATUS) && !gl.isContextLost()) {
-    throw new Error(`a program does not link: ${gl.getProgramInfoLog(program)}`);
-  }
-  const at = {};
-  const count = gl.getProgramParameter(program, gl.ACTIVE_UNIFORMS) ?? 0;
-  for (let index = 0; index < count; index++) {
-    const { name } = gl.getActiveUniform(program, index);
-    at[name.replace('[0]', '')] = gl.getUniformLocation(program, name);
-  }
-  return { program, at };
-}
-
-/** Some pieces, sorted by part, in a buffer of their own: those shown, or those selected. */
-class InstanceSet {
-  constructor(gl, model, solids, buffers) {
-    this.gl = gl;
-    this.model = model;
-    this.solids = solids;
-    this.buffer = gl.createBuffer();
-    this.groups = solids.parts.map((solid, index) => ({
-      ...solid, count: 0, depth: model.parts[index].depth,
-      faces: gl.createVertexArray(), edges: gl.createVertexArray(),
-    }));
-    this.buffers = buffers;
-    this.count = 0;
-  }
-
-  /**
-   * Fills the set with the pieces for which `kept` is not 0.
-   * @param {Uint8Array} kept  @param {Uint8Array} colours three bytes a piece  @param {Set<number>} selected
-   */
-  fill(kept, colours, selected) {
-    const { gl, model } = this;
-    const total = kept.reduce((sum, each) => sum + each, 0);
-    const bytes = new ArrayBuffer(Math.max(total, 1) * INSTANCE_BYTES);
-    const floats = new Float32Array(bytes);
-    const whole = new Uint32Array(bytes);
-    const small = new Uint8Array(bytes);
-    const p = model.pieces.placement;
-    let at = 0;
-    model.parts.forEach((part, index) => {
-      const first = at;
-      for (const piece of part.pieces) {
-        if (!kept[piece]) continue;
-        const slot = (at * INSTANCE_BYTES) / 4;
-        for (let row = 0; row < 3; row++) {
-          for (let axis = 0; axis < 4; axis++) floats[slot + 4 * row + axis] = p[12 * piece + 3 * axis + row];
-        }
-        small.set(colours.subarray(3 * piece, 3 * piece + 3), 4 * (slot + 12));
-        small[4 * (slot + 12) + 3] = selected.has(piece) ? 128 : 255;
-        whole[slot + 13] = piece;
-        at++;
-      }
-      const group = this.groups[index];
-      group.count = at - first;
-      group.first = first;
-    });
-    gl.bindBuffer(gl.ARRAY_BUFFER, this.buffer);
-    gl.bufferData(gl.ARRAY_BUFFER, bytes, gl.DYNAMIC_DRAW);
-    for (const group of this.groups) {
-      if (!group.count) continue;
-      this.#describe(group.faces, this.buffers.triangles, group.first);
-      this.#describe(group.edges, this.buffers.edges, group.first);
-    }
-    this.count = total;
-  }
-
-  #describe(array, indices, first) {
-    const { gl } = this;
-    gl.bindVertexArray(array);
-    gl.bindBuffer(gl.ELEMENT_ARRAY_BUFFER, indices);
-    gl.bindBuffer(gl.ARRAY_BUFFER, this.buffers.vertices);
-    for (const place of [0, 1]) {
-      gl.enableVertexAttribArray(place);
-      gl.vertexAttribPointer(place, 3, gl.FLOAT, false, 24, 12 * place);
-    }
-    gl.bindBuffer(gl.ARRAY_BUFFER, this.buffer);
-    const start = first * INSTANCE_BYTES;
-    for (let place = 2; place <= 6; place++) {
-      gl.enableVertexAttribArray(place);
-      gl.vertexAttribDivisor(place, 1);
-      if (place < 5) gl.vertexAttribPointer(place, 4, gl.FLOAT, false, INSTANCE_BYTES, start + 16 * (place - 2));
-      else if (place === 5) gl.vertexAttribPointer(place, 4, gl.UNSIGNED_BYTE, true, INSTANCE_BYTES, start + 48);
-      else gl.vertexAttribIPointer(place, 1, gl.UNSIGNED_INT, INSTANCE_BYTES, start + 52);
-    }
-    gl.bindVertexArray(null);
-  }
-}
 
 /** Gives the renderer of a canvas, or null where there is no WebGL2. */
 function createRenderer(canvas, model, solids) {
@@ -118,6 +15,8 @@ class Renderer {
     this.faces = compiled(gl, FACES);
     this.edges = compiled(gl, EDGES);
     this.numbers = compiled(gl, NUMBERS);
+    this.axes = compiled(gl, axes(false));
+    this.axisNumbers = compiled(gl, axes(true));
     this.lines = compiled(gl, LINES);
     const filled = (kind, data) => {
       const buffer = gl.createBuffer();
@@ -181,8 +80,16 @@ class Renderer {
    * bytes a piece), and which are selected.
    */
   setPieces(drawn, colours, selected) {
-    this.whole.fill(drawn.map((each) => (each === 1 ? 1 : 0)), colours, selected);
-    this.opened.fill(drawn.map((each) => (each === 2 ? 1 : 0)), colours, selected);
+    this.whole.fill(
+      drawn.map((each) => (each === 1 ? 1 : 0)),
+      colours,
+      selected,
+    );
+    this.opened.fill(
+      drawn.map((each) => (each === 2 ? 1 : 0)),
+      colours,
+      selected,
+    );
     const kept = new Uint8Array(drawn.length);
     for (const piece of selected) kept[piece] = drawn[piece] ? 1 : 0;
     this.selected.fill(kept, colours, selected);
@@ -193,6 +100,7 @@ class Renderer {
     const { gl } = this;
     gl.useProgram(program);
     gl.uniformMatrix4fv(at.toClip, false, toClip);
+    this.sides = sidePlanes(toClip);
     if (at.eye) gl.uniform4fv(at.eye, scene.eye);
   }
 
@@ -203,16 +111,26 @@ class Renderer {
     if (cuts.length) gl.uniform4fv(at.cuts, cuts.flat());
   }
 
-  /** Draws all groups of a set; `each` is called with a group and may say false to leave it out. */
-  #drawSet(set, array, each = () => true) {
+  /** How many mm a pixel shows where a group is nearest to the eye. */
+  #pixelAt(scene, { low, high }) {
+    if (!scene.eye[3]) return scene.mmAtOne;
+    const way = [0, 1, 2].map((axis) => Math.max(low[axis] - scene.eye[axis], 0, scene.eye[axis] - high[axis]));
+    return scene.mmAtOne * Math.max(size(way), 1);
+  }
+
+  /** Draws the faces, edges or axes of a set; `each` is called with a group and may say false to leave it out. */
+  #drawSet(set, what, each = () => true) {
     const { gl } = this;
-    const faces = array === 'faces';
+    const mode = what === 'faces' ? gl.TRIANGLES : gl.LINES;
     for (const group of set.groups) {
-      const count = faces ? group.triangleCount : group.edgeCount;
-      if (!group.count || !count || each(group) === false) continue;
-      gl.bindVertexArray(group[array]);
-      const first = 4 * (faces ? group.firstTriangle : group.firstEdge);
-      const mode = faces ? gl.TRIANGLES : gl.LINES;
+      if (!mayBeSeen(group.box, this.sides) || each(group) === false) continue;
+      gl.bindVertexArray(what === 'faces' ? group.faces : group.edges);
+      const [start, count] = {
+        faces: [group.firstTriangle, group.triangleCount],
+        edges: [group.firstEdge, group.edgeCount],
+        axes: [group.firstAxis, 2],
+      }[what];
+      const first = 4 * start;
       if (this.separately) this.#drawOneByOne(set, group, mode, count, first);
       else {
         gl.drawElementsInstanced(mode, count, gl.UNSIGNED_INT, first, group.count);
@@ -228,7 +146,8 @@ class Renderer {
     gl.bindBuffer(gl.ARRAY_BUFFER, set.buffer);
     const placed = (instance) => {
       const start = (group.first + instance) * INSTANCE_BYTES;
-      for (let row = 0; row < 3; row++) gl.vertexAttribPointer(2 + row, 4, gl.FLOAT, false, INSTANCE_BYTES, start + 16 * row);
+      for (let row = 0; row < 3; row++)
+        gl.vertexAttribPointer(2 + row, 4, gl.FLOAT, false, INSTANCE_BYTES, start + 16 * row);
     };
     for (let instance = 0; instance < group.count; instance++) {
       placed(instance);
@@ -242,7 +161,7 @@ class Renderer {
    * Draws one picture.
    *
    * @param scene toClip, eye (place and 1, or direction to the eye and 0), right, up, cuts (planes: four
-   *   numbers, kept where x, y, z and 1 give 0 or more), haze [from, to] depths in mm, mmAtOne, nearest depth,
+   *   numbers, kept where x, y, z and 1 give 0 or more), haze [from, to] depths in mm, mmAtOne,
    *   theme (colours 0-1), grid (whether to draw it), edges (whether to draw them)
    */
   draw(scene) {
@@ -267,12 +186,12 @@ class Renderer {
     gl.uniform3fv(at.cutColour, theme.cut);
     gl.uniform3fv(at.paper, theme.paper);
     gl.uniform2fv(at.haze, scene.haze);
-    gl.uniform1f(at.hazeMost, 0.34);
-    gl.uniform1f(at.dimmed, this.selected.count ? 0.45 : 0);
+    gl.uniform1f(at.dimmed, this.#dimmed());
     gl.uniform4f(at.ghost, 0, 0, 0, 0);
     gl.enable(gl.CULL_FACE);
     this.#cutBy(this.faces, []);
-    this.#drawSet(this.whole, 'faces');
+    // Groups thinner than a pixel even where they are nearest are drawn by their axes alone.
+    this.#drawSet(this.whole, 'faces', (group) => group.breadth / this.#pixelAt(scene, group.box) > 0.9);
     if (this.opened.count) this.#drawOpened(scene);
 
     gl.disable(gl.CULL_FACE);
@@ -280,9 +199,15 @@ class Renderer {
     gl.blendFunc(gl.SRC_ALPHA, gl.ONE_MINUS_SRC_ALPHA);
     gl.depthMask(false);
     if (scene.grid) this.#drawGrid(scene);
+    this.#drawAxes(scene, this.axes);
     if (scene.edges) this.#drawEdges(scene);
     if (this.selected.count) this.#drawGhost(scene);
     gl.depthMask(true);
+  }
+
+  /** By how much pieces that are not selected turn grey. */
+  #dimmed() {
+    return this.selected.count ? 0.45 : 0;
   }
 
   /** Draws the pieces that a cut may open, their back faces a little deeper, so that only openings show them. */
@@ -320,10 +245,9 @@ class Renderer {
     gl.uniform1f(at.mmAtOne, scene.mmAtOne);
     gl.uniform1f(at.most, scene.theme.edge);
     gl.uniform2fv(at.fade, fade);
-    const pixel = scene.eye[3] ? scene.mmAtOne * scene.nearest : scene.mmAtOne;
     const each = (group) => {
-      // Even the nearest piece of such a part is too thin to show an edge.
-      if (group.depth / pixel < fade[0]) return false;
+      // Even the nearest piece of such a group is too thin to show an edge.
+      if (group.depth / this.#pixelAt(scene, group.box) < fade[0]) return false;
       gl.uniform1f(at.depth, group.depth);
       return true;
     };
@@ -331,6 +255,30 @@ class Renderer {
     this.#drawSet(this.whole, 'edges', each);
     this.#cutBy(this.edges, scene.cuts);
     this.#drawSet(this.opened, 'edges', each);
+  }
+
+  /** Draws the axes of pieces so far away that their sections are no thicker than a pixel or two. */
+  #drawAxes(scene, program, toClip = scene.toClip) {
+    const { gl } = this;
+    this.#use(program, scene, toClip);
+    gl.uniform1f(program.at.mmAtOne, scene.mmAtOne);
+    if (program === this.axes) {
+      gl.uniform3fv(program.at.accent, scene.theme.accent);
+      gl.uniform3fv(program.at.paper, scene.theme.paper);
+      gl.uniform2fv(program.at.haze, scene.haze);
+      gl.uniform1f(program.at.dimmed, this.#dimmed());
+    }
+    const farthest = scene.eye[3] ? scene.mmAtOne * scene.haze[1] : scene.mmAtOne;
+    const each = (group) => {
+      const depth = Math.sqrt(group.depth * group.breadth);
+      if (depth / farthest > 2.4) return false;
+      gl.uniform1f(program.at.depth, depth);
+      return true;
+    };
+    this.#cutBy(program, []);
+    this.#drawSet(this.whole, 'axes', each);
+    this.#cutBy(program, scene.cuts);
+    this.#drawSet(this.opened, 'axes', each);
   }
 
   /** Lets the selected pieces shine faintly through what stands before them. */
@@ -368,7 +316,8 @@ class Renderer {
     gl.depthFunc(gl.LEQUAL);
     gl.clearBufferuiv(gl.COLOR, 0, [0, 0, 0, 0]);
     gl.clearBufferfv(gl.DEPTH, 0, [1]);
-    this.#use(this.numbers, scene, product(closer, scene.toClip));
+    const toClip = product(closer, scene.toClip);
+    this.#use(this.numbers, scene, toClip);
     const calls = this.drawCalls;
     gl.enable(gl.CULL_FACE);
     this.#cutBy(this.numbers, []);
@@ -376,6 +325,7 @@ class Renderer {
     gl.disable(gl.CULL_FACE);
     this.#cutBy(this.numbers, scene.cuts);
     this.#drawSet(this.opened, 'faces');
+    this.#drawAxes(scene, this.axisNumbers, toClip);
     this.drawCalls = calls;
     const found = new Uint32Array(PICK_SIDE * PICK_SIDE);
     gl.readPixels(0, 0, PICK_SIDE, PICK_SIDE, gl.RED_INTEGER, gl.UNSIGNED_INT, found);
@@ -392,7 +342,10 @@ class Renderer {
     return best;
   }
 
-  /** Seconds of each of `count` pictures; `separately` makes one draw call for each piece, to compare. */
+  /**
+   * Times of `count` pictures: {seconds, asking} each, `asking` being the part that the page itself takes before
+   * the card is done. `separately` makes one draw call for each piece, to compare.
+   */
   frameTimes(scene, count, separately) {
     const { gl } = this;
     const times = [];
@@ -402,9 +355,10 @@ class Renderer {
       this.separately = separately;
       this.draw(scene);
       this.separately = false;
+      const asked = performance.now();
       // Reading a pixel waits until the picture is done.
       gl.readPixels(0, 0, 1, 1, gl.RGBA, gl.UNSIGNED_BYTE, pixel);
-      times.push((performance.now() - start) / 1000);
+      times.push({ seconds: (performance.now() - start) / 1000, asking: (asked - start) / 1000 });
     }
     return times;
   }
@@ -419,7 +373,11 @@ class Renderer {
     const paper = scene.theme.paper.map((value) => Math.round(255 * value));
     let differ = 0;
     for (let at = 0; at < pixels.length; at += 4) {
-      if (Math.abs(pixels[at] - paper[0]) + Math.abs(pixels[at + 1] - paper[1]) + Math.abs(pixels[at + 2] - paper[2]) > 12) differ++;
+      if (
+        Math.abs(pixels[at] - paper[0]) + Math.abs(pixels[at + 1] - paper[1]) + Math.abs(pixels[at + 2] - paper[2]) >
+        12
+      )
+        differ++;
     }
     return differ / (pixels.length / 4);
   }

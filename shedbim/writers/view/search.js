@@ -8,17 +8,33 @@ function find(model, query) {
   if (!words.length) return [];
   const holds = (text) => words.every((word) => text.toLowerCase().includes(word));
   const whole = (text) => text.toLowerCase() === query.trim().toLowerCase();
-  const marks = model.parts.filter((part) => holds(part.mark)).map((part) => ({
-    kind: 'mark', label: part.mark, detail: `${part.role}, ${part.section}, ${counted(part.pieces.length, 'piece')}`, pieces: part.pieces, exact: whole(part.mark),
-  }));
-  const sections = grouped(model.parts.filter((part) => holds(part.section)), (part) => part.section).map(([section, parts]) => {
+  const marks = model.parts
+    .filter((part) => holds(part.mark))
+    .map((part) => ({
+      kind: 'mark',
+      label: part.mark,
+      detail: `${part.role}, ${part.section}, ${counted(part.pieces.length, 'piece')}`,
+      pieces: part.pieces,
+      exact: whole(part.mark),
+    }));
+  const sections = grouped(
+    model.parts.filter((part) => holds(part.section)),
+    (part) => part.section,
+  ).map(([section, parts]) => {
     const pieces = parts.flatMap((part) => part.pieces);
     return { kind: 'section', label: section, detail: counted(pieces.length, 'piece'), pieces, exact: whole(section) };
   });
   const keys = [];
   for (let piece = 0; piece < model.pieces.count && keys.length < MOST_FOUND; piece++) {
     const key = model.pieces.keys[piece];
-    if (holds(key)) keys.push({ kind: 'key', label: key, detail: model.parts[model.pieces.part[piece]].mark, pieces: [piece], exact: whole(key) });
+    if (holds(key))
+      keys.push({
+        kind: 'key',
+        label: key,
+        detail: model.parts[model.pieces.part[piece]].mark,
+        pieces: [piece],
+        exact: whole(key),
+      });
   }
   const found = [...marks, ...sections, ...keys];
   return [...found.filter((each) => each.exact), ...found.filter((each) => !each.exact)].slice(0, MOST_FOUND);
@@ -39,9 +55,27 @@ function createSearch(model, state, stage, say) {
   function show() {
     found = find(model, input.value);
     current = -1;
-    list.replaceChildren(...found.map((each, index) => element('li', { role: 'option', id: `found-${index}`, 'aria-selected': 'false', onpointerdown: (event) => { event.preventDefault(); choose(index); } },
-      element('span', { class: 'kind' }, each.kind), element('span', { class: 'label' }, each.label), element('span', { class: 'detail' }, each.detail))));
-    if (input.value.trim() && !found.length) list.append(element('li', { class: 'hint' }, 'No mark, section or key holds this.'));
+    list.replaceChildren(
+      ...found.map((each, index) =>
+        element(
+          'li',
+          {
+            role: 'option',
+            id: `found-${index}`,
+            'aria-selected': 'false',
+            onpointerdown: (event) => {
+              event.preventDefault();
+              choose(index);
+            },
+          },
+          element('span', { class: 'kind' }, each.kind),
+          element('span', { class: 'label' }, each.label),
+          element('span', { class: 'detail' }, each.detail),
+        ),
+      ),
+    );
+    if (input.value.trim() && !found.length)
+      list.append(element('li', { class: 'hint' }, 'No mark, section or key holds this.'));
     const open = input.value.trim() !== '';
     list.hidden = !open;
     input.setAttribute('aria-expanded', String(open));

@@ -2,7 +2,8 @@
 
 /**
  * Gives {vertices, triangles, edges, parts}: vertices hold x, y, z and a normal, six numbers each; parts say
- * for each part where its triangles and edges begin and how many indices they are.
+ * for each part where its triangles and edges begin and how many indices they are, and where among the edges
+ * the two ends of its axis stand.
  *
  * Triangles that share an edge which is not drawn are smooth there: round tubes and rolled corners shade
  * softly, sharp edges stay sharp.
@@ -11,7 +12,7 @@ function solidBuffers(model) {
   const vertices = [];
   const triangles = [];
   const edges = [];
-  const parts = model.parts.map(({ mesh }) => {
+  const parts = model.parts.map(({ mesh, box }) => {
     const corners = smoothCorners(mesh);
     const base = vertices.length / 6;
     const firstTriangle = triangles.length;
@@ -28,12 +29,26 @@ function solidBuffers(model) {
     });
     const firstEdge = edges.length;
     for (const point of mesh.edges) edges.push(anyVertex.get(point) ?? base);
+    const edgeCount = edges.length - firstEdge;
+    const firstAxis = edges.length;
+    for (const x of [box.low[0], box.high[0]]) {
+      edges.push(vertices.length / 6);
+      vertices.push(x, 0, 0, 0, 0, 1);
+    }
     return {
-      firstTriangle, triangleCount: triangles.length - firstTriangle,
-      firstEdge, edgeCount: edges.length - firstEdge,
+      firstTriangle,
+      triangleCount: triangles.length - firstTriangle,
+      firstEdge,
+      edgeCount,
+      firstAxis,
     };
   });
-  return { vertices: new Float32Array(vertices), triangles: new Uint32Array(triangles), edges: new Uint32Array(edges), parts };
+  return {
+    vertices: new Float32Array(vertices),
+    triangles: new Uint32Array(triangles),
+    edges: new Uint32Array(edges),
+    parts,
+  };
 }
 
 /** Groups the corners of triangles that share a normal: `group[corner]` and `normal(group)`. */
@@ -52,7 +67,9 @@ function smoothCorners(mesh) {
   const beside = new Map();
   const sums = new Float64Array(3 * count);
   for (let triangle = 0; triangle < count; triangle += 3) {
-    const at = [0, 1, 2].map((corner) => Array.from(points.subarray(3 * triangles[triangle + corner], 3 * triangles[triangle + corner] + 3)));
+    const at = [0, 1, 2].map((corner) =>
+      Array.from(points.subarray(3 * triangles[triangle + corner], 3 * triangles[triangle + corner] + 3)),
+    );
     const normal = cross(sub(at[1], at[0]), sub(at[2], at[0]));
     for (let corner = 0; corner < 3; corner++) {
       sums.set(normal, 3 * (triangle + corner));

@@ -29,13 +29,19 @@ function createStage(model, state, cuts) {
   let hurried = false;
 
   const stage = {
-    canvas, camera, model,
+    canvas,
+    camera,
+    model,
     /** How many pictures were drawn. */
     frames: 0,
-    get renderer() { return renderer; },
+    get renderer() {
+      return renderer;
+    },
     /** How many pieces are shown and not wholly cut away. */
     drawnCount: () => drawnPieces.reduce((sum, each) => sum + (each ? 1 : 0), 0),
-    get idle() { return !waiting && !flight && resting; },
+    get idle() {
+      return !waiting && !flight && resting;
+    },
     onDraw: (call) => drawn.push(call),
 
     /** Asks for a picture. `moving` allows a slow machine to leave out the edges until the movement ends. */
@@ -43,11 +49,17 @@ function createStage(model, state, cuts) {
       if (moving) {
         resting = false;
         clearTimeout(restTimer);
-        restTimer = setTimeout(() => { resting = true; stage.redraw(); }, 140);
+        restTimer = setTimeout(() => {
+          resting = true;
+          stage.redraw();
+        }, 140);
       }
       if (waiting || !renderer) return;
       waiting = true;
-      requestAnimationFrame(() => { waiting = false; drawNow(); });
+      requestAnimationFrame(() => {
+        waiting = false;
+        drawNow();
+      });
     },
     /** Tells the camera the size of the canvas; gives whether it changed. */
     resize() {
@@ -93,7 +105,9 @@ function createStage(model, state, cuts) {
       stage.redraw();
     },
     /** Stops a flight: the hand of the user takes over. */
-    takeOver() { flight = null; },
+    takeOver() {
+      flight = null;
+    },
     /** What the line of sight through a canvas pixel meets first among what is shown and left by the cuts. */
     meet: (x, y) => meetAny(model, drawnPieces, camera.ray(x, y), cuts.planes()),
     /** The piece at a canvas pixel by the numbers the graphics card draws; near it unless `exact`. */
@@ -108,8 +122,12 @@ function createStage(model, state, cuts) {
     readTheme() {
       const [r, g, b] = styleColour('--grid-line');
       theme = {
-        paper: styleColour('--paper'), ink: styleColour('--edge'), accent: styleColour('--accent'),
-        accentInk: styleColour('--accent-edge'), cut: styleColour('--cut'), grid: [r, g, b, 0.85],
+        paper: styleColour('--paper'),
+        ink: styleColour('--edge'),
+        accent: styleColour('--accent'),
+        accentInk: styleColour('--accent-edge'),
+        cut: styleColour('--cut'),
+        grid: [r, g, b, 0.85],
         edge: parseFloat(getComputedStyle(document.documentElement).getPropertyValue('--edge-strength')),
       };
       stage.redraw();
@@ -154,11 +172,14 @@ function createStage(model, state, cuts) {
     const from = camera.parallel ? near + dot(camera.eye(), away) : near;
     const ratio = canvas.width / camera.width;
     return {
-      toClip, eye, right, up, theme, near,
+      toClip,
+      eye,
+      right,
+      up,
+      theme,
       cuts: cuts.planes(),
       haze: [from, from + (far - near)],
       mmAtOne: (camera.parallel ? camera.scale() : camera.scale(1)) / ratio,
-      nearest: near,
       grid: state.gridOn,
       edges: resting || !hurried,
     };
@@ -200,7 +221,8 @@ function createStage(model, state, cuts) {
   function start() {
     renderer = createRenderer(canvas, model, solids);
     byId('no-webgl').hidden = renderer !== null;
-    canvas.hidden = renderer === null;
+    for (const id of ['canvas', 'labels', 'scale', 'measure-drawing'])
+      byId(id).toggleAttribute('hidden', renderer === null);
     if (!renderer) return;
     renderer.setGrid(gridLines(model).flatMap((line) => [line.from, line.to]));
     fillPieces();
@@ -222,7 +244,10 @@ function createStage(model, state, cuts) {
     fillPieces();
   });
   state.on('selection', fillPieces);
-  state.on('colour', () => { fillColours(); fillPieces(); });
+  state.on('colour', () => {
+    fillColours();
+    fillPieces();
+  });
   state.on('cuts', fillPieces);
   state.on('grid', () => stage.redraw());
   state.on('theme', () => stage.readTheme());

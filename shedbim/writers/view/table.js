@@ -26,8 +26,17 @@ function createTable(model, state, stage, say) {
   const rows = model.parts.map((part) => {
     const cells = TABLE_COLUMNS.map(({ of, decimals }, index) => {
       const value = of(part);
-      if (index > 0) return element('td', { class: decimals === undefined ? '' : 'number' }, decimals === undefined ? value : written(value, decimals));
-      return element('th', { scope: 'row' }, element('button', { type: 'button', class: 'plain', 'aria-label': `Select all ${value}` }, value));
+      if (index > 0)
+        return element(
+          'td',
+          { class: decimals === undefined ? '' : 'number' },
+          decimals === undefined ? value : written(value, decimals),
+        );
+      return element(
+        'th',
+        { scope: 'row' },
+        element('button', { type: 'button', class: 'plain', 'aria-label': `Select all ${value}` }, value),
+      );
     });
     const row = element('tr', { data: { mark: part.mark } }, ...cells);
     row.addEventListener('click', (event) => {
@@ -38,14 +47,30 @@ function createTable(model, state, stage, say) {
   });
 
   const heads = TABLE_COLUMNS.map((column, index) => {
-    const button = element('button', { type: 'button', class: 'plain', onclick: () => sort(index) }, column.name, column.unit ? element('span', { class: 'unit' }, ` ${column.unit}`) : '');
-    return element('th', { scope: 'col', class: column.decimals === undefined ? '' : 'number', 'aria-sort': 'none', data: { column: column.name } }, button);
+    const button = element(
+      'button',
+      { type: 'button', class: 'plain', onclick: () => sort(index) },
+      column.name,
+      column.unit ? element('span', { class: 'unit' }, ` ${column.unit}`) : '',
+    );
+    return element(
+      'th',
+      {
+        scope: 'col',
+        class: column.decimals === undefined ? '' : 'number',
+        'aria-sort': 'none',
+        data: { column: column.name },
+      },
+      button,
+    );
   });
   byId('schedule-head').append(...heads);
 
   function sort(column) {
     sorted = { column, down: sorted.column === column && !sorted.down };
-    heads.forEach((head, index) => head.setAttribute('aria-sort', index !== column ? 'none' : sorted.down ? 'descending' : 'ascending'));
+    heads.forEach((head, index) =>
+      head.setAttribute('aria-sort', index !== column ? 'none' : sorted.down ? 'descending' : 'ascending'),
+    );
     list();
     say(`Sorted by ${TABLE_COLUMNS[column].name}, ${sorted.down ? 'largest' : 'smallest'} first`);
   }
@@ -54,7 +79,9 @@ function createTable(model, state, stage, say) {
   function list() {
     const words = filter.value.toLowerCase().split(/\s+/).filter(Boolean);
     listed = model.parts.filter((part) => {
-      const text = TABLE_COLUMNS.map(({ of }) => String(of(part))).join(' ').toLowerCase();
+      const text = TABLE_COLUMNS.map(({ of }) => String(of(part)))
+        .join(' ')
+        .toLowerCase();
       return words.every((word) => text.includes(word));
     });
     if (sorted.column !== null) {
@@ -65,7 +92,9 @@ function createTable(model, state, stage, say) {
     body.replaceChildren(...listed.map((part) => rows[part.index]));
     const pieces = listed.reduce((sum, part) => sum + part.pieces.length, 0);
     const mass = listed.reduce((sum, part) => sum + part.pieces.length * part.mass, 0);
-    byId('schedule-sum').textContent = `${written(listed.length)} of ${counted(model.parts.length, 'mark')}, ${counted(pieces, 'piece')}, ${writtenMass(mass)}`;
+    byId('schedule-sum').textContent =
+      `${written(listed.length)} of ${counted(model.parts.length, 'mark')}, ` +
+      `${counted(pieces, 'piece')}, ${writtenMass(mass)}`;
   }
 
   function followSelection() {
@@ -81,7 +110,10 @@ function createTable(model, state, stage, say) {
   filter.addEventListener('input', list);
   const pieces = () => listed.flatMap((part) => part.pieces);
   byId('schedule-select').addEventListener('click', () => state.select(pieces()));
-  byId('schedule-only').addEventListener('click', () => { state.isolate(pieces()); stage.fit(); });
+  byId('schedule-only').addEventListener('click', () => {
+    state.isolate(pieces());
+    stage.fit();
+  });
   state.on('selection', followSelection);
   list();
   return { list, followSelection };

@@ -57,7 +57,12 @@ def texts(
         ],
         "keys": shed.pieces.keys,
         "assemblies": [
-            [key, shed.assembly_types[kind].mark, shed.assembly_types[kind].kind, shed.assembly_types[kind].made]
+            [
+                key,
+                shed.assembly_types[kind].mark,
+                shed.assembly_types[kind].kind,
+                shed.assembly_types[kind].made,
+            ]
             for key, kind in zip(shed.assemblies.keys, shed.assemblies.type.tolist(), strict=True)
         ],
         "joints": [[run.kind.word, run.kind.fastening] for run in shed.joints],

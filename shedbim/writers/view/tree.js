@@ -1,12 +1,15 @@
 // The tree of the pieces, by grid, by role or by assembly, with show, hide and isolate.
 
+const TICK_WORDS = { true: 'shown', false: 'hidden', mixed: 'partly shown' };
 const ROWS_AT_ONCE = 200; // pieces of one branch that are listed before the reader asks for more
 
 /** Gives the roots of the tree for a way to group; children are made when a branch opens. */
 const GROUPINGS = {
   grid(model) {
     const roots = grouped(range(model.pieces.count), (piece) => model.pieces.keys[piece].split('/')[0]);
-    return roots.map(([place, pieces]) => branch(`g/${place}`, placeName(place), pieces, () => byRole(model, `g/${place}`, pieces, true)));
+    return roots.map(([place, pieces]) =>
+      branch(`g/${place}`, placeName(place), pieces, () => byRole(model, `g/${place}`, pieces, true)),
+    );
   },
   role(model) {
     return byRole(model, 'r', range(model.pieces.count), false);
@@ -34,9 +37,13 @@ function byRole(model, id, pieces, shortKeys) {
     const name = `${id}/${role}`;
     const marks = grouped(ofRole, (piece) => part(piece).mark);
     const leaves = (list) => list.map((piece) => leaf(model, piece, shortKeys));
-    const inside = () => marks.length === 1 || shortKeys
-      ? leaves(ofRole)
-      : marks.map(([mark, ofMark]) => ({ ...branch(`${name}/${mark}`, mark, ofMark, () => leaves(ofMark)), detail: part(ofMark[0]).section }));
+    const inside = () =>
+      marks.length === 1 || shortKeys
+        ? leaves(ofRole)
+        : marks.map(([mark, ofMark]) => ({
+            ...branch(`${name}/${mark}`, mark, ofMark, () => leaves(ofMark)),
+            detail: part(ofMark[0]).section,
+          }));
     return { ...branch(name, role, ofRole, inside), detail: marks.length === 1 ? marks[0][0] : '' };
   });
 }
@@ -53,7 +60,10 @@ function grouped(items, name) {
 
 const branch = (id, label, pieces, inside) => ({ id, label, detail: '', pieces, inside });
 const leaf = (model, piece, short) => ({
-  id: `p/${piece}`, piece, pieces: [piece], inside: null,
+  id: `p/${piece}`,
+  piece,
+  pieces: [piece],
+  inside: null,
   label: short ? model.pieces.keys[piece].split('/').slice(1).join('/') : model.pieces.keys[piece],
   detail: model.parts[model.pieces.part[piece]].mark,
 });
@@ -89,7 +99,16 @@ function createTree(model, state, stage, say) {
       }
       if (nodes.length > most) {
         const left = nodes.length - most;
-        list.push({ node: { id: `more/${parent?.id}`, label: `${written(Math.min(left, ROWS_AT_ONCE))} more of ${written(left)}`, pieces: [], more: () => longer.set(parent?.id, most + ROWS_AT_ONCE) }, level, parent });
+        list.push({
+          node: {
+            id: `more/${parent?.id}`,
+            label: `${written(Math.min(left, ROWS_AT_ONCE))} more of ${written(left)}`,
+            pieces: [],
+            more: () => longer.set(parent?.id, most + ROWS_AT_ONCE),
+          },
+          level,
+          parent,
+        });
       }
     };
     walk(roots, 1, null);
@@ -106,13 +125,20 @@ function createTree(model, state, stage, say) {
 
   function rowElement(row, index) {
     const { node, level } = row;
-    const made = element('div', { class: 'row', role: 'treeitem', 'aria-level': String(level), tabindex: index === current ? '0' : '-1' },
+    const made = element(
+      'div',
+      { class: 'row', role: 'treeitem', 'aria-level': String(level), tabindex: index === current ? '0' : '-1' },
       element('span', { class: 'twist', 'aria-hidden': 'true' }),
       element('span', { class: 'tick', 'aria-hidden': 'true', title: 'Show or hide' }),
       element('span', { class: 'label' }, node.label),
       element('span', { class: 'detail' }, node.detail ?? ''),
       element('span', { class: 'count' }, node.inside ? written(node.pieces.length) : ''),
-      element('button', { class: 'only', type: 'button', tabIndex: -1, 'aria-hidden': 'true', title: 'Show only this' }, 'Only'));
+      element(
+        'button',
+        { class: 'only', type: 'button', tabIndex: -1, 'aria-hidden': 'true', title: 'Show only this' },
+        'Only',
+      ),
+    );
     made.style.setProperty('--level', String(level - 1));
     if (node.inside) made.setAttribute('aria-expanded', String(open.has(node.id)));
     if (node.more) made.classList.add('more');
@@ -124,7 +150,10 @@ function createTree(model, state, stage, say) {
       else if (event.target.className === 'twist' || node.more) toggleOpen(node);
       else choose(node, event.ctrlKey || event.metaKey || event.shiftKey);
     });
-    made.addEventListener('dblclick', (event) => event.target.className !== 'tick' && node.pieces.length && stage.fit(node.pieces));
+    made.addEventListener(
+      'dblclick',
+      (event) => event.target.className !== 'tick' && node.pieces.length && stage.fit(node.pieces),
+    );
     return made;
   }
 
@@ -174,7 +203,10 @@ function createTree(model, state, stage, say) {
       made.setAttribute('aria-checked', ticked);
       made.setAttribute('aria-selected', String(selected > 0 && selected === node.pieces.length));
       made.classList.toggle('holds', selected > 0 && selected < node.pieces.length);
-      made.setAttribute('aria-label', `${node.label} ${node.detail ?? ''}, ${counted(node.pieces.length, 'piece')}, ${{ true: 'shown', false: 'hidden', mixed: 'partly shown' }[ticked]}`);
+      made.setAttribute(
+        'aria-label',
+        `${node.label} ${node.detail ?? ''}, ${counted(node.pieces.length, 'piece')}, ${TICK_WORDS[ticked]}`,
+      );
     }
   }
 
@@ -189,7 +221,8 @@ function createTree(model, state, stage, say) {
       Home: () => moveTo(0),
       End: () => moveTo(rows.length - 1),
       ArrowRight: () => (node.inside && !isOpen ? toggleOpen(node) : node.inside && moveTo(current + 1)),
-      ArrowLeft: () => (isOpen ? toggleOpen(node) : row.parent && moveTo(rows.findIndex((each) => each.node === row.parent))),
+      ArrowLeft: () =>
+        isOpen ? toggleOpen(node) : row.parent && moveTo(rows.findIndex((each) => each.node === row.parent)),
       Enter: () => (node.more ? toggleOpen(node) : choose(node, event.shiftKey)),
       ' ': () => toggleShown(node),
       o: () => isolate(node),

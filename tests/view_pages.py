@@ -1,0 +1,116 @@
+"""Pages of the cast and of small scenes, and what their cards must say of a piece."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from functools import cache
+
+import cast
+import numpy as np
+import pytest
+from picture_scenes import UP, Stick, block, scene
+
+from shedbim.model.joints import At
+from shedbim.model.roles import Role
+from shedbim.model.shed import Shed
+from shedbim.sections.profiles import Flat, Hollow
+from shedbim.writers.imprint import Imprint
+from shedbim.writers.view.page import page
+from view_browser import Sight
+
+__all__ = ["BLOCKS", "assert_card_tells_of", "number", "page_of", "page_text", "rows_of"]
+
+#: A solid bar and a tube stand upright, unequal; a cube lies apart from them.
+BLOCKS = scene(
+    ("solid", Role.COLUMN, Flat(300.0, 200.0), (0.0, 0.0, 0.0), (0.0, 0.0, 3000.0), (0.0, 1.0, 0.0)),
+    ("tube", Role.POST, Hollow(400.0, 300.0, 40.0, 60.0, 20.0), (900.0, 0.0, 0.0), (900.0, 0.0, 2000.0), UP[1:] + (0.0,)),
+    block("cube", Role.RAFTER, 1700.0, 650.0, 1300.0),
+)
+
+
+def page_text(shed: Shed, **more: Sequence[object]) -> str:
+    """The page of a shed."""
+    return page(shed, Imprint(), **more)
+
+
+@cache
+def page_of(name: str) -> str:
+    """The page of a specimen of the cast."""
+    return page_text(cast.shed_of(name))
+
+
+def number(text: str) -> float:
+    """The number a text begins with; thin spaces between thousands count as nothing."""
+    return float(text.replace("\u202f", "").replace("\u2212", "-").split()[0])
+
+
+def rows_of(sight: Sight, selector: str) -> list[list[str]]:
+    """The texts of the cells of each row of a table, blanks made plain."""
+    found = sight.ask(
+        "(selector) => [...document.querySelectorAll(selector)].map((row) => [...row.children].map((cell) => cell.textContent))",
+        selector,
+    )
+    return [[" ".join(cell.split()) for cell in row] for row in found]
+
+
+def assert_card_tells_of(sight: Sight, shed: Shed, piece: int) -> None:
+    """The card of the selection says of a piece what the model holds of it, and nothing else."""
+    part = shed.parts[shed.pieces.part[piece]]
+    assert sight.text("#piece-key") == shed.pieces.keys[piece]
+    assert sight.text("#piece-mark").split() == [part.mark, *part.role.word.split()]
+    pairs = dict(
+        sight.ask(
+            "[...document.querySelectorAll('#details-body .pairs > div')].map((row) => [...row.children].map((cell) => cell.textContent))"
+        )
+    )
+    assert pairs["section"] == part.bar.section.designation
+    assert (pairs["grade"], pairs.get("finish", "")) == (part.grade, part.finish)
+    # Half a step of the last digit shown.
+    assert number(pairs["length"]) == _about(part.bar.length, 0.05)
+    assert pairs["length"].endswith(" mm")
+    assert number(pairs["mass"]) == _about(part.bar.mass, 0.005)
+    assert pairs["mass"].endswith(" kg")
+    assert number(pairs["surface"]) == _about(part.bar.surface / 1e6, 0.0005)
+    assert number(pairs["pieces of this mark"]) == shed.quantities[shed.pieces.part[piece]]
+    place = shed.pieces.placement[piece]
+    ends = place[:, 3], place[:, 3] + place[:, 0] * part.bar.length
+    for name, end in zip(("from, mm", "to, mm"), ends, strict=True):
+        shown = [number(word) for word in pairs[name].split(", ")]
+        assert np.abs(np.subtract(shown, end)).max() <= 0.51, (name, shown, end)
+    card = " ".join(sight.page.inner_text("#details-body").split())
+    assert " ".join(_assembly_words(shed, piece)) in card
+    lines = sight.ask("[...document.querySelectorAll('#piece-joints > li')].map((line) => line.innerText)")
+    assert sorted(" ".join(line.split()) for line in lines) == sorted(_joint_lines(shed, piece))
+
+
+def _about(value: float, half: float) -> object:
+    return pytest.approx(value, abs=half * 1.02)
+
+
+def _assembly_words(shed: Shed, piece: int) -> list[str]:
+    """What stands under the heading of assemblies, from the innermost outwards."""
+    words = ["Assembly"]
+    index = shed.pieces.assembly[piece]
+    if index < 0:
+        return [*words, "none: a loose piece"]
+    while index >= 0:
+        kind = shed.assembly_types[shed.assemblies.type[index]]
+        where = "in the shop" if kind.made == "shop" else "on site"
+        words.append(f"{kind.mark} {shed.assemblies.keys[index]} made {where}")
+        index = shed.assemblies.parent[index]
+    return words
+
+
+def _joint_lines(shed: Shed, piece: int) -> list[str]:
+    """A line for each joint of a piece: where on it, what joint, how fastened; and key and mark of the others."""
+    lines = []
+    for run in shed.joints:
+        for row, cell in np.argwhere(run.pieces == piece):
+            words = [At(run.at[row, cell]).name.lower(), run.kind.word]
+            if run.kind.fastening != "none":
+                words.append(run.kind.fastening)
+            for other in run.pieces[row]:
+                if other != piece:
+                    words += [shed.pieces.keys[other], shed.parts[shed.pieces.part[other]].mark]
+            lines.append(" ".join(words))
+    return lines
