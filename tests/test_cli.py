@@ -234,7 +234,8 @@ def test_build_writes_every_output_and_tells_a_person_what_came_out(shell):
     out = shell.ok("build", "barn.yaml")
     made = shell.contents("outputs/barn")
     assert set(made) == {
-        "model.ifc", "model.glb", "members.csv", "assemblies.csv", "sections.csv", "schedule.xlsx", "summary.json",
+        "model.ifc", "model.glb", "members.csv", "assemblies.csv", "sections.csv", "schedule.xlsx", "view.html",
+        "summary.json",
     }  # fmt: skip
     told = json.loads(made["summary.json"])
     assert out.startswith("2417 Grün [bold]Store[/] =1+1, revision P01\n")  # a user's text is only text
@@ -286,7 +287,7 @@ def test_the_same_input_gives_the_same_bytes_and_another_time_stamp_others(shell
     first, second, third = (shell.contents(folder) for folder in "abc")
     assert first == second
     changed = {name for name in first if first[name] != third[name]}
-    assert changed == {"model.ifc", "model.glb", "schedule.xlsx", "summary.json"}
+    assert changed == {"model.ifc", "model.glb", "schedule.xlsx", "view.html", "summary.json"}
 
 
 @pytest.mark.parametrize("schema", outputs.SCHEMAS)

@@ -253,7 +253,7 @@ def test_every_control_says_what_it_is():
     for element in elements:
         if element.name in ("input", "select", "canvas", "nav", "aside", "dialog"):
             named = {"aria-label", "aria-labelledby"} & set(element.attributes)
-            wrapped = element.attributes.get("id") in ("theme", "colour-by", "measure-what", "grid-on")
+            wrapped = element.attributes.get("id") in ("theme", "colour-by", "grid-on")
             assert named or wrapped, element
             labelled.add(element.name)
         if element.name == "button":

@@ -68,7 +68,13 @@ function createMeasure(stage, state, cuts, say) {
       tool.first = spot;
       say('First point taken; pick the second');
     } else {
-      const made = { a: tool.first, b: spot, ...result(tool.first, spot), shape: lineOf.cloneNode(true) };
+      const made = {
+        a: tool.first,
+        b: spot,
+        ...result(tool.first, spot),
+        between: byId('measure-what').value,
+        shape: lineOf.cloneNode(true),
+      };
       made.text = element('div', { class: 'dimension' }, '');
       drawing.append(made.shape);
       byId('labels').append(made.text);
@@ -93,7 +99,7 @@ function createMeasure(stage, state, cuts, say) {
           value('dz', each.dz),
         ];
         if (each.faces !== null) values.unshift(value('between faces', each.faces));
-        else if (byId('measure-what').value === 'faces')
+        else if (each.between === 'faces')
           values.unshift(element('p', { class: 'hint' }, 'These faces are not parallel.'));
         return element(
           'li',
