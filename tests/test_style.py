@@ -18,7 +18,9 @@ ROOT = Path(__file__).parent.parent
     ids=["ruff check", "ruff format", "mypy"],
 )
 def test_tool_finds_nothing(command: list[str]) -> None:
-    found = subprocess.run([sys.executable, "-m", *command], cwd=ROOT, capture_output=True, text=True, check=False)
+    found = subprocess.run(
+        [sys.executable, "-m", *command], cwd=ROOT, capture_output=True, text=True, check=False
+    )
     assert found.returncode == 0, found.stdout + found.stderr
 
 

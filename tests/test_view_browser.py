@@ -16,6 +16,8 @@ from shedbim.model.shed import Shed
 
 #: How far a pixel may be from the paper's colour and still be paper: drivers round.
 _NOISE = 6
+#: Pixels of the canvas, from its left, that the card of a selection never covers.
+_FREE = 350
 
 
 @pytest.fixture(scope="module")
@@ -53,16 +55,18 @@ def from_iso(sight: Sight, projection: str) -> Eye:
     return eye_of(sight)
 
 
-def places_in(found: np.ndarray, count: int, where: np.ndarray | None = None) -> list[tuple[int, int]]:
-    """``count`` pixels (x, y) spread over all that are steady, or over those of a mask."""
-    rows, columns = np.nonzero(steady(found, 2) & (found != UNSURE) if where is None else where)
+def places_in(where: np.ndarray, count: int) -> list[tuple[int, int]]:
+    """``count`` pixels (x, y) spread over those of a mask (h, w)."""
+    rows, columns = np.nonzero(where)
+    assert len(rows) > 0
     chosen = np.random.default_rng(7).choice(len(rows), min(count, len(rows)), replace=False)
     return [(int(columns[i]), int(rows[i])) for i in chosen]
 
 
 def assert_picks_as_seen(sight: Sight, shed: Shed, found: np.ndarray, count: int) -> set[str]:
     """All over the canvas both ways of picking give what the eye sees, or nothing where it sees nothing."""
-    places = places_in(found, count)
+    calm = steady(found, 2)
+    places = places_in(calm & (found >= 0), count) + places_in(calm & (found == EMPTY), count // 4)
     expected = [None if found[y, x] == EMPTY else shed.pieces.keys[found[y, x]] for x, y in places]
     wrong = [
         (place, want, got)
@@ -90,20 +94,18 @@ def test_preset_opens_quietly_and_shows_all_its_pieces(desk: Desk, name: str) ->
         # The rim of each piece is blended with the paper: only what is steady on both sides can be compared.
         calm = steady(found, 1) & (found != UNSURE)
         assert (picture == (found != EMPTY))[calm].mean() > 0.99
-        _click_and_read(sight, model, spots(found, 6, reach=1))
+        _click_and_read(sight, model, spots(found[:, :_FREE], 5))
         assert sight.asked == [sight.url]
         assert sight.said == []
 
 
 def _click_and_read(sight: Sight, model: Shed, chosen: dict[int, tuple[int, int]]) -> None:
     """Click on pieces where they are seen, and read of each what the model holds."""
-    assert len(chosen) >= 6
+    assert len(chosen) >= 5
     for piece, place in chosen.items():
         sight.click(place)
         assert sight.selection == [model.pieces.keys[piece]], place
         assert_card_tells_of(sight, model, piece)
-        # The card would lie over the places of other pieces.
-        sight.ask("shedView.select([])")
 
 
 @pytest.mark.parametrize("projection", ["perspective", "parallel"])
@@ -111,10 +113,10 @@ def test_click_picks_the_piece_that_is_seen(view: Sight, shed: Shed, projection:
     eye = from_iso(view, projection)
     assert eye.parallel == (projection == "parallel")
     found = seen(eye, shed)
-    chosen = spots(found, 14, reach=2)
-    assert len({shed.parts[shed.pieces.part[piece]].role for piece in chosen}) >= 6
+    chosen = spots(found[:, :_FREE], 6)
+    assert len({shed.parts[shed.pieces.part[piece]].role for piece in chosen}) >= 4
     _click_and_read(view, shed, chosen)
-    picked = assert_picks_as_seen(view, shed, found, 250)
+    picked = assert_picks_as_seen(view, shed, found, 150)
     assert len(picked) > 20
     # Where nothing is, a click selects nothing.
     view.ask("(key) => shedView.select([key])", shed.pieces.keys[0])
@@ -137,7 +139,7 @@ def test_silhouette_is_that_of_the_model(view: Sight, shed: Shed) -> None:
 
 
 def test_pictures_after_the_first_are_not_blank(desk: Desk) -> None:
-    with desk.opened(page_of("barn"), "moving", reduced_motion="no-preference") as sight:
+    with desk.opened(page_of("flat"), "moving", reduced_motion="no-preference") as sight:
         first = drawn(sight, sight.sheet("moving-1")).mean()
         assert first > 0.05
         x, y, width, height = sight.box()
@@ -165,7 +167,9 @@ def test_pictures_after_the_first_are_not_blank(desk: Desk) -> None:
 def test_picture_comes_back_after_the_card_was_taken_away(desk: Desk) -> None:
     with desk.opened(page_text(BLOCKS), "lost") as sight:
         before = drawn(sight, sight.sheet()).mean()
-        sight.ask("window.card = canvas.getContext('webgl2').getExtension('WEBGL_lose_context'); card.loseContext()")
+        sight.ask(
+            "window.card = canvas.getContext('webgl2').getExtension('WEBGL_lose_context'); card.loseContext()"
+        )
         sight.page.wait_for_selector("#lost", state="visible")
         sight.ask("card.restoreContext()")
         sight.page.wait_for_selector("#lost", state="hidden")
@@ -198,10 +202,10 @@ def test_hidden_pieces_are_never_picked(view: Sight, shed: Shed, word: str) -> N
     assert view.ask("shedView.visibleCount") == len(left)
     assert view.text("#shown-count") == f"{len(left)} shown"
     found = seen(eye, shed, left)
-    assert_picks_as_seen(view, shed, found, 250)
+    assert_picks_as_seen(view, shed, found, 150)
     where = np.isin(before, sorted(hidden)) & steady(before, 2)
     names = {shed.pieces.keys[piece] for piece in hidden}
-    places = places_in(found, 120, where)
+    places = places_in(where, 120)
     assert len(places) > 50
     assert not {key for pair in view.keys_at(places) for key in pair} & names
     for place in places[:5]:
@@ -221,26 +225,28 @@ _CUTS = [("y", "2", -1, 0.0), ("y", "3", 1, 2500.0), ("x", "B", -1, 0.0)]
 def test_what_is_cut_away_is_never_picked(
     view: Sight, shed: Shed, axis: str, line: str, side: int, depth: float
 ) -> None:
-    eye = from_iso(view, "perspective")
+    from_iso(view, "perspective")
     view.page.click("#cut")
     view.page.select_option(f"#cut-{axis}-line", label=f"line {line}")
     view.page.select_option(f"#cut-{axis}-side", str(side))
     if depth:
         view.page.fill(f"#cut-{axis}-depth", str(int(depth)))
         view.page.press(f"#cut-{axis}-depth", "Enter")
+    view.page.click("#view-isometric")
     view.settle()
-    labels, places = (shed.grid.letters, shed.grid.x) if axis == "x" else (shed.grid.numbers, shed.grid.y)
-    at = places["xyz".index(axis)] if False else places[labels.index(line)]
+    eye = eye_of(view)
+    labels, values = (shed.grid.letters, shed.grid.x) if axis == "x" else (shed.grid.numbers, shed.grid.y)
+    at = values[labels.index(line)]
     normal = np.eye(3)["xyz".index(axis)]
     planes = [(*(side * normal), -side * at)]
     if depth:
         planes.append((*(-side * normal), side * (at + side * depth)))
     found = seen(eye, shed, planes=planes)
-    picked = assert_picks_as_seen(view, shed, found, 250)
+    picked = assert_picks_as_seen(view, shed, found, 150)
     assert len(picked) >= 5
     for key in shed.pieces.keys[::7]:
         assert view.ask("(key) => shedView.isCutAway(key)", key) == (not (found_box(shed, key, planes)))
-    places_cut = places_in(found, 60)
+    places_cut = places_in(steady(found, 2) & (found >= 0), 60)
     x, y, _, _ = view.box()
     met = view.ask(
         "(places) => places.map(([x, y]) => shedView.meetAt(x, y)).filter(Boolean).map(({ place }) => place)",
@@ -280,7 +286,16 @@ def test_cut_faces_are_filled(desk: Desk) -> None:
             picture = sight.sheet(f"cut-faces-{theme}")
             eye, cut = eye_of(sight), sight.colour("--cut")
             # In a solid bar, in the wall of a tube, in a cube; in the hollow of the tube, and beside them all.
-            filled = [(0, 0), (120, 70), (-120, -70), (900, 180), (900, -180), (1040, 30), (760, 0), (2300, 1300)]
+            filled = [
+                (0, 0),
+                (80, 130),
+                (-80, -130),
+                (900, 180),
+                (900, -180),
+                (1030, 30),
+                (770, 0),
+                (2300, 1800),
+            ]
             empty = [(900, 0), (980, 100), (450, 0), (1500, 400)]
             for places, wanted in ((filled, True), (empty, False)):
                 pixels = eye.picture(np.array([(x, y, 1000.0) for x, y in places]))[:, :2].astype(int)

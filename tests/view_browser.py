@@ -119,7 +119,9 @@ class Sight:
     def keys_at(self, places: list[tuple[float, float]]) -> list[tuple[str | None, str | None]]:
         """The keys at pixels of the canvas: by the numbers the card draws, and by the line of sight."""
         x, y, _, _ = self.box()
-        script = "(places) => places.map(([x, y]) => [shedView.keyAt(x, y), shedView.meetAt(x, y)?.key ?? null])"
+        script = (
+            "(places) => places.map(([x, y]) => [shedView.keyAt(x, y), shedView.meetAt(x, y)?.key ?? null])"
+        )
         return [tuple(pair) for pair in self.ask(script, [[x + a + 0.5, y + b + 0.5] for a, b in places])]
 
     def click(self, place: tuple[float, float], **how: Any) -> None:
@@ -168,7 +170,7 @@ class Desk:
         """
         path = self.pages / f"{name}.html"
         path.write_text(text, encoding="utf-8", newline="\n")
-        settings = {"viewport": {"width": 1100, "height": 720}, "reduced_motion": "reduce", **options}
+        settings = {"viewport": {"width": 1010, "height": 640}, "reduced_motion": "reduce", **options}
         context = self.browser.new_context(offline=True, **settings)
         try:
             page = context.new_page()
@@ -177,7 +179,9 @@ class Desk:
             page.on("request", lambda request: sight.asked.append(request.url))
             page.on("console", lambda message: sight.said.append((message.type, message.text)))
             page.on("pageerror", lambda error: sight.said.append(("error", str(error))))
-            page.on("dialog", lambda dialog: (sight.said.append(("dialog", dialog.message)), dialog.dismiss()))
+            page.on(
+                "dialog", lambda dialog: (sight.said.append(("dialog", dialog.message)), dialog.dismiss())
+            )
             if before:
                 page.add_init_script(before)
             page.goto(sight.url)

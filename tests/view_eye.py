@@ -99,7 +99,7 @@ def seen(eye: Eye, shed: Shed, shown: Iterable[int] | None = None, planes: Seque
     return np.where(unsure, UNSURE, np.where(found == len(shed.pieces), EMPTY, found))
 
 
-def steady(found: Ints, reach: int = 3) -> NDArray[np.bool_]:
+def steady(found: Ints, reach: int) -> NDArray[np.bool_]:
     """Whether all pixels within ``reach`` show the same piece; never near the border."""
     same = np.zeros(found.shape, bool)
     height, width = found.shape
@@ -112,7 +112,7 @@ def steady(found: Ints, reach: int = 3) -> NDArray[np.bool_]:
     return same
 
 
-def spots(found: Ints, count: int, reach: int = 3) -> dict[int, tuple[int, int]]:
+def spots(found: Ints, count: int, reach: int = 1) -> dict[int, tuple[int, int]]:
     """For ``count`` pieces, spread over all those seen steadily, a pixel (x, y) in the midst of each."""
     rows, columns = np.nonzero(steady(found, reach) & (found >= 0))
     pieces = found[rows, columns]

@@ -124,7 +124,13 @@ def write_pieces(
     # Index -1, a loose piece, leads to the last one: the storey's.
     owners = [outer[i] for i in pieces.assembly[numbering.order].tolist()]
     places = [f"#{start + kind}" for kind in kinds[numbering.order].tolist()]
-    columns = (owners, places, numbered(1, len(keys)), word_ids(numbering.words[numbering.order]), labels(keys))
+    columns = (
+        owners,
+        places,
+        numbered(1, len(keys)),
+        word_ids(numbering.words[numbering.order]),
+        labels(keys),
+    )
     write_part_pieces = _write_owned_shapes if step.schema.is_first else _write_shared_shape
     parts = PartWriter(step, contexts)
     for part, first, last in zip(shed.parts, numbering.starts, numbering.starts[1:], strict=False):

@@ -88,18 +88,16 @@ function readParts(head, columns) {
   const counts = columns.get('mesh counts').values;
   const points = columns.get('mesh points').values;
   const triangles = columns.get('mesh triangles').values;
-  const edges = columns.get('mesh edges').values;
-  const used = [0, 0, 0];
+  const used = [0, 0];
   return head.parts.map(([mark, role, section, grade, finish, assemblies], index) => {
-    const [pointCount, triangleCount, edgeCount] = counts.subarray(3 * index, 3 * index + 3);
+    const [pointCount, triangleCount, round] = counts.subarray(3 * index, 3 * index + 3);
     const mesh = {
       points: Float64Array.from(points.subarray(3 * used[0], 3 * (used[0] + pointCount)), (value) => value / 100),
       triangles: triangles.subarray(3 * used[1], 3 * (used[1] + triangleCount)),
-      edges: edges.subarray(2 * used[2], 2 * (used[2] + edgeCount)),
     };
     used[0] += pointCount;
     used[1] += triangleCount;
-    used[2] += edgeCount;
+    mesh.edges = sharpEdges(mesh, round === 1);
     return {
       index,
       mark,

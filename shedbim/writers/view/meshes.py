@@ -2,16 +2,11 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
-import numpy as np
-from numpy.typing import NDArray
-
 from shedbim.model.bars import Bar
+from shedbim.model.shells import Shell, shell
 from shedbim.sections.profiles import Pipe, Round
-from shedbim.writers.pictures.meshes import bar_mesh
 
-__all__ = ["ViewMesh", "view_mesh"]
+__all__ = ["is_round", "view_shell"]
 
 #: Arcs become chords this far off, mm: a rolled corner becomes two chords with an edge between them.
 _CHORD_ERROR = 1.6
@@ -19,29 +14,12 @@ _CHORD_ERROR = 1.6
 _ROUND_SHARE = 0.06
 
 
-@dataclass(frozen=True, eq=False)
-class ViewMesh:
-    """A closed surface of triangles and its drawn edges.
-
-    Attributes:
-        points: (v, 3) float, mm, in the bar's own frame.
-        triangles: (t, 3) int, indices into ``points``, anticlockwise seen from outside.
-        edges: (e, 2) int, indices into ``points``.
-    """
-
-    points: NDArray[np.float64]
-    triangles: NDArray[np.int64]
-    edges: NDArray[np.int64]
+def is_round(bar: Bar) -> bool:
+    """Whether the lines along a bar's mesh are chords of a round and not edges."""
+    return isinstance(bar.section.profile, Pipe | Round)
 
 
-def view_mesh(bar: Bar) -> ViewMesh:
-    """Give the mesh of a bar; the lines along a round one are chords, not edges, and are left out."""
-    is_round = isinstance(bar.section.profile, Pipe | Round)
-    error = min(_CHORD_ERROR, _ROUND_SHARE * bar.section.height / 2) if is_round else _CHORD_ERROR
-    mesh = bar_mesh(bar, error)
-    edges = mesh.edges
-    if is_round and len(edges):
-        ends = mesh.points[edges]
-        across = np.abs(ends[:, 0, 1:] - ends[:, 1, 1:]).max(axis=1)
-        edges = edges[across > error]
-    return ViewMesh(mesh.points, mesh.triangles, edges)
+def view_shell(bar: Bar) -> Shell:
+    """Give the closed surface of a bar; the page finds the edges in it."""
+    error = min(_CHORD_ERROR, _ROUND_SHARE * bar.section.height / 2) if is_round(bar) else _CHORD_ERROR
+    return shell(bar, error)

@@ -51,6 +51,43 @@ function solidBuffers(model) {
   };
 }
 
+/** Two faces that turn by more than this meet in an edge that is drawn: 30 degrees. */
+const EDGE_COSINE = Math.cos(Math.PI / 6);
+
+/** The normal of a triangle, as long as twice its area, mm². */
+function areaNormal({ points, triangles }, triangle) {
+  const [a, b, c] = [0, 1, 2].map((corner) => {
+    const at = 3 * triangles[triangle + corner];
+    return [points[at], points[at + 1], points[at + 2]];
+  });
+  return cross(sub(b, a), sub(c, a));
+}
+
+/**
+ * Gives the drawn edges of a closed mesh as pairs of points: where the surface turns sharply. The lines along a
+ * round bar are chords and are left out.
+ */
+function sharpEdges(mesh, round) {
+  const { points, triangles } = mesh;
+  const pointCount = points.length / 3;
+  const beside = new Map();
+  const edges = [];
+  for (let triangle = 0; triangle < triangles.length; triangle += 3) {
+    const normal = unit(areaNormal(mesh, triangle));
+    for (let corner = 0; corner < 3; corner++) {
+      const [a, b] = [triangles[triangle + corner], triangles[triangle + ((corner + 1) % 3)]];
+      const name = Math.min(a, b) * pointCount + Math.max(a, b);
+      if (!beside.has(name)) {
+        beside.set(name, normal);
+        continue;
+      }
+      const across = Math.hypot(points[3 * a + 1] - points[3 * b + 1], points[3 * a + 2] - points[3 * b + 2]);
+      if (dot(beside.get(name), normal) < EDGE_COSINE && !(round && across < 0.01)) edges.push(a, b);
+    }
+  }
+  return Uint32Array.from(edges);
+}
+
 /** Groups the corners of triangles that share a normal: `group[corner]` and `normal(group)`. */
 function smoothCorners(mesh) {
   const { points, triangles, edges } = mesh;
@@ -67,10 +104,7 @@ function smoothCorners(mesh) {
   const beside = new Map();
   const sums = new Float64Array(3 * count);
   for (let triangle = 0; triangle < count; triangle += 3) {
-    const at = [0, 1, 2].map((corner) =>
-      Array.from(points.subarray(3 * triangles[triangle + corner], 3 * triangles[triangle + corner] + 3)),
-    );
-    const normal = cross(sub(at[1], at[0]), sub(at[2], at[0]));
+    const normal = areaNormal(mesh, triangle);
     for (let corner = 0; corner < 3; corner++) {
       sums.set(normal, 3 * (triangle + corner));
       const here = triangle + corner;
