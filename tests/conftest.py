@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import cast
-
 import pytest
 from hypothesis import HealthCheck, settings
 
