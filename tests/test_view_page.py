@@ -62,7 +62,7 @@ def test_both_ends_of_every_piece_lie_where_the_model_has_them(name):
     shed, (_, columns) = cast.shed_of(name), data_of(name)
     turns = columns["turns"].reshape(-1, 3, 3)[columns["piece turn"][:, 0]] / 1e9
     placed = np.concatenate([turns, columns["piece place"][:, :, None] / 100], axis=2)
-    lengths = columns["part sizes"][shed.pieces.part, 0] / 100
+    lengths = columns["part sizes"][shed.pieces.part, 0] / 1000
     for index, part in enumerate(shed.parts):
         here = shed.pieces.part == index
         ends = np.array([[0.0, 0, 0], [part.bar.length, 0, 0], [part.bar.length, 100, 100]])
@@ -70,7 +70,7 @@ def test_both_ends_of_every_piece_lie_where_the_model_has_them(name):
         shown = apply(
             placed[here], np.array([[0, 0, 0], [lengths[here][0], 0, 0], [lengths[here][0], 100, 100]])
         )
-        # Each place is rounded to hundredths of a millimetre, and so is the length.
+        # Each place is rounded to hundredths of a millimetre.
         assert np.abs(shown - wanted).max() < 0.0101
 
 
@@ -82,9 +82,9 @@ def test_parts_travel_as_the_schedule_has_them(name):
     shown = [(mark, texts["roles"][role][0], *rest) for mark, role, *rest in texts["parts"]]
     assert shown == wanted
     sizes = columns["part sizes"]
-    assert np.abs(sizes[:, 0] / 100 - table.column("length")).max() <= 0.005001
-    assert np.abs(sizes[:, 1] / 1000 - table.column("mass each")).max() <= 0.0005001
-    assert np.abs(sizes[:, 2] / 1e4 - table.column("surface each")).max() <= 0.00005001
+    assert np.abs(sizes[:, 0] / 1000 - table.column("length")).max() <= 0.0005001
+    assert np.abs(np.array(texts["masses"]) - table.column("mass each")).max() <= 0.000001
+    assert np.abs(sizes[:, 1] / 1e4 - table.column("surface each")).max() <= 0.00005001
 
 
 def test_roles_have_the_colours_of_the_palette(name):

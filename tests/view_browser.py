@@ -21,7 +21,7 @@ from numpy.typing import NDArray
 from PIL import Image
 from playwright.sync_api import Browser, Page, sync_playwright
 
-__all__ = ["PROGRAM_NAMES", "Desk", "Sight", "started"]
+__all__ = ["PROGRAM_NAMES", "Desk", "Picture", "Sight", "started", "unharmed"]
 
 Picture = NDArray[np.uint8]
 
@@ -145,6 +145,14 @@ class Sight:
             "(name) => getComputedStyle(document.documentElement).getPropertyValue(name).trim()", name
         )
         return np.array([int(text[at : at + 2], 16) for at in (1, 3, 5)])
+
+
+def unharmed(sight: Sight) -> Iterator[Sight]:
+    """Lend a page as it opens; afterwards nothing was said, and nothing was asked for but the file itself."""
+    sight.start_over()
+    yield sight
+    assert sight.said == []
+    assert sight.asked == [sight.url]
 
 
 @dataclass(eq=False)

@@ -13,12 +13,12 @@ from math import cos, radians, sin, tan
 
 import numpy as np
 from numpy.typing import NDArray
+from view_browser import Sight
 
 from shedbim.model.bars import Bar
 from shedbim.model.shed import Shed
 from shedbim.model.shells import shell
 from shedbim.writers.pictures.raster import Canvas
-from view_browser import Sight
 
 __all__ = ["EMPTY", "UNSURE", "Eye", "eye_of", "seen", "spots", "steady"]
 

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+import colorsys
 from collections.abc import Sequence
 from functools import cache
 
 import cast
 import numpy as np
-from picture_scenes import UP, Stick, block, scene
+from picture_scenes import block, scene
+from view_browser import Sight
 
 from shedbim.model.joints import At
 from shedbim.model.roles import Role
@@ -15,9 +17,18 @@ from shedbim.model.shed import Shed
 from shedbim.sections.profiles import Flat, Hollow
 from shedbim.writers.imprint import Imprint
 from shedbim.writers.view.page import page
-from view_browser import Sight
 
-__all__ = ["BLOCKS", "assert_card_tells_of", "is_rounded", "number", "page_of", "page_text", "rows_of"]
+__all__ = [
+    "BLOCKS",
+    "assert_card_tells_of",
+    "hue_of",
+    "is_rounded",
+    "keys_of",
+    "number",
+    "page_of",
+    "page_text",
+    "rows_of",
+]
 
 #: A solid bar and a tube stand upright, unequal; a cube lies apart from them.
 BLOCKS = scene(
@@ -28,10 +39,13 @@ BLOCKS = scene(
         Hollow(400.0, 300.0, 40.0, 60.0, 20.0),
         (900.0, 0.0, 0.0),
         (900.0, 0.0, 2000.0),
-        UP[1:] + (0.0,),
+        (0.0, 1.0, 0.0),
     ),
     block("cube", Role.RAFTER, 1700.0, 650.0, 1300.0),
 )
+
+_CELLS = """(rows) => [...document.querySelectorAll(rows)].map((row) =>
+  [...row.children].map((cell) => cell.textContent))"""
 
 
 def page_text(shed: Shed, **more: Sequence[object]) -> str:
@@ -45,9 +59,27 @@ def page_of(name: str) -> str:
     return page_text(cast.shed_of(name))
 
 
+def keys_of(shed: Shed, **wanted: str) -> list[str]:
+    """Keys, sorted, of the pieces whose parts have a mark, a section or a role."""
+    found = []
+    for key, index in zip(shed.pieces.keys, shed.pieces.part, strict=True):
+        part = shed.parts[index]
+        has = {"mark": part.mark, "section": part.bar.section.designation, "role": part.role.word}
+        if all(has[name] == value for name, value in wanted.items()):
+            found.append(key)
+    return sorted(found)
+
+
 def number(text: str) -> float:
     """The number a text begins with; thin spaces between thousands count as nothing."""
     return float(text.replace("\u202f", "").replace("\u2212", "-").split()[0])
+
+
+def hue_of(colour: object) -> tuple[float, float]:
+    """Hue and saturation, 0 to 1, of red, green and blue, 0 to 255."""
+    red, green, blue = (float(value) / 255 for value in colour)
+    hue, saturation, _ = colorsys.rgb_to_hsv(red, green, blue)
+    return hue, saturation
 
 
 def is_rounded(text: str, value: float, least: int = 2) -> bool:
@@ -59,10 +91,7 @@ def is_rounded(text: str, value: float, least: int = 2) -> bool:
 
 def rows_of(sight: Sight, selector: str) -> list[list[str]]:
     """The texts of the cells of each row of a table, blanks made plain."""
-    found = sight.ask(
-        "(selector) => [...document.querySelectorAll(selector)].map((row) => [...row.children].map((cell) => cell.textContent))",
-        selector,
-    )
+    found = sight.ask(_CELLS, selector)
     return [[" ".join(cell.replace("\u202f", "").split()) for cell in row] for row in found]
 
 
@@ -71,11 +100,7 @@ def assert_card_tells_of(sight: Sight, shed: Shed, piece: int) -> None:
     part = shed.parts[shed.pieces.part[piece]]
     assert sight.text("#piece-key") == shed.pieces.keys[piece]
     assert sight.text("#piece-mark").split() == [part.mark, *part.role.word.split()]
-    pairs = dict(
-        sight.ask(
-            "[...document.querySelectorAll('#details-body .pairs > div')].map((row) => [...row.children].map((cell) => cell.textContent))"
-        )
-    )
+    pairs = dict(sight.ask(_CELLS, "#details-body .pairs > div"))
     assert pairs["section"] == part.bar.section.designation
     assert (pairs["grade"], pairs.get("finish", "")) == (part.grade, part.finish)
     assert is_rounded(pairs["length"].removesuffix(" mm"), part.bar.length, 1)

@@ -142,22 +142,27 @@ class Camera {
   }
 
   /**
-   * Looks at the whole of a box with a margin, from where it looks now; `covered` pixels at the right of the
-   * picture are left free.
+   * Looks at the whole of a box with a margin, from where it looks now; some pixels at the left, at the right
+   * and below are left free.
    *
    * With x to the right and z towards the eye, a corner is inside the right edge of the picture, whose slope is
    * k, where x - ex <= k (distance - z). The corners that bind on both sides give the nearest eye.
    */
-  fit(box, margin = 1.07, covered = 0) {
+  fit(box, margin = 1.07, covered = {}) {
     const { right, up, away } = this.axes();
+    const free = (pixels = 0, all = 1) => 1 - (2 * pixels) / all;
     const middle = times(add(box.low, box.high), 0.5);
     const corners = boxCorners(box).map((corner) => sub(corner, middle));
     const most = (axis, slope) =>
       Math.max(...corners.map((from) => dot(from, axis) - (this.parallel ? 0 : slope * dot(from, away))));
     const half = (FIELD * this.width) / this.height / margin;
     const sides = [
-      { axis: right, ahead: half * (1 - (2 * covered) / this.width), behind: half },
-      { axis: up, ahead: FIELD / margin, behind: FIELD / margin },
+      {
+        axis: right,
+        ahead: half * free(covered.right, this.width),
+        behind: half * free(covered.left, this.width),
+      },
+      { axis: up, ahead: FIELD / margin, behind: (FIELD / margin) * free(covered.below, this.height) },
     ].map((side) => ({ ...side, most: most(side.axis, side.ahead), least: most(times(side.axis, -1), side.behind) }));
     this.distance = Math.max(300, ...sides.map((side) => (side.most + side.least) / (side.ahead + side.behind)));
     // What room is left is shared by both sides.

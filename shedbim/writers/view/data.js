@@ -107,10 +107,10 @@ function readParts(head, columns) {
       finish,
       assemblies,
       mesh,
-      length: sizes[4 * index] / 100,
-      mass: sizes[4 * index + 1] / 1000,
-      surface: sizes[4 * index + 2] / 1e4,
-      depth: sizes[4 * index + 3] / 100,
+      length: sizes[3 * index] / 1000,
+      mass: head.masses[index],
+      surface: sizes[3 * index + 1] / 1e4,
+      depth: sizes[3 * index + 2] / 100,
     };
   });
 }

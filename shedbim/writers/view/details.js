@@ -106,8 +106,8 @@ function createDetails(model, state, stage, cuts, say) {
         ['state', state_],
         ['section', part.section],
         ['length', `${written(part.length, 1)} mm`],
-        ['mass', `${written(part.mass, 2)} kg`],
-        ['surface', `${written(part.surface, 3)} m²`],
+        ['mass', `${written(part.mass, 3)} kg`],
+        ['surface', `${written(part.surface, 4)} m²`],
         ['grade', part.grade],
         ['finish', part.finish],
         ['pieces of this mark', written(part.pieces.length)],
@@ -137,7 +137,7 @@ function createDetails(model, state, stage, cuts, say) {
               ['role', single.role],
               ['section', single.section],
               ['length', `${written(single.length, 1)} mm`],
-              ['mass each', `${written(single.mass, 2)} kg`],
+              ['mass each', `${written(single.mass, 3)} kg`],
               ['grade', single.grade],
               ['finish', single.finish],
             ]
@@ -179,7 +179,7 @@ function createDetails(model, state, stage, cuts, say) {
     if (!pieces.length) return 'Nothing selected';
     if (pieces.length > 1) return `${counted(pieces.length, 'piece')} selected`;
     const part = model.parts[model.pieces.part[pieces[0]]];
-    const sizes = `${written(part.length, 1)} mm, ${written(part.mass, 2)} kg`;
+    const sizes = `${written(part.length, 1)} mm, ${written(part.mass, 3)} kg`;
     return `Selected ${model.pieces.keys[pieces[0]]}: mark ${part.mark}, ${part.section}, ${sizes}`;
   }
 

@@ -146,11 +146,16 @@ function createPanels(tabs) {
 /** Keys that work wherever no text is typed. */
 function listenToKeys({ model, state, stage, measure, cuts }) {
   const step = (by) => {
-    const shown = [];
-    state.shown.forEach((on, piece) => on && leftOf(model, piece, cuts.planes()) && shown.push(piece));
-    if (!shown.length) return;
-    const at = shown.indexOf(state.lead);
-    state.select([shown[(at + by + shown.length) % shown.length]]);
+    const { count } = model.pieces;
+    // On from the piece picked last, even when that has been hidden since.
+    let at = state.lead < 0 && by < 0 ? 0 : state.lead;
+    for (let passed = 0; passed < count; passed++) {
+      at = (at + by + count) % count;
+      if (state.shown[at] && leftOf(model, at, cuts.planes())) {
+        state.select([at]);
+        return;
+      }
+    }
   };
   const chosen = () => [...state.selected];
   const projection = byId('projection');

@@ -63,16 +63,30 @@ class Renderer {
   #makePicking() {
     const { gl } = this;
     this.pickFrame = gl.createFramebuffer();
-    const numbers = gl.createTexture();
-    gl.bindTexture(gl.TEXTURE_2D, numbers);
-    gl.texStorage2D(gl.TEXTURE_2D, 1, gl.R32UI, PICK_SIDE, PICK_SIDE);
-    const depth = gl.createRenderbuffer();
-    gl.bindRenderbuffer(gl.RENDERBUFFER, depth);
-    gl.renderbufferStorage(gl.RENDERBUFFER, gl.DEPTH_COMPONENT24, PICK_SIDE, PICK_SIDE);
+    this.pickNumbers = gl.createRenderbuffer();
+    this.pickDepth = gl.createRenderbuffer();
+    this.pickSize = '';
+  }
+
+  /**
+   * Makes the picture of numbers as large as the canvas. Only a small square of it is ever drawn, but triangles
+   * must fall on it as they do on the canvas: stretched to a picture of that square alone, they are clipped far
+   * outside of it, and cracks open between them that show what stands behind.
+   */
+  #sizePicking(width, height) {
+    const { gl } = this;
+    if (this.pickSize === `${width} ${height}`) return;
+    this.pickSize = `${width} ${height}`;
+    const parts = [
+      [this.pickNumbers, gl.R32UI, gl.COLOR_ATTACHMENT0],
+      [this.pickDepth, gl.DEPTH_COMPONENT24, gl.DEPTH_ATTACHMENT],
+    ];
     gl.bindFramebuffer(gl.FRAMEBUFFER, this.pickFrame);
-    gl.framebufferTexture2D(gl.FRAMEBUFFER, gl.COLOR_ATTACHMENT0, gl.TEXTURE_2D, numbers, 0);
-    gl.framebufferRenderbuffer(gl.FRAMEBUFFER, gl.DEPTH_ATTACHMENT, gl.RENDERBUFFER, depth);
-    gl.bindFramebuffer(gl.FRAMEBUFFER, null);
+    for (const [buffer, form, place] of parts) {
+      gl.bindRenderbuffer(gl.RENDERBUFFER, buffer);
+      gl.renderbufferStorage(gl.RENDERBUFFER, form, width, height);
+      gl.framebufferRenderbuffer(gl.FRAMEBUFFER, place, gl.RENDERBUFFER, buffer);
+    }
   }
 
   /**
@@ -95,12 +109,12 @@ class Renderer {
     this.selected.fill(kept, colours, selected);
   }
 
-  /** Uses a program with the matrix and the eye of a scene. */
-  #use({ program, at }, scene, toClip = scene.toClip) {
+  /** Uses a program with the matrix and the eye of a scene; what lies outside of `within` will not be drawn. */
+  #use({ program, at }, scene, within = scene.toClip) {
     const { gl } = this;
     gl.useProgram(program);
-    gl.uniformMatrix4fv(at.toClip, false, toClip);
-    this.sides = sidePlanes(toClip);
+    gl.uniformMatrix4fv(at.toClip, false, scene.toClip);
+    this.sides = sidePlanes(within);
     if (at.eye) gl.uniform4fv(at.eye, scene.eye);
   }
 
@@ -258,9 +272,9 @@ class Renderer {
   }
 
   /** Draws the axes of pieces so far away that their sections are no thicker than a pixel or two. */
-  #drawAxes(scene, program, toClip = scene.toClip) {
+  #drawAxes(scene, program, within = scene.toClip) {
     const { gl } = this;
-    this.#use(program, scene, toClip);
+    this.#use(program, scene, within);
     gl.uniform1f(program.at.mmAtOne, scene.mmAtOne);
     if (program === this.axes) {
       gl.uniform3fv(program.at.accent, scene.theme.accent);
@@ -302,22 +316,27 @@ class Renderer {
     const { gl } = this;
     const width = gl.drawingBufferWidth;
     const height = gl.drawingBufferHeight;
-    // A matrix that lets the square around the pixel fill the whole of the small picture.
+    // A matrix that lets the square around the pixel fill the picture: what it leaves outside is not drawn.
     const kx = width / PICK_SIDE;
     const ky = height / PICK_SIDE;
     const cx = (2 * (x + 0.5)) / width - 1;
     const cy = 1 - (2 * (y + 0.5)) / height;
     const closer = [kx, 0, 0, 0, 0, ky, 0, 0, 0, 0, 1, 0, -cx * kx, -cy * ky, 0, 1];
+    const half = (PICK_SIDE - 1) / 2;
+    const square = [x - half, height - 1 - y - half, PICK_SIDE, PICK_SIDE];
+    this.#sizePicking(width, height);
     gl.bindFramebuffer(gl.FRAMEBUFFER, this.pickFrame);
-    gl.viewport(0, 0, PICK_SIDE, PICK_SIDE);
+    gl.viewport(0, 0, width, height);
+    gl.enable(gl.SCISSOR_TEST);
+    gl.scissor(...square);
     gl.depthMask(true);
     gl.disable(gl.BLEND);
     gl.enable(gl.DEPTH_TEST);
     gl.depthFunc(gl.LEQUAL);
     gl.clearBufferuiv(gl.COLOR, 0, [0, 0, 0, 0]);
     gl.clearBufferfv(gl.DEPTH, 0, [1]);
-    const toClip = product(closer, scene.toClip);
-    this.#use(this.numbers, scene, toClip);
+    const within = product(closer, scene.toClip);
+    this.#use(this.numbers, scene, within);
     const calls = this.drawCalls;
     gl.enable(gl.CULL_FACE);
     this.#cutBy(this.numbers, []);
@@ -325,12 +344,12 @@ class Renderer {
     gl.disable(gl.CULL_FACE);
     this.#cutBy(this.numbers, scene.cuts);
     this.#drawSet(this.opened, 'faces');
-    this.#drawAxes(scene, this.axisNumbers, toClip);
+    this.#drawAxes(scene, this.axisNumbers, within);
+    gl.disable(gl.SCISSOR_TEST);
     this.drawCalls = calls;
     const found = new Uint32Array(PICK_SIDE * PICK_SIDE);
-    gl.readPixels(0, 0, PICK_SIDE, PICK_SIDE, gl.RED_INTEGER, gl.UNSIGNED_INT, found);
+    gl.readPixels(...square, gl.RED_INTEGER, gl.UNSIGNED_INT, found);
     gl.bindFramebuffer(gl.FRAMEBUFFER, null);
-    const half = (PICK_SIDE - 1) / 2;
     let best = null;
     found.forEach((number, index) => {
       if (!number) return;

@@ -75,7 +75,13 @@ function createSearch(model, state, stage, say) {
       ),
     );
     if (input.value.trim() && !found.length)
-      list.append(element('li', { class: 'hint' }, 'No mark, section or key holds this.'));
+      list.append(
+        element(
+          'li',
+          { class: 'hint', role: 'option', 'aria-disabled': 'true', 'aria-selected': 'false' },
+          'No mark, section or key holds this.',
+        ),
+      );
     const open = input.value.trim() !== '';
     list.hidden = !open;
     input.setAttribute('aria-expanded', String(open));

@@ -146,12 +146,21 @@ function createStage(model, state, cuts) {
     return box;
   }
 
-  /** How many pixels of the picture the card of the selection covers at its right. */
+  /**
+   * How many pixels of the picture are covered: at the right by the card of the selection, at the left by the
+   * list of measurements, below by the scale and what is said.
+   */
   function covered() {
-    const card = byId('details').getBoundingClientRect();
     const box = canvas.getBoundingClientRect();
+    const card = byId('details').getBoundingClientRect();
+    const list = byId('measure-panel').getBoundingClientRect();
+    const most = 0.4 * box.width;
     const over = card.width > 0 && card.left > box.left && card.top < box.bottom && card.left < box.right;
-    return over ? Math.min(box.right - card.left, box.width / 2) : 0;
+    return {
+      left: list.width > 0 ? Math.min(list.right - box.left, most) : 0,
+      right: over ? Math.min(box.right - card.left, most) : 0,
+      below: Math.min(36, box.height / 8),
+    };
   }
 
   /** A box widened to hold the lines of the grid as well. */
@@ -257,7 +266,7 @@ function createStage(model, state, cuts) {
   stage.readTheme();
   fillColours();
   start();
-  camera.fit(withGrid(shownBox), 1.0);
+  camera.fit(withGrid(shownBox), 1.0, covered());
   stage.redraw();
   return stage;
 }

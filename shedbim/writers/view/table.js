@@ -7,9 +7,9 @@ const TABLE_COLUMNS = [
   { name: 'section', of: (part) => part.section },
   { name: 'grade', of: (part) => part.grade },
   { name: 'length', unit: 'mm', of: (part) => part.length, decimals: 1 },
-  { name: 'mass each', unit: 'kg', of: (part) => part.mass, decimals: 2 },
-  { name: 'mass total', unit: 'kg', of: (part) => part.mass * part.pieces.length, decimals: 1 },
-  { name: 'surface each', unit: 'm²', of: (part) => part.surface, decimals: 3 },
+  { name: 'mass each', unit: 'kg', of: (part) => part.mass, decimals: 3 },
+  { name: 'mass total', unit: 'kg', of: (part) => part.mass * part.pieces.length, decimals: 3 },
+  { name: 'surface each', unit: 'm²', of: (part) => part.surface, decimals: 4 },
   { name: 'finish', of: (part) => part.finish },
   { name: 'assemblies', of: (part) => part.assemblies },
 ];
@@ -101,7 +101,8 @@ function createTable(model, state, stage, say) {
     const picked = new Set(Array.from(state.selected, (piece) => model.pieces.part[piece]));
     rows.forEach((row, index) => {
       row.classList.toggle('picked', picked.has(index));
-      row.setAttribute('aria-selected', String(picked.has(index)));
+      if (picked.has(index)) row.setAttribute('aria-current', 'true');
+      else row.removeAttribute('aria-current');
     });
     const lead = state.lead < 0 ? null : rows[model.pieces.part[state.lead]];
     if (lead?.isConnected && !byId('dock').hidden) lead.scrollIntoView({ block: 'nearest' });

@@ -1,7 +1,8 @@
 """What the page is told of a shed: texts, and columns of parts, pieces, assemblies and joints.
 
-Distances travel as hundredths of mm, masses as grams, surfaces as square centimetres, and the entries of a
-turn as billionths. Places are in building axes; the page moves them to the middle of the building itself.
+Distances travel as hundredths of mm, lengths of parts as thousandths, surfaces as square centimetres, and the
+entries of a turn as billionths; masses as text, for they are multiplied before they are rounded. Places are in
+building axes; the page moves them to the middle of the building itself.
 """
 
 from __future__ import annotations
@@ -57,6 +58,7 @@ def texts(
             ]
             for part, marks in zip(shed.parts, shed.part_assembly_marks, strict=True)
         ],
+        "masses": [round(part.bar.mass, 6) for part in shed.parts],
         "keys": shed.pieces.keys,
         "assemblies": [
             [
@@ -80,8 +82,7 @@ def columns(shed: Shed) -> dict[str, ArrayLike]:
     result: dict[str, ArrayLike] = {
         "part sizes": [
             [
-                int(scaled(part.bar.length)),
-                int(scaled(part.bar.mass, 1000.0)),
+                int(scaled(part.bar.length, 1000.0)),
                 int(scaled(part.bar.surface, 1e-2)),
                 int(scaled(min(part.bar.section.width, part.bar.section.height))),
             ]
