@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import sys
+
 import cast
 import pytest
 from hypothesis import HealthCheck, settings
@@ -18,6 +20,14 @@ settings.register_profile(
     suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large],
 )
 settings.load_profile("steady")
+
+
+def pytest_sessionfinish() -> None:
+    """Let go of the solids that were kept: their library complains of those alive when Python ends."""
+    for name, keepers in (("invariants", ("bodies",)), ("built_models", ("model", "opened"))):
+        module = sys.modules.get(name)
+        for keeper in keepers if module else ():
+            getattr(module, keeper).cache_clear()
 
 
 @pytest.fixture(scope="session", params=cast.CAST)
