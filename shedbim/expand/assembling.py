@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from shedbim.errors import ModelError
 from shedbim.expand.kits import FIRST_LINE, HERE, NEXT_BAY, SECOND_LINE, Kit, Meeting, Run
 from shedbim.geometry.placements import compose, inverse, translation
-from shedbim.model.joints import At, JointRun
+from shedbim.model.joints import At, JointKind, JointRun
 from shedbim.model.marks import AssemblyTemplate, Stock, group_assemblies, group_parts
 from shedbim.model.shed import Assemblies, AssemblyType, Part, Pieces
 
@@ -42,7 +42,7 @@ def assemble(runs: Sequence[Run]) -> Assembled:
     starts = np.cumsum([0] + [len(each) for each in members])  # first stock entry of each run
 
     keys: list[str] = []
-    parts, placements = [], []
+    parts, placements, turned = [], [], []
     for run, each, first in zip(runs, members, starts, strict=False):
         names = ["/" + m.name for m in each]
         keys.extend([label + name for label in run.labels for name in names])
@@ -50,6 +50,7 @@ def assemble(runs: Sequence[Run]) -> Assembled:
         local = compose(np.array([m.placement for m in each]).reshape(-1, 3, 4), grouping.motion[span])
         placed = compose(_moves(run)[:, None], local[None])
         parts.append(np.tile(grouping.part_of[span], len(run.labels)))
+        turned.append(np.tile(grouping.flipped[span], len(run.labels)))
         placements.append(placed.reshape(-1, 3, 4))
     index = dict(zip(keys, range(len(keys)), strict=True))
     if len(index) != len(keys):
@@ -59,10 +60,7 @@ def assemble(runs: Sequence[Run]) -> Assembled:
     types = group_assemblies(trees.templates, grouping)
     assemblies, assembly = trees.place(types.type_of, types.motion, len(keys))
     pieces = Pieces(tuple(keys), np.concatenate(parts), np.concatenate(placements), assembly)
-    flipped = [
-        grouping.flipped[first : first + len(each)] for first, each in zip(starts, members, strict=False)
-    ]
-    joints = _joints(runs, [[m.name for m in each] for each in members], flipped, index)
+    joints = _joints(runs, [[m.name for m in each] for each in members], np.concatenate(turned), index)
     return Assembled(grouping.parts, pieces, types.types, assemblies, joints)
 
 
@@ -154,75 +152,74 @@ class _Trees:
 
 
 def _joints(
-    runs: Sequence[Run],
-    names: Sequence[Sequence[str]],
-    flipped: Sequence[NDArray[np.bool_]],
-    index: dict[str, int],
+    runs: Sequence[Run], names: Sequence[Sequence[str]], flipped: NDArray[np.bool_], index: dict[str, int]
 ) -> tuple[JointRun, ...]:
-    """Resolve the meetings of every run; those of one kind and size become one JointRun."""
-    turned = _turned_keys(runs, names, flipped)
+    """Resolve the meetings of every run; those of one kind and size become one JointRun.
+
+    ``flipped`` tells of all pieces whether their part runs the other way.
+    """
     found: dict[tuple[str, int], list[JointRun]] = {}
     base = 0
-    for run, kit_names, turns in zip(runs, names, flipped, strict=True):
+    for run, kit_names in zip(runs, names, strict=True):
         position = {name: i for i, name in enumerate(kit_names)}
-        n = len(run.labels)
+        alike: dict[tuple[JointKind, tuple[int, ...]], list[Meeting]] = {}
         for meeting in run.kit.meetings:
-            joint = _resolve(run, meeting, base, position, turns, index, turned, len(kit_names))
-            found.setdefault((meeting.kind.name, len(meeting.pieces)), []).append(joint)
-        base += n * len(kit_names)
+            sought = tuple(piece.where for piece in meeting.pieces)
+            alike.setdefault((meeting.kind, sought), []).append(meeting)
+        for (kind, sought), meetings in alike.items():
+            pieces = _resolve(run, meetings, sought, base, position, index)
+            joint = _joint_run(run, kind, meetings, pieces, flipped)
+            found.setdefault((kind.name, len(sought)), []).append(joint)
+        base += len(run.labels) * len(kit_names)
     return tuple(_merged(group) for _, group in sorted(found.items(), key=lambda item: item[0]))
-
-
-def _turned_keys(
-    runs: Sequence[Run], names: Sequence[Sequence[str]], flipped: Sequence[NDArray[np.bool_]]
-) -> set[str]:
-    """Keys of pieces whose part runs the other way: a joint at their start is at the part's end."""
-    return {
-        f"{label}/{name}"
-        for run, kit_names, turns in zip(runs, names, flipped, strict=True)
-        for name, turn in zip(kit_names, turns, strict=True)
-        if turn
-        for label in run.labels
-    }
 
 
 def _resolve(
     run: Run,
-    meeting: Meeting,
+    meetings: Sequence[Meeting],
+    sought: tuple[int, ...],
     base: int,
     position: dict[str, int],
-    turns: NDArray[np.bool_],
     index: dict[str, int],
-    turned: set[str],
-    size: int,
-) -> JointRun:
+) -> NDArray[np.int64]:
+    """The pieces (n, m, k) of m meetings that look for their k pieces in the same places, placed n times.
+
+    Raises:
+        ModelError: when a meeting names a piece that does not exist.
+    """
     n = len(run.labels)
     beside = {FIRST_LINE: run.first_lines, SECOND_LINE: run.second_lines, NEXT_BAY: run.next_bays}
-    columns, ats = [], []
-    for piece in meeting.pieces:
-        if piece.where == HERE:
-            columns.append(base + np.arange(n) * size + position[piece.name])
-            ats.append(np.full(n, _seen(piece.at, bool(turns[position[piece.name]]))))
+    pieces = np.empty((n, len(meetings), len(sought)), np.int64)
+    for column, where in enumerate(sought):
+        named = [meeting.pieces[column].name for meeting in meetings]
+        if where == HERE:
+            places = np.array([position[name] for name in named])
+            pieces[:, :, column] = base + np.arange(n)[:, None] * len(position) + places
             continue
-        keys = [f"{label}/{piece.name}" for label in beside[piece.where]]
-        missing = [key for key in keys if key not in index]
-        if missing or len(keys) != n:
-            raise ModelError(f"a {meeting.kind.word} names {missing[:1] or piece.name}, which does not exist")
-        columns.append(np.array([index[key] for key in keys]))
-        ats.append(np.array([_seen(piece.at, key in turned) for key in keys]))
-    points = np.tile(meeting.point, (n, 1))
-    points[:, 1] += run.offsets
-    return JointRun(
-        meeting.kind,
-        np.stack(columns, axis=1),
-        np.stack(ats, axis=1).astype(np.int8),
-        points,
-        np.full(n, meeting.eccentricity),
-    )
+        labels = beside[where]
+        try:
+            pieces[:, :, column] = [[index[f"{label}/{name}"] for name in named] for label in labels]
+        except (KeyError, ValueError) as missing:
+            raise ModelError(f"a {meetings[0].kind.word} names what does not exist: {missing}") from missing
+    return pieces
 
 
-def _seen(at: At, turned: bool) -> int:
-    return int(at if at == At.ALONG or not turned else 1 - at)
+def _joint_run(
+    run: Run,
+    kind: JointKind,
+    meetings: Sequence[Meeting],
+    pieces: NDArray[np.int64],
+    flipped: NDArray[np.bool_],
+) -> JointRun:
+    """The joints of one kind of a run, row by row."""
+    n, m, k = pieces.shape
+    at = np.array([[piece.at for piece in meeting.pieces] for meeting in meetings], np.int8)
+    # A joint at the start of a piece whose part runs the other way is at the part's end.
+    seen = np.where((at != At.ALONG) & flipped[pieces], 1 - at, at).astype(np.int8)
+    points = np.tile(np.array([meeting.point for meeting in meetings]), (n, 1, 1))
+    points[:, :, 1] += run.offsets[:, None]
+    eccentricity = np.tile([meeting.eccentricity for meeting in meetings], n)
+    return JointRun(kind, pieces.reshape(-1, k), seen.reshape(-1, k), points.reshape(n * m, 3), eccentricity)
 
 
 def _merged(group: list[JointRun]) -> JointRun:

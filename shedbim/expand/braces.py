@@ -12,6 +12,7 @@ from shedbim.expand.clearances import CROSSING_GAP, GUSSET
 from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import Meeting, Meets, Member
 from shedbim.expand.sticks import stick, stop_before
+from shedbim.geometry.placements import cross
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 from shedbim.sections.profiles import Angle, Pipe
@@ -109,7 +110,7 @@ def _crossed_tubes(panel: Panel, steel: _Steel) -> tuple[list[Member], list[Meet
     joints = [Meets(through.name, At.ALONG)]
     for number, end in ((2, panel.corners[2]), (3, panel.corners[3])):
         towards = end.point - middle
-        aside = np.cross(np.cross(line, towards), line)
+        aside = cross(cross(line, towards), line)
         aside = aside / np.linalg.norm(aside)
         clear = (middle + aside * (steel.section.height / 2 + CROSSING_GAP), aside)
         stop = BraceEnd(middle, Meets(through.name, At.ALONG), (clear,))
@@ -129,7 +130,7 @@ def _middle(panel: Panel) -> Array:
     """Where the two diagonals cross (3,)."""
     a, b, c, d = (end.point for end in panel.corners)
     u, v = b - a, d - c
-    w = np.cross(np.cross(u, v), v)
+    w = cross(cross(u, v), v)
     crossing: Array = a + u * float((c - a) @ w) / float(u @ w)
     return crossing
 

@@ -11,6 +11,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from shedbim.expand.kits import HERE, NEXT_BAY, Meeting, Meets, Member
 from shedbim.expand.sticks import along, stick
+from shedbim.geometry.placements import cross
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 from shedbim.sections.profiles import LippedC
@@ -45,7 +46,7 @@ class Course:
     @cached_property
     def forwards(self) -> bool:
         """Whether the bar's own x axis runs with the line."""
-        return bool(np.cross(self.open_to, self.outward) @ self.run > 0)
+        return bool(cross(self.open_to, self.outward) @ self.run > 0)
 
 
 @dataclass(frozen=True)
