@@ -21,7 +21,7 @@ __all__ = ["ChordFace", "LandedWeb", "WebAim", "axes_miss", "fits", "land"]
 
 Array = NDArray[np.float64]
 _ROUNDS = 60
-_SETTLED = 1e-6  # mm
+_SETTLED = 1e-9  # mm: well below the noise that marks are told apart by
 _TOE = 0.01  # mm: toes nearer than asked by less than this are as asked
 #: Sine of the flattest angle of a web to the level and to a chord that can still be cut and welded: 15 degrees.
 _FLATTEST = 0.26
