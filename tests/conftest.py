@@ -55,3 +55,21 @@ def desk(tmp_path_factory):
 
     with started(tmp_path_factory.mktemp("view")) as running:
         yield running
+
+
+@pytest.fixture(scope="module")
+def opened_shed(request, desk):
+    """Give the page of the specimen that a module of browser tests names, opened once for all of them."""
+    from view_pages import page_of  # noqa: PLC0415
+
+    name = request.module.SPECIMEN
+    with desk.opened(page_of(name), f"{request.module.__name__}-{name}") as sight:
+        yield sight
+
+
+@pytest.fixture
+def view(opened_shed):
+    """Give that page as it was opened, and see to it that a test leaves it unharmed."""
+    from view_browser import unharmed  # noqa: PLC0415
+
+    yield from unharmed(opened_shed)

@@ -2,12 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
-
 import cast
 import numpy as np
 import pytest
-from view_browser import Desk, Picture, Sight, unharmed
+from view_browser import Desk, Picture, Sight
 from view_eye import EMPTY, UNSURE, Eye, eye_of, seen, spots, steady
 from view_pages import BLOCKS, assert_card_tells_of, hue_of, page_of, page_text
 
@@ -20,20 +18,13 @@ _NOISE = 6
 _FREE = 350
 
 
-@pytest.fixture(scope="module")
-def opened_shed(desk: Desk) -> Iterator[Sight]:
-    with desk.opened(page_of("lopsided"), "lopsided") as sight:
-        yield sight
-
-
-@pytest.fixture
-def view(opened_shed: Sight) -> Iterator[Sight]:
-    yield from unharmed(opened_shed)
+#: What the fixtures `view` and `shed` show.
+SPECIMEN = "lopsided"
 
 
 @pytest.fixture(scope="module")
 def shed() -> Shed:
-    return cast.shed_of("lopsided")
+    return cast.shed_of(SPECIMEN)
 
 
 def drawn(sight: Sight, picture: Picture) -> np.ndarray:

@@ -2,15 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
-
 import cast
 import numpy as np
 import pytest
 from view_access import CONTRAST, NAMED_ROLES, REFERENCES, REPEATED_IDS, TARGETS, VISIBLE_RING
-from view_browser import Desk, Sight, unharmed
+from view_browser import Sight
 from view_eye import eye_of
-from view_pages import page_of
 
 from shedbim.model.shed import Shed
 
@@ -18,20 +15,13 @@ from shedbim.model.shed import Shed
 _LEAST_CONTRAST = 4.5
 
 
-@pytest.fixture(scope="module")
-def opened_shed(desk: Desk) -> Iterator[Sight]:
-    with desk.opened(page_of("flat"), "flat-access") as sight:
-        yield sight
-
-
-@pytest.fixture
-def view(opened_shed: Sight) -> Iterator[Sight]:
-    yield from unharmed(opened_shed)
+#: What the fixtures `view` and `shed` show.
+SPECIMEN = "flat"
 
 
 @pytest.fixture(scope="module")
 def shed() -> Shed:
-    return cast.shed_of("flat")
+    return cast.shed_of(SPECIMEN)
 
 
 # Words

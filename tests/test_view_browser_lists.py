@@ -3,32 +3,23 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Iterator
 
 import cast
 import numpy as np
 import pytest
-from view_browser import Desk, Sight, unharmed
+from view_browser import Sight
 from view_eye import eye_of, seen, steady
-from view_pages import is_rounded, keys_of, number, page_of, rows_of
+from view_pages import is_rounded, keys_of, number, rows_of
 
 from shedbim.model.shed import Shed
 
-
-@pytest.fixture(scope="module")
-def opened_shed(desk: Desk) -> Iterator[Sight]:
-    with desk.opened(page_of("flat"), "flat") as sight:
-        yield sight
-
-
-@pytest.fixture
-def view(opened_shed: Sight) -> Iterator[Sight]:
-    yield from unharmed(opened_shed)
+#: What the fixtures `view` and `shed` show.
+SPECIMEN = "flat"
 
 
 @pytest.fixture(scope="module")
 def shed() -> Shed:
-    return cast.shed_of("flat")
+    return cast.shed_of(SPECIMEN)
 
 
 def roles_of(shed: Shed) -> Counter[str]:

@@ -3,33 +3,24 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Iterator
 
 import cast
 import numpy as np
 import pytest
-from view_browser import Desk, Sight, unharmed
+from view_browser import Desk, Sight
 from view_eye import eye_of, seen, steady
-from view_pages import BLOCKS, hue_of, keys_of, number, page_of, page_text
+from view_pages import BLOCKS, hue_of, keys_of, number, page_text
 
 from shedbim.model.shed import Shed
 from shedbim.writers.view import ShownChange, ShownFinding
 
-
-@pytest.fixture(scope="module")
-def opened_shed(desk: Desk) -> Iterator[Sight]:
-    with desk.opened(page_of("flat"), "flat") as sight:
-        yield sight
-
-
-@pytest.fixture
-def view(opened_shed: Sight) -> Iterator[Sight]:
-    yield from unharmed(opened_shed)
+#: What the fixtures `view` and `shed` show.
+SPECIMEN = "flat"
 
 
 @pytest.fixture(scope="module")
 def shed() -> Shed:
-    return cast.shed_of("flat")
+    return cast.shed_of(SPECIMEN)
 
 
 # Colours and themes
