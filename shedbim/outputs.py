@@ -14,10 +14,22 @@ if TYPE_CHECKING:
     from shedbim.model.shed import Shed
     from shedbim.writers.imprint import Imprint
 
-__all__ = ["LABEL_NAMES", "OUTPUTS", "PICTURE_ENDINGS", "SCHEMAS", "VIEW_NAMES", "Output", "chosen"]
+__all__ = [
+    "LABEL_NAMES",
+    "LEVEL_NAMES",
+    "OUTPUTS",
+    "PICTURE_ENDINGS",
+    "SCHEMAS",
+    "VIEW_NAMES",
+    "Output",
+    "chosen",
+]
 
 #: Schemas of the model file, the default first.
 SCHEMAS = ("IFC4", "IFC4X3_ADD2", "IFC2X3")
+
+#: Levels of detail that models and pictures show, the default first; a test holds them against ``model.levels``.
+LEVEL_NAMES = ("coordination", "fabrication", "outline")
 
 #: Views that pictures are drawn of; a test holds them against the table of views, which needs numpy.
 VIEW_NAMES = ("isometric", "back", "front", "side", "plan", "frame", "bay", "piece", "place")
@@ -37,6 +49,7 @@ class Output:
         file: its file name.
         meaning: what is in it.
         write: writes its bytes to a binary sink.
+        drawn: whether it shows the shed, at the level of detail asked for; lists tell of everything.
     """
 
     name: str
@@ -44,6 +57,7 @@ class Output:
     file: str
     meaning: str
     write: Callable[[Shed, Imprint, BinaryIO], None]
+    drawn: bool = False
 
 
 def _model(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
@@ -58,25 +72,18 @@ def _mesh(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
     write(shed, sink, imprint)
 
 
-def _members(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
-    from shedbim.writers.schedules.csv_text import csv_text
-    from shedbim.writers.schedules.tables import members
+def _schedule(module: str, name: str) -> Callable[[Shed, Imprint, BinaryIO], None]:
+    """Give the writer of one schedule as CSV, by the module and function that make its table."""
 
-    sink.write(csv_text(members(shed)).encode())
+    def write(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+        from importlib import import_module
 
+        from shedbim.writers.schedules.csv_text import csv_text
 
-def _assemblies(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
-    from shedbim.writers.schedules.csv_text import csv_text
-    from shedbim.writers.schedules.tables import assemblies
+        table = getattr(import_module(f"shedbim.writers.schedules.{module}"), name)(shed)
+        sink.write(csv_text(table).encode())
 
-    sink.write(csv_text(assemblies(shed)).encode())
-
-
-def _sections(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
-    from shedbim.writers.schedules.csv_text import csv_text
-    from shedbim.writers.schedules.tables import totals
-
-    sink.write(csv_text(totals(shed)).encode())
+    return write
 
 
 def _workbook(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
@@ -98,16 +105,52 @@ def _view(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
 
 
 OUTPUTS: tuple[Output, ...] = (
-    Output("model", "model", "model.ifc", "the building model", _model),
-    Output("mesh", "mesh", "model.glb", "the model as meshes, for any 3D viewer", _mesh),
-    Output("members", "schedules", "members.csv", "members by mark", _members),
-    Output("assemblies", "schedules", "assemblies.csv", "assemblies by mark", _assemblies),
+    Output("model", "model", "model.ifc", "the building model", _model, drawn=True),
+    Output("mesh", "mesh", "model.glb", "the model as meshes, for any 3D viewer", _mesh, drawn=True),
+    Output("members", "schedules", "members.csv", "members by mark", _schedule("tables", "members")),
     Output(
-        "sections", "schedules", "sections.csv", "totals by section, by role and of everything", _sections
+        "plates", "schedules", "plates.csv", "plates and fittings by mark", _schedule("fittings", "fittings")
+    ),
+    Output(
+        "bolts", "schedules", "bolts.csv", "bolts, nuts and washers to buy", _schedule("fasteners", "bolts")
+    ),
+    Output(
+        "anchors",
+        "schedules",
+        "anchors.csv",
+        "anchor bolts and their places",
+        _schedule("fasteners", "anchors"),
+    ),
+    Output("welds", "schedules", "welds.csv", "welds by what they join", _schedule("fasteners", "welds")),
+    Output("holes", "schedules", "holes.csv", "holes by mark and size", _schedule("fittings", "holes")),
+    Output(
+        "assemblies", "schedules", "assemblies.csv", "assemblies by mark", _schedule("tables", "assemblies")
+    ),
+    Output(
+        "part-lists",
+        "schedules",
+        "part-lists.csv",
+        "what each shop assembly is made of",
+        _schedule("fittings", "part_lists"),
+    ),
+    Output(
+        "finishes", "schedules", "finishes.csv", "what is to be coated", _schedule("fittings", "finishes")
+    ),
+    Output(
+        "sections",
+        "schedules",
+        "sections.csv",
+        "totals by section, by role and of everything",
+        _schedule("tables", "totals"),
     ),
     Output("workbook", "schedules", "schedule.xlsx", "all schedules in one workbook that prints", _workbook),
     Output(
-        "view", "view", "view.html", "the building in three dimensions, for a browser, as one file", _view
+        "view",
+        "view",
+        "view.html",
+        "the building in three dimensions, for a browser, as one file",
+        _view,
+        drawn=True,
     ),
     Output("summary", "summary", "summary.json", "counts, masses, defaults and cautions", _summary),
 )

@@ -14,8 +14,9 @@ from shedbim.description.reading import placed
 from shedbim.description.source import printable, read_source
 from shedbim.errors import DescriptionError, OutputError
 from shedbim.expand import expand
+from shedbim.model.levels import at_level
 from shedbim.model.shed import Shed
-from shedbim.outputs import SCHEMAS, chosen
+from shedbim.outputs import LEVEL_NAMES, SCHEMAS, chosen
 from shedbim.saving import save
 from shedbim.writers.imprint import UNDATED, Imprint
 
@@ -61,6 +62,7 @@ def build(
     out: Path | str | None = None,
     *,
     schema: str = SCHEMAS[0],
+    level: str = LEVEL_NAMES[0],
     outputs: Sequence[str] = (),
     timestamp: datetime = UNDATED,
     progress: Progress | None = None,
@@ -71,23 +73,26 @@ def build(
         path: the description.
         out: folder of the outputs, made when it is not there; ``outputs/<file stem>`` where not given.
         schema: of the model file, one of ``SCHEMAS``.
+        level: how much the models show, one of ``LEVEL_NAMES``; lists tell of everything.
         outputs: names or groups of outputs; all where not given.
         timestamp: written into the outputs; a fixed one where not given.
         progress: called as the work goes on.
 
     Raises:
         DescriptionError: when the description is refused, with all its faults.
-        OutputError: when a name of an output or a schema is unknown, or the outputs cannot be written.
+        OutputError: when a name of an output, a schema or a level is unknown, or the outputs cannot be written.
         ModelError: when the program is at fault.
     """
     total = 2 + len(chosen(outputs))
     if schema not in SCHEMAS:
         raise OutputError(f"no schema {schema!r}; there are: {', '.join(SCHEMAS)}")
+    if level not in LEVEL_NAMES:
+        raise OutputError(f"no level of detail {level!r}; there are: {', '.join(LEVEL_NAMES)}")
     path = Path(path)
     folder = Path("outputs") / path.stem if out is None else Path(out)
     tell = progress or _silent
     description, shed, text = read_and_expand(path, lambda name, done: tell(name, done, total))
-    imprint = Imprint(timestamp, schema, digest(text))
+    imprint = Imprint(timestamp, schema, digest(text), level=level)
     files = write_outputs(
         shed,
         folder,
@@ -134,14 +139,15 @@ def write_outputs(
     Args:
         folder: made when it is not there.
         outputs: names or groups of outputs; all where not given.
-        imprint: schema, time stamp and digest that the outputs state.
+        imprint: schema, level of detail, time stamp and digest that the outputs state.
         progress: called as ``saving.save`` calls it.
 
     Raises:
         OutputError: when a name is unknown, or a file cannot be written; what stood there is untouched.
     """
     rows = chosen(outputs)
-    writers = {row.file: partial(row.write, shed, imprint) for row in rows}
+    drawn = at_level(shed, imprint.level) if any(row.drawn for row in rows) else shed
+    writers = {row.file: partial(row.write, drawn if row.drawn else shed, imprint) for row in rows}
     paths = save(Path(folder), writers, progress)
     return {row.name: path for row, path in zip(rows, paths, strict=True)}
 

@@ -1,4 +1,4 @@
-"""Prints what the program costs at about 1,000, 10,000 and 100,000 pieces; run it by hand.
+"""Prints what the program costs at about 4,000, 40,000 and 350,000 pieces, bolts and plates included; run it by hand.
 
     python tests/benchmark.py             stages, exponents, memory, bytes, ratio to one entity at a time
     python tests/benchmark.py --receiver  besides: what opening and meshing the model costs a receiver
@@ -26,7 +26,8 @@ from typing import Any
 import numpy as np
 
 from shedbim.description import read_text
-from shedbim.expand import assembling, expand
+from shedbim.expand import assembling, expand, shop
+from shedbim.model.levels import LEVELS, at_level
 from shedbim.model.shed import Shed
 from shedbim.writers.glb import write as write_meshes
 from shedbim.writers.ifc import write
@@ -38,7 +39,7 @@ from shedbim.writers.schedules.workbook import workbook_bytes
 _PRESET = Path(__file__).parent.parent / "presets" / "seed-store.yaml"
 _BYTECODE = Path(tempfile.gettempdir()) / "shedbim-benchmark-bytecode"
 #: Spans and inner bays that come to about the number of pieces.
-_SIZES = {1_000: (1, 8), 10_000: (2, 52), 100_000: (6, 205)}
+_SIZES = {4_000: (1, 8), 40_000: (2, 52), 350_000: (6, 205)}
 
 
 def description_text(spans: int, bays: int) -> str:
@@ -65,11 +66,11 @@ def timed(work: Callable[[], Any], runs: int) -> tuple[float, Any]:
 
 
 class Watched:
-    """Adds up the seconds spent in a function of a module while it is watched."""
+    """Adds up the seconds spent in functions, (module, name) each, while they are watched."""
 
-    def __init__(self, module: Any, *names: str) -> None:
+    def __init__(self, *functions: tuple[Any, str]) -> None:
         self.seconds = 0.0
-        for name in names:
+        for module, name in functions:
             setattr(module, name, self._watch(getattr(module, name)))
 
     def _watch(self, function: Callable[..., Any]) -> Callable[..., Any]:
@@ -239,13 +240,23 @@ def receiver(size: int) -> None:
         )
 
 
+def levels() -> None:
+    """Print what each level of detail of the smallest building costs: expansion and model file."""
+    description = read_text(description_text(*_SIZES[min(_SIZES)]))
+    costs = {}
+    for level in LEVELS:
+        costs[level], data = timed(lambda level=level: model_bytes(at_level(expand(description), level)), 7)
+        print(f"  {level:14} {costs[level]:6.2f} s  {len(data) / 1e6:6.2f} MB")
+    print(f"fabrication / coordination: {costs['fabrication'] / costs['coordination']:.2f}")
+
+
 def main() -> None:
     """Print the tables."""
     arguments = argparse.ArgumentParser(description=__doc__)
     arguments.add_argument("--receiver", action="store_true")
-    arguments.add_argument("--largest", type=int, default=100_000, choices=list(_SIZES))
+    arguments.add_argument("--largest", type=int, default=350_000, choices=list(_SIZES))
     chosen = arguments.parse_args()
-    watched = Watched(assembling, "group_parts", "group_assemblies")
+    watched = Watched((assembling, "group_parts"), (shop, "group_assemblies"))
     rows = [stages(size, watched) for size in _SIZES if size <= chosen.largest]
     for name in rows[0]:
         values = "".join(f"{row[name]:14.4g}" for row in rows)
@@ -268,8 +279,9 @@ def main() -> None:
     _run("-c", "import numpy, ifcopenshell")
     imports, _ = timed(lambda: _run("-c", "import numpy, ifcopenshell"), 5)
     print(
-        f"whole build of 1,000 pieces / importing numpy and ifcopenshell: {rows[0]['whole process'] / imports:.2f}"
+        f"whole build of the smallest / importing numpy and ifcopenshell: {rows[0]['whole process'] / imports:.2f}"
     )
+    levels()
     if chosen.receiver:
         receiver(chosen.largest)
 

@@ -14,10 +14,22 @@ from ruamel.yaml import YAML
 
 from shedbim.description import Description, read_text
 from shedbim.expand import expand
+from shedbim.model.levels import at_level
 from shedbim.model.shed import Shed
 from shedbim.writers.ifc import write
 
-__all__ = ["CAST", "PRESETS", "TINY", "changed", "described", "model_bytes", "shed_of", "text_of"]
+__all__ = [
+    "CAST",
+    "PRESETS",
+    "TINY",
+    "changed",
+    "described",
+    "members",
+    "members_of",
+    "model_bytes",
+    "shed_of",
+    "text_of",
+]
 
 _FOLDER = Path(__file__).parents[1] / "presets"
 
@@ -94,7 +106,7 @@ frames:
   columns: {section: CHS 244.5x10}
   roof: {system: rafter, section: IPE 330}
   gables: {system: rafter, rafter: IPE 220, posts: HEA 180, post_spacing: 3.9 m}
-purlins: {section: C 175x65x18x2.0, spacing: 1.45 m, gap: 8 mm, lift: 14 mm}
+purlins: {section: C 175x65x18x2.0, spacing: 1.4 m, eaves_offset: 70 mm, gap: 8 mm, lift: 14 mm}
 rails: {section: C 150x65x18x1.6, spacing: 1.3 m, gap: 4 mm, lift: 8 mm, base_offset: 0.5 m}
 bracing:
   bays: [2, last]
@@ -150,13 +162,24 @@ def described(name: str) -> Description:
 
 @cache
 def shed_of(name: str) -> Shed:
-    """Give the building of a specimen."""
+    """Give the building of a specimen, its connections made."""
     return expand(described(name))
+
+
+def members(description: Description) -> Shed:
+    """Give the members alone of the building that a description means, as their joints leave them."""
+    return at_level(expand(description), "outline")
+
+
+@cache
+def members_of(name: str) -> Shed:
+    """Give the members alone of a specimen, as their joints leave them."""
+    return at_level(shed_of(name), "outline")
 
 
 @cache
 def model_bytes(name: str, schema: str = "IFC4") -> bytes:
-    """Give the model file of a specimen as it is written."""
+    """Give the model file of a specimen as it is written with every bolt and hole."""
     sink = BytesIO()
     write(shed_of(name), sink, schema=schema)
     return sink.getvalue()

@@ -24,7 +24,7 @@ settings.load_profile("steady")
 
 def pytest_sessionfinish() -> None:
     """Let go of the solids that were kept: their library complains of those alive when Python ends."""
-    for name, keepers in (("invariants", ("bodies",)), ("built_models", ("model", "opened"))):
+    for name, keepers in (("invariants", ("bodies", "coarse_bodies")), ("built_models", ("model", "opened"))):
         module = sys.modules.get(name)
         for keeper in keepers if module else ():
             getattr(module, keeper).cache_clear()

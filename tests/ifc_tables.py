@@ -9,6 +9,7 @@ from pathlib import Path
 import ifcopenshell.ifcopenshell_wrapper as wrapper
 
 import shedbim.writers.ifc
+from shedbim.writers.ifc.classes import BARS, CLASSES
 from shedbim.writers.ifc.schema import SCHEMAS
 
 FOLDER = Path(shedbim.writers.ifc.__file__).parent
@@ -18,8 +19,8 @@ def entities_used() -> list[str]:
     """Give the names of entities that the writer's sources hold, types of elements included."""
     source = "".join(path.read_text(encoding="utf-8") for path in sorted(FOLDER.glob("*.py")))
     names = set(re.findall(r'"(Ifc[A-Za-z0-9]+)"', source))
-    names |= {f"IfcQuantity{kind}" for kind in ("Length", "Area", "Volume", "Weight")}
-    names |= {name + "Type" for name in ("IfcColumn", "IfcMember")}
+    names |= {f"IfcQuantity{kind}" for kind in ("Length", "Area", "Volume", "Weight", "Count")}
+    names |= {row.entity + "Type" for row in (*CLASSES.values(), *BARS.values())}
     return sorted(names)
 
 

@@ -1,6 +1,7 @@
 """What holds in every building: each function gives what is wrong with a Shed, nothing where all is well.
 
-A second opinion: only the finished tables of the Shed are looked at, and the description for its sections.
+A second opinion: only the finished tables of the Shed are looked at, and the description for its sections. The
+rules take whole buildings or their members alone; what asks for fittings says so.
 """
 
 from __future__ import annotations
@@ -17,10 +18,14 @@ from scipy.spatial import cKDTree
 from shedbim.description.models import Description
 from shedbim.geometry.placements import apply, compose, inverse
 from shedbim.model.bars import Bar
+from shedbim.model.bolt_groups import BoltGroup
 from shedbim.model.joints import At, JointKind, JointRun
-from shedbim.model.roles import Role
+from shedbim.model.plates import Plate
+from shedbim.model.roles import Role, Sort
+from shedbim.model.shapes import Shape
 from shedbim.model.shed import Shed
 from shedbim.model.solids import solid
+from shedbim.sections.profiles import IShape
 from shedbim.sections.section import STEEL_DENSITY
 from shedbim.tolerance import SAME_LENGTH, SAME_PLACE
 
@@ -31,6 +36,7 @@ __all__ = [
     "bodies",
     "broken",
     "carriers_are_near",
+    "coarse_bodies",
     "eccentricities_are_true",
     "equal_assemblies_are_equal",
     "joints_are_at_ends",
@@ -47,21 +53,33 @@ _ROOF_STEEL = (Role.RAFTER, Role.GABLE_RAFTER, Role.TOP_CHORD)
 
 
 class Bars:
-    """The pieces of a shed as columns of n rows: where their axes begin and end, their sizes, their roles."""
+    """The pieces of a shed as columns of n rows: where their axes begin and end, their sizes, their roles.
+
+    Rows of plates and fasteners are not numbers.
+    """
 
     def __init__(self, shed: Shed) -> None:
         part, placement = shed.pieces.part, shed.pieces.placement
-        axis = np.array([p.bar.axis for p in shed.parts])[part]
-        bounds = np.array([p.bar.section.outline.bounds for p in shed.parts])[part]
-        length = np.array([p.bar.length for p in shed.parts])[part]
+        nothing = (np.nan,) * 9
+        sizes = np.array(
+            [
+                (
+                    *p.shape.axis, *p.shape.section.outline.bounds,
+                    p.shape.length, p.shape.section.height, p.shape.section.width,
+                )
+                if isinstance(p.shape, Bar)
+                else nothing
+                for p in shed.parts
+            ]
+        )[part]  # fmt: skip
+        axis, bounds, length = sizes[:, :2], sizes[:, 2:6], sizes[:, 6]
         self.x = placement[:, :, 0]
         #: (n, 2, 3): the axis where it enters and where it leaves the steel.
         self.ends = placement[:, None, :, 3] + axis[:, :, None] * self.x[:, None, :]
         #: (n, 3) each: the corners of the box that a bar fills in its own frame.
         self.low = np.column_stack([np.zeros(len(part)), bounds[:, 0], bounds[:, 1]])
         self.high = np.column_stack([length, bounds[:, 2], bounds[:, 3]])
-        self.height = np.array([p.bar.section.height for p in shed.parts])[part]
-        self.width = np.array([p.bar.section.width for p in shed.parts])[part]
+        self.height, self.width = sizes[:, 7], sizes[:, 8]
         self.role = [shed.parts[i].role for i in part.tolist()]
         #: Greatest height of what purlins stand on, besides columns, mm.
         self.roof_steel = max(
@@ -79,10 +97,24 @@ class Bars:
 
 @lru_cache(maxsize=2)
 def bodies(shed: Shed) -> list[Manifold]:
-    """Give the solid of each part; chords of arcs take half a thousandth off a round bar at most."""
-    return [
-        solid(part.bar, 2e-4 * min(part.bar.section.width, part.bar.section.height)) for part in shed.parts
-    ]
+    """Give the solid of each part as it is drawn; chords of arcs take half a thousandth off a round bar at most."""
+    return [solid(part.body, _chord_error(part.body)) for part in shed.parts]
+
+
+@lru_cache(maxsize=2)
+def coarse_bodies(shed: Shed) -> list[Manifold]:
+    """Give the solid of each part with chords up to 0.1 mm off its arcs, inside bars and bolts and within holes.
+
+    Enough to tell whether solids overlap by a cubic centimetre, at a tenth of the triangles.
+    """
+    return [solid(part.shape, 0.1) for part in shed.parts]
+
+
+def _chord_error(shape: Shape) -> float:
+    """How far chords may leave the arcs of a shape, mm."""
+    if isinstance(shape, Bar):
+        return 2e-4 * min(shape.section.width, shape.section.height)
+    return 0.01 if isinstance(shape, Plate) else 2e-4 * shape.fastener.diameter
 
 
 def keys_are_unique(shed: Shed, _: Description) -> Iterator[str]:
@@ -117,10 +149,12 @@ def tables_are_sound(shed: Shed, _: Description) -> Iterator[str]:
 def bars_end_in_joints(shed: Shed, _: Description) -> Iterator[str]:
     """Each end of each piece is in exactly one joint, or declared free exactly once."""
     taken = np.zeros((len(shed.pieces), 2), int)
+    met = np.array([part.role.sort is Sort.MEMBER for part in shed.parts])[shed.pieces.part]
     for run in shed.joints:
+        met[run.pieces] = True  # stays are fittings that meet like members
         for end in (At.START, At.END):
             np.add.at(taken[:, end], run.pieces[run.at == end], 1)
-    for piece, end in np.argwhere(taken != 1).tolist():
+    for piece, end in np.argwhere((taken != 1) & met[:, None]).tolist():
         yield f"{shed.pieces.keys[piece]}: {('start', 'end')[end]} in {taken[piece, end]} joints"
 
 
@@ -128,7 +162,7 @@ def joints_are_at_ends(shed: Shed, description: Description) -> Iterator[str]:
     """The work point of a joint at an end of a piece lies near that end of it."""
     bars = Bars(shed)
     for run in shed.joints:
-        reach = _end_reach(run, bars, description)
+        reach = _end_reach(shed, run, bars, description)
         for column in range(run.pieces.shape[1]):
             pieces, at = run.pieces[:, column], run.at[:, column]
             rows = np.flatnonzero(at != At.ALONG)
@@ -138,43 +172,78 @@ def joints_are_at_ends(shed: Shed, description: Description) -> Iterator[str]:
                 yield f"{run.kind.word} of {key}: {far:.1f} mm from its end, at most {reach[row]:.1f}"
 
 
-def _end_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarray:
+#: How far the ends of tubes stand back for the fin they are bolted by: two or three bolts in a row with their end
+#: distances, M20 at most 35 + 2 x 70 + 35, a cap of 10 and a gap of 10 mm before the fin's neighbour.
+_FIN = 235.0
+
+
+def _end_reach(shed: Shed, run: JointRun, bars: Bars, description: Description) -> np.ndarray:
     """How far an end may lie from the work point of each joint of a run (m,), mm."""
     first = run.pieces[:, 0]
-    columns = description.frames.columns.section
+    columns, connections = description.frames.columns.section, description.connections
     purlins, rails = description.purlins, description.rails
     plain = {
-        # The axis ends at the work point itself.
-        JointKind.PINNED_BASE: 0.0,
-        JointKind.FIXED_BASE: 0.0,
-        JointKind.POST_BASE: 0.0,
+        # The axis ends at the work point itself, or on the plate below it.
+        JointKind.PINNED_BASE: _thickness(shed, run, Role.BASE_PLATE),
+        JointKind.FIXED_BASE: _thickness(shed, run, Role.BASE_PLATE),
+        JointKind.POST_BASE: _thickness(shed, run, Role.BASE_PLATE),
         JointKind.CHORD_COLUMN: 0.0,
         JointKind.CHORD_RIDGE: 0.0,
-        JointKind.SAG_BAR_END: 0.0,
+        # A bar runs on beyond the web by a washer, a nut and a tip: no more than three diameters.
+        JointKind.SAG_BAR_END: 3.0 * max(purlins.sag_bar.width, rails.sag_bar.width),
         JointKind.FREE: 0.0,
-        # A post stands off the frame's plane by half the frame at most.
-        JointKind.POST_HEAD: max(columns.width, columns.height, float(bars.width.max())) / 2,
+        JointKind.FLANGE_STAY: 0.0,
+        # The cap lies along the roof, a column is upright.
+        JointKind.COLUMN_CAP: _thickness(shed, run, Role.CAP_PLATE) / np.cos(_steepest(description)),
+        # A post stands off the frame's plane by half the frame at most; a tube has a cap.
+        JointKind.POST_HEAD: _thickness(shed, run, Role.CAP_PLATE)
+        + max(columns.width, columns.height, float(np.nanmax(bars.width))) / 2,
         # Half the gap; at a gable a purlin runs on past the frame, at a corner a rail to the column's edge.
         JointKind.PURLIN_CLEAT: purlins.gap / 2,
         JointKind.RAIL_CLEAT: max(rails.gap, columns.width, columns.height) / 2,
+        # An end plate on either side of the work point.
+        JointKind.CHORD_SPLICE: connections.splices.thickness,
     }
     if run.kind in plain:
         return np.full(len(run.points), plain[run.kind])
     last = run.pieces[:, -1]
-    if run.kind is JointKind.RAFTER_COLUMN:  # half the column and a 20 mm end plate, along the slope
-        return (columns.height / 2 + 20.0) / np.abs(bars.x[last, 0])
+    if run.kind is JointKind.RAFTER_COLUMN:  # half the column and what is between, along the slope
+        return (columns.height / 2 + _end_gap(description)) / np.abs(bars.x[last, 0])
     if run.kind is JointKind.APEX:
-        # A 20 mm end plate, along the slope; axes of unequal slopes cross the ridge at unequal levels.
+        # An end plate, along the slope; axes of unequal slopes cross the ridge at unequal levels.
         slopes = 1 / np.abs(bars.x[run.pieces, 0])
-        return 20.0 * slopes.max(axis=1) + bars.roof_steel * np.ptp(slopes, axis=1)
-    if run.kind in (JointKind.STRUT_END, JointKind.TIE_END):  # half the steel at the line and a 10 mm gap
-        return bars.width[first] / 2 + 10.0
-    if run.kind is JointKind.NODE:
+        return connections.apex.thickness * slopes.max(axis=1) + bars.roof_steel * np.ptp(slopes, axis=1)
+    if run.kind in (JointKind.STRUT_END, JointKind.TIE_END):  # half the steel at the line, then the fin
+        return bars.width[first] / 2 + _FIN
+    if run.kind in (JointKind.NODE, JointKind.WEB_SPLICE):
         # Half the chord, and past what else lands here, all along the flattest web.
         webs = run.pieces[:, 1:]
         sine = np.linalg.norm(np.cross(bars.x[webs], bars.x[first][:, None]), axis=2).min(axis=1)
-        return (bars.height[first] / 2 + bars.height[webs].sum(axis=1)) / sine
+        fin = _FIN if run.kind is JointKind.WEB_SPLICE else 0.0
+        return (bars.height[first] / 2 + bars.height[webs].sum(axis=1)) / sine + fin
     return _brace_reach(run, bars, description)
+
+
+def _thickness(shed: Shed, run: JointRun, role: Role) -> float:
+    """The greatest thickness of the plates of a role that the joints of a run add, mm; 0 for none."""
+    parts = np.unique(shed.pieces.part[run.fittings]).tolist() if run.fittings.size else []
+    return max((shed.parts[i].shape.box[1][2] for i in parts if shed.parts[i].role is role), default=0.0)
+
+
+def _steepest(description: Description) -> float:
+    """The pitch of the steepest slope of the roof, rad."""
+    building = description.building
+    return max(abs(slope.pitch) for slope in building.roof.slopes(building.spans))
+
+
+def _end_gap(description: Description) -> float:
+    """From a column's face to the end of what is bolted to it, mm: an end plate; at tubes a bracket too."""
+    connections = description.connections
+    trussed = description.frames.roof.system == "truss"
+    plate = connections.chords.thickness if trussed else connections.rafters.thickness
+    if isinstance(description.frames.columns.section.profile, IShape):
+        return plate
+    return plate + connections.brackets.thickness + connections.brackets.stand_off
 
 
 def _brace_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarray:
@@ -191,10 +260,10 @@ def _brace_reach(run: JointRun, bars: Bars, description: Description) -> np.ndar
         strut = max(strut, bracing.walls.section.width + 5.0)
         lengthwise, across = np.abs(brace[:, 1]), np.hypot(brace[:, 0], brace[:, 2])
         beside = np.maximum(bars.width[first], columns.width) / 2 + room
-        return np.maximum(beside / lengthwise, (strut + room) / across) + off_plane
+        return np.maximum(beside / lengthwise, (strut + room) / across) + off_plane + _FIN
     if run.kind is JointKind.BRACE_CROSSING:  # half the tube that passes, along the one that stops
         sine = np.linalg.norm(np.cross(bars.x[first], brace), axis=1)
-        return room / sine
+        return room / sine + _FIN
     raise AssertionError(f"no bound for {run.kind}")
 
 
@@ -207,6 +276,11 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
     stub = _valley_stub(bars, description)
     is_column = np.array([role is Role.COLUMN for role in bars.role])
     roof_steel = np.array([role in _ROOF_STEEL for role in bars.role])
+    # A column ends below the plate on its head.
+    cap = max(
+        (_thickness(shed, run, Role.CAP_PLATE) for run in shed.joints if run.kind is JointKind.COLUMN_CAP),
+        default=0.0,
+    ) / np.cos(_steepest(description))
     # Rafters end 20 mm short of a ridge, measured level.
     ridge = 20.0
     reach = {
@@ -215,14 +289,17 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
         # The work point lies on the axis of the purlin or rail, which is lifted off its carrier.
         # Over the 20 mm end plate of a rafter the cleat is on the column beside it.
         JointKind.PURLIN_CLEAT: float(np.hypot(purlins.lift + purlins.section.height / 2, 20.0)),
+        # A stay lies beside the web of its purlin.
+        JointKind.FLANGE_STAY: description.connections.stays.section.width / 2,
         # Where the roof steel is wider than a corner column, rails stand off the column by as much more.
         JointKind.RAIL_CLEAT: rails.lift
         + rails.section.height / 2
         + max(0.0, (max(bars.width[roof_steel], default=0.0) - columns.width) / 2),
-        # The carrier ends an end plate of 20 mm away (a valley column is lower by a stub).
-        JointKind.CHORD_COLUMN: 20.0 + stub,
-        # It is above the head of a post by a gap of 25 mm; at a ridge also beside it.
-        JointKind.POST_HEAD: float(np.hypot(25.0, ridge)),
+        # The carrier ends an end plate away, or a bracket (a valley column is lower by a stub).
+        JointKind.CHORD_COLUMN: _end_gap(description) + stub,
+        # It is above the head of a post by a gap of 25 mm, or by a hanger that is bolted to a fin on the cap
+        # (end distances and slots of M16: 105 mm more); at a ridge also beside it.
+        JointKind.POST_HEAD: float(np.hypot(130.0, ridge)) / np.cos(_steepest(description)),
         # Angles stand on either side of the gusset's plane.
         JointKind.BRACE_CROSSING: off_plane,
     }
@@ -233,7 +310,7 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
             away = bars.outside(pieces[rows], run.points[rows])
             bound = np.full(len(rows), reach.get(run.kind, 0.0))
             if run.kind is JointKind.PURLIN_CLEAT:
-                bound[is_column[pieces[rows]]] += stub
+                bound[is_column[pieces[rows]]] += stub + cap
             for row in np.flatnonzero(away > bound + _SLACK):
                 key = shed.pieces.keys[pieces[rows[row]]]
                 yield f"{run.kind.word} on {key}: {away[row]:.1f} mm away from it, at most {bound[row]:.1f}"
@@ -257,29 +334,41 @@ def masses_add_up(shed: Shed, _: Description) -> Iterator[str]:
     """A part weighs what its solid weighs, and a shed what its pieces weigh."""
     for part, body in zip(shed.parts, bodies(shed), strict=True):
         meshed = body.volume() * STEEL_DENSITY
-        if abs(meshed / part.bar.mass - 1) > 1e-3:
-            yield f"{part.mark}: {part.bar.mass:.3f} kg, its solid {meshed:.3f} kg"
-    total = sum(shed.parts[i].bar.mass for i in shed.pieces.part.tolist())
+        if abs(meshed / part.body.mass - 1) > 1e-3:
+            yield f"{part.mark}: {part.body.mass:.3f} kg, its solid {meshed:.3f} kg"
+    total = sum(shed.parts[i].shape.mass for i in shed.pieces.part.tolist())
     if abs(total / shed.mass - 1) > 1e-9:
         yield f"the pieces weigh {total:.1f} kg, the shed {shed.mass:.1f} kg"
 
 
 def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
-    """Assemblies of one type hold the same parts, each corner of their steel in the same place."""
+    """Assemblies of one type hold the same parts, each corner and hole of their steel in the same place.
+
+    What stands in an assembly inside another is in the outer one too.
+    """
     groups, pieces = shed.assemblies, shed.pieces
     members: list[list[int]] = [[] for _ in groups.keys]
+    inner: list[list[int]] = [[] for _ in groups.keys]
     for piece, group in enumerate(pieces.assembly.tolist()):
         if group >= 0:
             members[group].append(piece)
+    for group in range(len(groups) - 1, -1, -1):  # parents come first
+        above = int(groups.parent[group])
+        if above >= 0:
+            members[above].extend(members[group])
+            inner[above].append(int(groups.type[group]))
     inside = np.unique(pieces.part[pieces.assembly >= 0]).tolist()
-    corners = {i: _corners(shed.parts[i].bar) for i in inside}
+    corners = {i: _corners(shed.parts[i].shape) for i in inside}
     seen: dict[int, list[tuple[np.ndarray, np.ndarray]]] = {}
     clouds: dict[int, cKDTree] = {}
+    held: dict[int, list[int]] = {}
     for group, kind in enumerate(groups.type.tolist()):
         parts = pieces.part[members[group]]
         back = inverse(groups.placement[group])
         here = compose(back, pieces.placement[members[group]])
         known = seen.setdefault(kind, [])
+        if held.setdefault(kind, sorted(inner[group])) != sorted(inner[group]):
+            yield f"{groups.keys[group]} holds other assemblies than its like"
         if any(np.array_equal(p, parts) and np.abs(h - here).max(initial=0.0) < 1e-6 for p, h in known):
             continue
         known.append((parts, here))
@@ -301,12 +390,20 @@ def equal_assemblies_are_equal(shed: Shed, _: Description) -> Iterator[str]:
 _CORNERS = 4.0
 
 
-def _corners(bar: Bar) -> np.ndarray:
-    """The corners at both ends of a bar (n, 3), mm."""
-    points = bar.section.outline.outer.polygon(0.05)
-    first, last = bar.axis
-    ends = (first + bar.start.offsets(points, at_end=False), last + bar.end.offsets(points, at_end=True))
-    return np.concatenate([np.column_stack([x, points]) for x in ends])
+def _corners(shape: Shape) -> np.ndarray:
+    """The corners and the middles of the holes of a shape (n, 3), mm; of fasteners the two ends of each axis."""
+    if isinstance(shape, BoltGroup):
+        ends = (min(d.start for d in shape.fastener.stack), max(d.end for d in shape.fastener.stack))
+        return np.array([(x, y, z) for x, y in shape.points for z in ends])
+    drilled = np.array([hole.centre for hole in shape.holes]).reshape(-1, 3)
+    if isinstance(shape, Plate):
+        outline = np.array(shape.corners)
+        faces = [np.column_stack([outline, np.full(len(outline), z)]) for z in (0.0, shape.thickness)]
+        return np.concatenate([*faces, drilled])
+    points = shape.section.outline.outer.polygon(0.05)
+    first, last = shape.axis
+    sawn = (first + shape.start.offsets(points, at_end=False), last + shape.end.offsets(points, at_end=True))
+    return np.concatenate([*(np.column_stack([x, points]) for x in sawn), drilled])
 
 
 def eccentricities_are_true(shed: Shed, _: Description) -> Iterator[str]:

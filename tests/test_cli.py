@@ -23,6 +23,7 @@ from shedbim.cli.guard import EXIT_CODES
 from shedbim.cli.tables import show_table
 from shedbim.description import presets
 from shedbim.description.listing import all_fields
+from shedbim.model import levels
 from shedbim.sections.catalogue import designations, families
 from shedbim.writers import ifc
 from shedbim.writers.imprint import CAUTIONS
@@ -213,8 +214,8 @@ def test_the_help_names_every_output_schema_and_exit_code(shell):
     for row in outputs.OUTPUTS:
         assert row.name in text
         assert row.group in text
-    for schema in outputs.SCHEMAS:
-        assert schema in text
+    for word in (*outputs.SCHEMAS, *outputs.LEVEL_NAMES):
+        assert word in text
     text = shell.ok("--help")
     for code, meaning in EXIT_CODES:
         assert f"{code} " in text
@@ -234,7 +235,8 @@ def test_build_writes_every_output_and_tells_a_person_what_came_out(shell):
     out = shell.ok("build", "barn.yaml")
     made = shell.contents("outputs/barn")
     assert set(made) == {
-        "model.ifc", "model.glb", "members.csv", "assemblies.csv", "sections.csv", "schedule.xlsx", "view.html",
+        "model.ifc", "model.glb", "members.csv", "plates.csv", "bolts.csv", "anchors.csv", "welds.csv", "holes.csv",
+        "assemblies.csv", "part-lists.csv", "finishes.csv", "sections.csv", "schedule.xlsx", "view.html",
         "summary.json",
     }  # fmt: skip
     told = json.loads(made["summary.json"])
@@ -267,7 +269,10 @@ def test_json_is_one_object_and_nothing_else(shell):
     told = json.loads(shell.ok("build", "barn.yaml", "--json", "--only", "schedules,summary", *STAMP))
     files = told.pop("files")
     assert told == json.loads((shell.folder / files["summary"]).read_text(encoding="utf-8"))
-    assert list(files) == ["members", "assemblies", "sections", "workbook", "summary"]
+    assert list(files) == [
+        "members", "plates", "bolts", "anchors", "welds", "holes", "assemblies", "part-lists", "finishes",
+        "sections", "workbook", "summary",
+    ]  # fmt: skip
     assert all((shell.folder / path).exists() for path in files.values())
 
 
@@ -296,6 +301,36 @@ def test_the_schema_is_the_one_asked_for(shell, schema):
     made = shell.contents("outputs/barn")
     assert f"FILE_SCHEMA(('{schema}'))".encode() in made["model.ifc"]
     assert json.loads(made["summary.json"])["schema"] == schema
+
+
+def test_the_levels_are_those_of_the_model():
+    assert set(outputs.LEVEL_NAMES) == set(levels.LEVELS)
+    assert {row.name for row in outputs.OUTPUTS if row.drawn} == {"model", "mesh", "view"}
+
+
+def test_the_level_is_that_of_models_and_lists_tell_of_everything(shell):
+    for level in outputs.LEVEL_NAMES:
+        shell.ok(
+            "build", "barn.yaml", "-q", "--level", level, "--out", level, "--only", "model,schedules", *STAMP
+        )
+    made = {level: shell.contents(level) for level in outputs.LEVEL_NAMES}
+    shell.ok("build", "barn.yaml", "-q", "--out", "plain", "--only", "model", *STAMP)
+    assert shell.contents("plain")["model.ifc"] == made["coordination"]["model.ifc"]
+    for name in made["outline"]:
+        assert (len({made[level][name] for level in made}) == 1) == (name != "model.ifc"), name
+    # Members have the same ids at each level, and so has everything else that is shown.
+    ids = {level: piece_ids_in(made[level]["model.ifc"]) for level in made}
+    assert ids["outline"].keys() < ids["coordination"].keys() == ids["fabrication"].keys()
+    assert ids["coordination"] == ids["fabrication"]
+    assert ids["outline"].items() <= ids["fabrication"].items()
+    sizes = [len(made[level]["model.ifc"]) for level in levels.LEVELS]
+    assert sizes == sorted(sizes)
+
+
+def piece_ids_in(model: bytes) -> dict[str, str]:
+    """The GlobalId of each element of a model file by its name, which is its key."""
+    line = re.compile(rb"=IFC(?!REL|PROP|ELEMENTQ|PROJECT|SITE|BUILDING)\w+\('([^']{22})',[^,]*,'([^']+)'")
+    return {name.decode(): guid.decode() for guid, name in line.findall(model) if b"/" in name}
 
 
 def test_a_description_without_an_id_is_built_with_a_warning(shell):
@@ -375,6 +410,7 @@ def test_a_target_that_is_a_file(shell):
     ("option", "value", "words"),
     [
         ("--schema", "IFC5", "no schema 'IFC5'; there are: IFC4, IFC4X3_ADD2, IFC2X3"),
+        ("--level", "rough", "no level of detail 'rough'; there are: coordination, fabrication, outline"),
         ("--only", "modle", "no output 'modle'"),
         ("--time-stamp", "yesterday", "'yesterday' is no ISO 8601 time"),
         ("--wrong", "x", "No such option"),

@@ -20,7 +20,7 @@ from shedbim.geometry.placements import apply, inverse
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 from shedbim.model.shed import Shed
-from shedbim.sections.profiles import Angle, LippedC
+from shedbim.sections.profiles import Angle, Hollow, LippedC
 from shedbim.tolerance import SAME_LENGTH
 
 ALL = pytest.mark.parametrize("name", cast.CAST)
@@ -32,19 +32,19 @@ ROOF_STEEL = (Role.RAFTER, Role.GABLE_RAFTER, Role.TOP_CHORD)
 
 @cache
 def bars_of(name: str) -> Bars:
-    return Bars(cast.shed_of(name))
+    return Bars(cast.members_of(name))
 
 
 @cache
 def labels_of(name: str) -> frozenset[str]:
     """Labels of the lines and bays looked at: the first and the last three, for the sake of the big preset."""
-    numbers = cast.shed_of(name).grid.numbers
+    numbers = cast.members_of(name).grid.numbers
     bays = [f"{a}-{b}" for a, b in pairwise(numbers)]
     return frozenset([*numbers[:3], *numbers[-3:], *bays[:3], *bays[-3:]])
 
 
 def chosen(name: str, *roles: Role) -> list[int]:
-    shed, bars = cast.shed_of(name), bars_of(name)
+    shed, bars = cast.members_of(name), bars_of(name)
     return [
         i
         for i, key in enumerate(shed.pieces.keys)
@@ -59,13 +59,13 @@ def solid_corners(shed: Shed, part: int) -> np.ndarray:
 
 def corners(name: str, piece: int) -> np.ndarray:
     """The corners of a placed solid (n, 3)."""
-    shed = cast.shed_of(name)
+    shed = cast.members_of(name)
     return apply(shed.pieces.placement[piece], solid_corners(shed, int(shed.pieces.part[piece])))
 
 
 def joints(name: str, *kinds: JointKind):
     """Each joint of some kinds: its pieces and where each is taken."""
-    shed = cast.shed_of(name)
+    shed = cast.members_of(name)
     for run in shed.joints:
         if run.kind in kinds:
             for pieces, at, point in zip(run.pieces.tolist(), run.at.tolist(), run.points, strict=True):
@@ -98,7 +98,7 @@ def foot_x(name: str, piece: int) -> float:
 def opens_towards(name: str, piece: int, open_to: np.ndarray, outward: np.ndarray) -> bool:
     """Whether a C opens, or the outer flange of a Z points, along a direction."""
     bars = bars_of(name)
-    shed = cast.shed_of(name)
+    shed = cast.members_of(name)
     off = corners(name, piece) - bars.ends[piece, 0]
     across, out = off @ open_to, off @ outward
     if isinstance(shed.parts[shed.pieces.part[piece]].bar.section.profile, LippedC):
@@ -122,7 +122,7 @@ def test_purlins_stand_the_right_way_up_the_slope(name):
 
 @ALL
 def test_purlins_clear_the_steel_that_carries_them_by_the_lift(name):
-    shed, bars, lift = cast.shed_of(name), bars_of(name), cast.described(name).purlins.lift
+    shed, bars, lift = cast.members_of(name), bars_of(name), cast.described(name).purlins.lift
     carriers = set()
     for pieces, _, _ in joints(name, JointKind.PURLIN_CLEAT):
         carrier = pieces[0]
@@ -146,8 +146,8 @@ def test_purlins_are_set_out_as_described(name):
     purlins, building = description.purlins, description.building
     lines = np.concatenate([[0.0], np.cumsum(building.spans)])
     label = chosen(name, Role.PURLIN)
-    first_bay = cast.shed_of(name).pieces.keys[label[0]].split("/")[0]
-    mine = [i for i in label if cast.shed_of(name).pieces.keys[i].split("/")[0] == first_bay]
+    first_bay = cast.members_of(name).pieces.keys[label[0]].split("/")[0]
+    mine = [i for i in label if cast.members_of(name).pieces.keys[i].split("/")[0] == first_bay]
     feet = sorted(foot_x(name, i) for i in mine)
     seen = 0
     for x0, x1, pitch in surfaces(name):
@@ -174,7 +174,7 @@ def test_purlins_are_set_out_as_described(name):
 
 @pytest.mark.parametrize("name", [n for n in cast.CAST if cast.described(n).purlins.set_out == "nodes"])
 def test_purlins_over_nodes_stand_over_every_node(name):
-    shed, bars, description = cast.shed_of(name), bars_of(name), cast.described(name)
+    shed, bars, description = cast.members_of(name), bars_of(name), cast.described(name)
     purlins = description.purlins
     feet = np.array(sorted({round(foot_x(name, i), 3) for i in chosen(name, Role.PURLIN)}))
     nodes = [
@@ -200,7 +200,7 @@ def test_purlins_over_nodes_stand_over_every_node(name):
 
 @ALL
 def test_purlins_are_butted_with_their_gap_and_reach_the_outer_face_of_the_gable_rails(name):
-    shed, bars, gap = cast.shed_of(name), bars_of(name), cast.described(name).purlins.gap
+    shed, bars, gap = cast.members_of(name), bars_of(name), cast.described(name).purlins.gap
     courses = defaultdict(list)
     for i in chosen(name, Role.PURLIN):
         courses[shed.pieces.keys[i].split("/", 1)[1]].append(sorted(bars.ends[i, :, 1]))
@@ -222,7 +222,7 @@ def test_purlins_are_butted_with_their_gap_and_reach_the_outer_face_of_the_gable
 @ALL
 def test_rails_open_downwards(name):
     """So that no water stands in them (common practice)."""
-    grid = cast.shed_of(name).grid
+    grid = cast.members_of(name).grid
     for i in chosen(name, Role.SIDE_RAIL, Role.GABLE_RAIL):
         x, y, _ = bars_of(name).ends[i].mean(axis=0)
         if bars_of(name).role[i] is Role.SIDE_RAIL:
@@ -234,7 +234,7 @@ def test_rails_open_downwards(name):
 
 @ALL
 def test_rails_stand_outside_the_steel_by_the_lift(name):
-    description, bars, grid = cast.described(name), bars_of(name), cast.shed_of(name).grid
+    description, bars, grid = cast.described(name), bars_of(name), cast.members_of(name).grid
     lift, seen = description.rails.lift, set()
     for pieces, _, point in joints(name, JointKind.RAIL_CLEAT):
         carrier = corners(name, pieces[0])
@@ -256,7 +256,7 @@ def test_rails_stand_outside_the_steel_by_the_lift(name):
 
 @ALL
 def test_rails_are_butted_with_their_gap(name):
-    shed, bars, description = cast.shed_of(name), bars_of(name), cast.described(name)
+    shed, bars, description = cast.members_of(name), bars_of(name), cast.described(name)
     columns = description.frames.columns.section
     rows = defaultdict(list)
     for i in chosen(name, Role.SIDE_RAIL, Role.GABLE_RAIL):
@@ -280,17 +280,34 @@ def test_rails_are_butted_with_their_gap(name):
     assert butted > 3
 
 
+def cap_height(name: str, column: int) -> float:
+    """How high the plate on the head of a column is, measured upright, mm; it lies along the roof."""
+    key = cast.members_of(name).pieces.keys[column]
+    shed = cast.shed_of(name)
+    caps = [
+        shed.parts[shed.pieces.part[fitting]].shape.thickness
+        for run in shed.joints
+        if run.kind is JointKind.COLUMN_CAP
+        for pieces, fittings in zip(run.pieces, run.fittings.tolist(), strict=True)
+        if shed.pieces.keys[pieces[0]] == key
+        for fitting in fittings
+        if shed.parts[shed.pieces.part[fitting]].role is Role.CAP_PLATE
+    ]
+    (thickness,) = caps
+    return thickness / cos(slope_over(name, float(bars_of(name).ends[column, 0, 0])).pitch)
+
+
 @ALL
 def test_side_rails_are_set_out_as_described(name):
-    bars, shed, rails = bars_of(name), cast.shed_of(name), cast.described(name).rails
+    bars, shed, rails = bars_of(name), cast.members_of(name), cast.described(name).rails
     for letter in (shed.grid.letters[0], shed.grid.letters[-1]):
         column = shed.pieces.keys.index(f"{shed.grid.numbers[0]}/column/{letter}")
         mine = [i for i in chosen(name, Role.SIDE_RAIL) if f"side rail/{letter}/" in shed.pieces.keys[i]]
         levels = np.array(sorted({round(float(bars.ends[i, 0, 2]), 3) for i in mine}))
         assert levels[0] == pytest.approx(rails.base_offset, abs=NOISE)
-        # Below the lowest corner of the column's head.
+        # Below the lowest corner of the column's head, cap plate included.
         head = corners(name, column)
-        lowest = head[head[:, 2] > head[:, 2].max() - 500.0][:, 2].min()
+        lowest = head[head[:, 2] > head[:, 2].max() - 500.0][:, 2].min() + cap_height(name, column)
         assert lowest - levels[-1] == pytest.approx(rails.eaves_offset, abs=2 * SLACK)
         steps = np.diff(levels)
         assert np.ptp(steps) < NOISE
@@ -312,8 +329,8 @@ def test_every_rail_has_the_uprights_behind_it(name):
 
 @ALL
 def test_crossing_braces_pass_each_other(name):
-    """Angles on either face of a 10 mm gusset; the halves of a split tube 20 mm off the one that passes."""
-    shed, bars, seen = cast.shed_of(name), bars_of(name), 0
+    """Angles on either face of a 10 mm gusset; the halves of a split tube 20 mm or more off the one that passes."""
+    shed, bars, seen = cast.members_of(name), bars_of(name), 0
     for pieces, at, point in joints(name, JointKind.BRACE_CROSSING):
         seen += 1
         first, *others = pieces
@@ -330,7 +347,8 @@ def test_crossing_braces_pass_each_other(name):
             else:
                 aside = np.cross(normal, bars.x[first])
                 off = np.abs((corners(name, other) - point) @ aside)
-                assert off.min() == pytest.approx(bars.height[first] / 2 + 20.0, abs=SLACK)
+                # They stand back for the fins they are bolted by: three M20 in a row are 235 mm with all around.
+                assert 20.0 - SLACK <= off.min() - bars.height[first] / 2 <= 20.0 + 235.0
         if len(others) == 2:  # one half on either side
             sides = [np.dot(bars.ends[i].mean(axis=0) - point, aside) for i in others]
             assert sides[0] * sides[1] < 0
@@ -340,7 +358,7 @@ def test_crossing_braces_pass_each_other(name):
 
 @ALL
 def test_gable_posts_end_below_the_steel(name):
-    """25 mm below it, so that the roof can deflect (common practice: 20 to 30 mm)."""
+    """25 mm below it or more, so that the roof can deflect (common practice: 20 to 30 mm)."""
     bars, seen = bars_of(name), 0
     description = cast.described(name)
     for pieces, _, point in joints(name, JointKind.POST_HEAD):
@@ -358,11 +376,19 @@ def test_gable_posts_end_below_the_steel(name):
             (x0, _, z0), (x1, _, z1) = bars.ends[i]
             rise = (z1 - z0) / (x1 - x0)
             depth = (
-                bars.height[i] if abs(cast.shed_of(name).pieces.placement[i, 1, 2]) < 0.5 else bars.width[i]
+                bars.height[i]
+                if abs(cast.members_of(name).pieces.placement[i, 1, 2]) < 0.5
+                else bars.width[i]
             )
             underside = z0 + (head[:, 0] - x0) * rise - depth / 2 * hypot(1, rise)
             gaps.append(underside - head[:, 2])
-        assert min(gap.min() for gap in gaps) == pytest.approx(25.0, abs=2 * SLACK)
+        nearest = min(gap.min() for gap in gaps)
+        profile = cast.members_of(name).parts[cast.members_of(name).pieces.part[carrier]].bar.section.profile
+        if isinstance(profile, Hollow):
+            # A hanger comes down from the chord, to which a fin on the post is bolted in long slots.
+            assert 25.0 - 2 * SLACK <= nearest <= 25.0 + 130.0
+        else:
+            assert nearest == pytest.approx(25.0, abs=2 * SLACK)
         # Its outer face is in line with the outer faces of columns and of the roof steel in this frame.
         y = bars.ends[carrier, 0, 1]
         steel = [i for i in chosen(name, *ROOF_STEEL) if abs(bars.ends[i, 0, 1] - y) < 1.0]
@@ -375,17 +401,28 @@ def test_gable_posts_end_below_the_steel(name):
 
 @ALL
 def test_sag_bars_run_from_web_to_web(name):
-    """Each end of a sag bar is on the web of the purlin or rail that holds it, neither short of it nor in it."""
-    shed, bars = cast.shed_of(name), bars_of(name)
+    """Each end of a sag bar is at the web of the purlin or rail that holds it: through it, a nut beyond, or on it.
+
+    ISO 4032, ISO 7089: the nut of M12 is 10.8 mm high, its washer 2.5 mm thick; more than three diameters of thread
+    nobody leaves. A bar that slants too much for a hole ends at a plate of 5 to 10 mm on the web.
+    """
+    shed, bars, through = cast.members_of(name), bars_of(name), 0
     for pieces, at, _ in joints(name, JointKind.SAG_BAR_END):
         held, bar = pieces
-        end = bars.ends[bar, at[1]]
-        local = apply(inverse(shed.pieces.placement[held]), end[None])[0]
+        back = inverse(shed.pieces.placement[held])
+        here, there = apply(back, bars.ends[bar, [at[1], 1 - at[1]]])
         section = shed.parts[shed.pieces.part[held]].bar.section
         is_c = isinstance(section.profile, LippedC)
         web = section.outline.bounds[0] + section.profile.thickness / 2 if is_c else 0.0
-        assert abs(local[1] - web) == pytest.approx(section.profile.thickness / 2, abs=SLACK)
-        assert abs(local[2]) < section.height / 4
+        past = (here[1] - web) * np.sign(here[1] - there[1])
+        half = section.profile.thickness / 2
+        if past > 0:
+            assert 10.8 + 2.5 <= past - half <= 3 * bars.width[bar]
+            through += 1
+        else:
+            assert 5.0 - SLACK <= -past - half <= 10.0
+        assert abs(here[2]) < section.height / 4
+    assert through
 
 
 @ALL

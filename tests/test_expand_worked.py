@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
+import cast
 import numpy as np
 import pytest
 from placed_trusses import placed_trusses, solved
 
 from shedbim.description import read_text
-from shedbim.expand import expand
 from shedbim.model.joints import JointKind
 from shedbim.model.roles import Role
 
@@ -36,7 +36,7 @@ bracing:
 
 
 def test_the_portal_frame_of_the_guide():
-    shed = expand(read_text(PORTAL))
+    shed = cast.members(read_text(PORTAL))
     points = {
         kind: np.concatenate([run.points for run in shed.joints if run.kind is kind])
         for kind in (JointKind.RAFTER_COLUMN, JointKind.APEX)
@@ -56,7 +56,7 @@ def test_the_portal_frame_of_the_guide():
 
 def test_the_secondary_steel_of_the_guide():
     """Purlins 1.5 to 1.8 m apart, rails 2.0 m at most, as the guide asks."""
-    shed = expand(read_text(PORTAL))
+    shed = cast.members(read_text(PORTAL))
     keys, x = shed.pieces.keys, shed.pieces.placement[:, :, 3]
     left = np.array([x[i] for i, key in enumerate(keys) if key.startswith("2-3/purlin/A-B/1/")])
     steps = np.linalg.norm(np.diff(left[np.argsort(left[:, 0])][:, [0, 2]], axis=0), axis=1)
@@ -98,7 +98,7 @@ bracing:
 
 def test_the_roof_truss_of_the_manual():
     """Span to depth 25 / 3.5 = 7.14, inside the 7 to 8 of the manual, between the chord axes as placed."""
-    shed = expand(read_text(ROOF_TRUSS))
+    shed = cast.members(read_text(ROOF_TRUSS))
     lines = sorted(
         {round(float(point[1])) for run in shed.joints if run.kind is JointKind.NODE for point in run.points}
     )
@@ -146,7 +146,7 @@ def test_forces_of_a_built_truss_are_those_of_the_tables(pattern, sign, wanted):
         .replace("pratt", pattern)
         .replace("SHS 90x90x5", "SHS 60x60x4")
     )
-    shed = expand(read_text(text))
+    shed = cast.members(read_text(text))
     truss = placed_trusses(shed)[0]
     forces, webs = solved(truss)
     # Loads of 1 N/mm on panels of 3 m are 3 000 N: 20 kN at that scale.

@@ -13,6 +13,7 @@ import numpy as np
 import pytest
 import specimens
 import trimesh
+from bolted_frames import BOLTS, bolted_frames
 from glb_file import GlbFile, box_of_corners, nodes_before_pieces, rotation_matrices
 
 from shedbim.expand import expand
@@ -20,11 +21,15 @@ from shedbim.geometry.outlines import Outline, polyline
 from shedbim.geometry.placements import Placements, compose, rotation
 from shedbim.geometry.quaternions import quaternions
 from shedbim.model.bars import Bar
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.plates import Plate
 from shedbim.model.roles import Role
+from shedbim.model.shapes import Shape
 from shedbim.model.shed import Assemblies, Pieces, ProjectInfo, Shed
 from shedbim.model.solids import solid
 from shedbim.sections.section import Symmetry
 from shedbim.version import __version__
+from shedbim.writers.described import described, figures
 from shedbim.writers.glb import write
 from shedbim.writers.glb.meshes import CHORD_ERROR, flat_mesh
 from shedbim.writers.glb.text import compact, strings
@@ -59,7 +64,7 @@ def empty() -> Shed:
     )
 
 
-SPECIMENS = {"by hand": specimens.shed, "hostile": hostile, "empty": empty}
+SPECIMENS = {"by hand": specimens.shed, "hostile": hostile, "empty": empty, "bolted": bolted_frames}
 ALL = [*cast.CAST, *SPECIMENS]
 #: The independent reader takes a millisecond a node.
 MOST_FOR_HOSTILEER = 1500
@@ -137,8 +142,9 @@ def test_each_mesh_is_a_part_with_bounds_and_unit_normals(name: str) -> None:
         assert (across > 0.99 * np.linalg.norm(cross, axis=1)[:, None]).all()
         used += points.nbytes + normals.nbytes + indices.nbytes
         extras = meshes[number]["extras"]
-        assert extras["length_mm"] == pytest.approx(part.bar.length, abs=1e-3)
-        assert extras["mass_kg"] == pytest.approx(part.bar.mass, abs=1e-3)
+        assert extras["section"] == described(part.shape)
+        assert figures(part.shape).items() <= extras.items()
+        assert extras["mass_kg"] == pytest.approx(part.shape.mass, abs=1e-3)
         assert (extras["grade"], extras["finish"]) == (part.grade, part.finish)
     assert used == len(file.buffer)
 
@@ -173,7 +179,7 @@ def test_each_piece_is_a_node_with_its_key_and_what_it_is(name: str) -> None:
         assert node["mesh"] == index
         assert node["extras"] == {
             "mark": part.mark,
-            "section": part.bar.section.designation,
+            "section": described(part.shape),
             "role": part.role.word,
         }
 
@@ -223,12 +229,12 @@ def test_the_box_of_each_piece_is_that_of_its_solid(name: str) -> None:
     file, shed = file_of(name), shed_of(name)
     if not len(shed.pieces):
         return
-    boxes = np.array([solid(part.bar, CHORD_ERROR).bounding_box() for part in shed.parts]).reshape(-1, 2, 3)
+    boxes = np.array([solid(part.body, CHORD_ERROR).bounding_box() for part in shed.parts]).reshape(-1, 2, 3)
     expected = box_of_corners(boxes[shed.pieces.part], shed.pieces.placement)
     assert np.abs(file.piece_boxes(shed) - expected).max() < 0.1
     # Chords leave an arc: where a round bar is cut askew, its tip may be this much short of the exact one.
-    exact = np.array([solid(part.bar).bounding_box() for part in shed.parts]).reshape(-1, 2, 3)
-    askew = np.array([not (part.bar.start.is_square and part.bar.end.is_square) for part in shed.parts])
+    exact = np.array([solid(part.body).bounding_box() for part in shed.parts]).reshape(-1, 2, 3)
+    askew = np.array([is_askew(part.body) for part in shed.parts])
     short = np.abs(file.piece_boxes(shed) - box_of_corners(exact[shed.pieces.part], shed.pieces.placement))
     assert short[~askew[shed.pieces.part]].max() < 0.1
     assert short.max() < CHORD_ERROR + 0.1
@@ -249,19 +255,66 @@ def test_an_independent_reader_finds_closed_parts_and_every_piece(name: str) -> 
     for part in shed.parts:
         mesh = scene.geometry[part.mark]
         mesh.merge_vertices(merge_norm=True, merge_tex=True)
+        if isinstance(part.body, BoltGroup):
+            continue
         assert mesh.is_watertight
         assert mesh.is_winding_consistent
         volume = mesh.volume * 1e9
-        assert volume == pytest.approx(solid(part.bar, CHORD_ERROR).volume(), rel=1e-4)
-        girth = sum(loop.length for loop in part.bar.section.outline.loops)
-        assert abs(volume - part.bar.volume) < CHORD_ERROR * girth * part.bar.length
+        assert volume == pytest.approx(solid(part.body, CHORD_ERROR).volume(), rel=1e-4)
+        assert abs(volume - part.body.volume) < CHORD_ERROR * wall_area(part.body)
+
+
+def is_askew(shape: Shape) -> bool:
+    """Whether an end of a bar is not square, or a notch cuts it."""
+    return isinstance(shape, Bar) and not (
+        shape.start.is_square and shape.end.is_square and not shape.notches
+    )
+
+
+def wall_area(shape: Bar | Plate) -> float:
+    """The area of all walls square to a section or a plate, those of holes included, mm²."""
+    if isinstance(shape, Plate):
+        return sum(loop.length for loop in shape.outline.loops) * shape.thickness
+    girth = sum(loop.length for loop in shape.section.outline.loops)
+    bores = sum((np.pi * hole.diameter + 2 * hole.slot) * hole.thickness for hole in shape.holes)
+    return girth * shape.length + bores
+
+
+def test_each_prism_of_a_bolt_is_closed_and_as_large_as_its_disc_without_a_bore() -> None:
+    part = next(part for part in bolted_frames().parts if part.mark == "BG1")
+    mesh = flat_mesh(part.shape)
+    corners = mesh.points[mesh.indices].astype(float).reshape(-1, 3, 3) * 1000
+    volume = np.einsum("ij,ij->", corners[:, 0], np.cross(corners[:, 1], corners[:, 2])) / 6
+    discs = [replace(disc, bore=0.0) for disc in BOLTS.stack]
+    assert volume == pytest.approx(6 * sum(disc.volume for disc in discs), rel=0.06)
+    # Six bolts of four prisms: a prism whose outline has k corners has 4 k - 4 triangles.
+    outlines = [6, 6, 12, 16]
+    assert len(corners) == 6 * sum(4 * corner - 4 for corner in outlines)
+    body = trimesh.Trimesh(corners.reshape(-1, 3), np.arange(len(corners) * 3).reshape(-1, 3))
+    assert body.is_watertight
+
+
+def test_extras_tell_what_is_bought_or_cut() -> None:
+    file = file_of("bolted")
+    extras = {mesh["name"]: mesh["extras"] for mesh in file.json["meshes"]}
+    assert {key: extras["BP1"][key] for key in ("section", "thickness_mm", "size_mm", "holes")} == {
+        "section": "PL 20x230x410", "thickness_mm": 20, "size_mm": [410, 230], "holes": 4,
+    }  # fmt: skip
+    assert extras["BG1"] == {
+        "mark": "BG1", "section": "M20x60 8.8 x6", "role": "bolts", "grade": "8.8", "finish": "galvanized",
+        "designation": "M20x60 8.8", "count": 6, "diameter_mm": 20, "length_mm": 60, "grip_mm": 26.9,
+        "nuts": 1, "washers": 1, "mass_kg": round(6 * BOLTS.volume * 7.85e-6, 3),
+    }  # fmt: skip
+    assert "length_mm" not in extras["NU1"]
+    assert (extras["C1"]["length_mm"], extras["C1"]["holes"]) == (4210, 6)
+    assert "holes" not in extras["R1"]
 
 
 def piece_points(shed: Shed) -> list[np.ndarray]:
     """Corners of every solid where its pieces stand, mm."""
     found = []
     for index, part in enumerate(shed.parts):
-        points = np.asarray(solid(part.bar, CHORD_ERROR).to_mesh64().vert_properties)[:, :3]
+        points = np.asarray(solid(part.body, CHORD_ERROR).to_mesh64().vert_properties)[:, :3]
         motion = shed.pieces.placement[shed.pieces.part == index]
         found.append((points @ np.swapaxes(motion[:, :, :3], 1, 2) + motion[:, None, :, 3]).reshape(-1, 3))
     return found

@@ -3,9 +3,9 @@
 from __future__ import annotations
 
 import ifc_models
+import ifc_rules
 import ifcopenshell
 import ifcopenshell.util.element
-import ifcopenshell.util.pset
 import ifcopenshell.util.unit
 import pytest
 import specimens
@@ -30,51 +30,11 @@ def pieces_of(schema: str) -> list[tuple[str, object, Entity]]:
 @each_schema
 def test_sets_with_standard_names_are_the_standard_ones(schema: str) -> None:
     """PSE001, PSE002, QTY001: names, members, value types and classes are those of the templates."""
-    file = ifc_models.model(schema)
-    templates = ifcopenshell.util.pset.PsetQto(schema.removesuffix("_ADD2"))
-    seen = set()
-    for relation in file.by_type("IfcRelDefinesByProperties"):
-        definition = relation.RelatingPropertyDefinition
-        entities = {each.is_a() for each in relation.RelatedObjects}
-        seen |= _check(templates, definition.Name, definition, entities)
-    for kind in file.by_type("IfcElementType"):
-        for definition in kind.HasPropertySets or ():
-            assert not definition.is_a("IfcElementQuantity")
-            seen |= _check(templates, definition.Name, definition, {kind.is_a().removesuffix("Type")})
-    for entity in () if schema == "IFC2X3" else ("IfcMaterial", "IfcProfile"):
-        for each in file.by_type(f"{entity}Properties"):
-            seen |= _check(
-                templates, each.Name, each, {"IfcMaterial" if entity == "IfcMaterial" else "IfcProfileDef"}
-            )
+    seen = ifc_rules.standard_sets(ifc_models.model(schema), schema)
     later = {"Pset_ElementAssemblyCommon", "Pset_MaterialCommon", "Pset_ProfileMechanical"}
     later |= {"Qto_MemberBaseQuantities", "Qto_ColumnBaseQuantities"}
     later |= {"Pset_MaterialSteel"} if schema == "IFC4X3_ADD2" else set()
     assert seen == {"Pset_MemberCommon", "Pset_ColumnCommon"} | (set() if schema == "IFC2X3" else later)
-
-
-def _check(
-    templates: ifcopenshell.util.pset.PsetQto, name: str, definition: Entity, entities: set[str]
-) -> set[str]:
-    """Hold one set against its template; gives its name where it is a standard one."""
-    if not name.startswith(("Pset_", "Qto_")):
-        assert not name.lower().startswith("pset")
-        return set()
-    template = templates.get_by_name(name)
-    assert template, name
-    applicable = {part.split("/")[0] for part in template.ApplicableEntity.split(",")}
-    assert entities <= applicable, (name, entities)
-    wanted = {each.Name: each for each in template.HasPropertyTemplates}
-    if name.startswith("Qto_"):
-        assert definition.MethodOfMeasurement == "BaseQuantities"
-        kinds = {
-            each.Name: each.is_a().replace("IfcQuantity", "Q_").upper() for each in definition.Quantities
-        }
-        assert kinds == {each: wanted[each].TemplateType for each in kinds}
-        return {name}
-    for each in getattr(definition, "HasProperties", None) or definition.Properties:
-        measure = wanted[each.Name].PrimaryMeasureType
-        assert measure in {None, each.NominalValue.is_a()}, (name, each.Name)
-    return {name}
 
 
 @each_schema

@@ -10,14 +10,15 @@ from collections import Counter
 from itertools import pairwise
 
 import ifc_models
+import ifc_rules
 import ifcopenshell
 import pytest
 import specimens
 
 from shedbim.model.roles import Role
 from shedbim.writers.ifc import SCHEMAS
-from shedbim.writers.ifc.classes import CLASSES
-from shedbim.writers.ifc.relations import GROUPS
+from shedbim.writers.ifc.classes import BARS, CLASSES
+from shedbim.writers.ifc.groups import GROUPS
 
 SHED = specimens.shed()
 Entity = ifcopenshell.entity_instance
@@ -42,19 +43,8 @@ def test_the_spatial_tree_is_one_line_without_shapes(schema: str) -> None:
 @each_schema
 def test_each_element_stands_once_in_the_tree(schema: str) -> None:
     """SPS003, SPS005, SPS007: in an assembly, or else in the storey, and the grid too."""
-    file = ifc_models.model(schema)
-    places = Counter(
-        each
-        for relation in file.by_type("IfcRelContainedInSpatialStructure")
-        for each in relation.RelatedElements
-    )
-    inside = {}
-    for relation in file.by_type("IfcRelAggregates"):
-        if relation.RelatingObject.is_a("IfcElement"):
-            places.update(relation.RelatedObjects)
-            inside |= {each.Name: relation.RelatingObject.Name for each in relation.RelatedObjects}
-    assert places.keys() == {*file.by_type("IfcElement"), *file.by_type("IfcGrid")}
-    assert set(places.values()) == {1}
+    held = ifc_rules.placed_once(ifc_models.model(schema))
+    inside = {each.Name: outer.Name for each, outer in held.items() if outer}
     keys = SHED.assemblies.keys
     wanted = {k: keys[a] for k, a in zip(SHED.pieces.keys, SHED.pieces.assembly, strict=True) if a >= 0}
     wanted |= {k: keys[a] for k, a in zip(keys, SHED.assemblies.parent, strict=True) if a >= 0}
@@ -139,10 +129,13 @@ def test_roles_are_classed_as_the_mapping_says(role: Role, oldest: str, middle: 
 def test_every_role_has_a_class_that_the_schema_knows(schema: str) -> None:
     declarations = ifcopenshell.ifcopenshell_wrapper.schema_by_name(schema)
     assert CLASSES.keys() == set(Role)
-    for each in CLASSES.values():
+    for each in (*CLASSES.values(), *BARS.values()):
+        declarations.declaration_by_name(each.entity)
+        assert each.named or each.items[schema] != "USERDEFINED"
+        if schema == "IFC2X3" and each.entity in {"IfcMechanicalFastener", "IfcDiscreteAccessory"}:
+            continue  # it has no such lists
         items = declarations.declaration_by_name(f"{each.entity}TypeEnum").enumeration_items()
         assert each.items[schema] in items
-        assert each.named or each.items[schema] != "USERDEFINED"
 
 
 def _same(placement: Entity) -> bool:
@@ -295,20 +288,7 @@ def test_the_grid_stands_on_the_storey_with_its_labels(schema: str) -> None:
 @each_schema
 def test_every_resource_is_reached_from_something_with_an_id(schema: str) -> None:
     """IFC106: nothing lies about unused; properties, styles and conversions point at what they are about."""
-    file = ifc_models.model(schema)
-    reached = {each for root in file.by_type("IfcRoot") for each in file.traverse(root)}
-    pointing = (
-        "IfcStyledItem",
-        "IfcMaterialProperties",
-        "IfcProfileProperties",
-        "IfcCoordinateOperation",
-        "IfcGeometricRepresentationSubContext",
-    )
-    for name in pointing:
-        if schema != "IFC2X3" or name not in {"IfcCoordinateOperation"}:
-            for each in file.by_type(name):
-                reached |= set(file.traverse(each))
-    assert {each for each in file if each not in reached} == set()
+    assert ifc_rules.unreached(ifc_models.model(schema), schema) == set()
 
 
 @each_schema

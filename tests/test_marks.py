@@ -101,7 +101,7 @@ def test_marks_by_role_section_length_and_hand() -> None:
             each.role,
             each.grade,
             each.finish,
-            each.bar.section,
+            each.shape.section,
         )
 
 
@@ -120,7 +120,7 @@ def test_marks_hang_neither_on_order_nor_on_direction_nor_on_noise(random: Rando
 
     mix = []
     for i in rows:
-        bar = CAST[i].bar
+        bar = CAST[i].shape
         if bar.section.profile.symmetry.mirror is not None and random.random() < 0.5:
             bar = flipped(bar)
         bar = Bar(bar.section, bar.length + noise(), shaken(bar.start), shaken(bar.end))
@@ -129,13 +129,13 @@ def test_marks_hang_neither_on_order_nor_on_direction_nor_on_noise(random: Rando
     assert marks(grouping) == [plain[i] for i in rows]
     for i in random.sample(range(len(mix)), 4):
         each, part, motion = mix[i], grouping.part_of[i], grouping.motion[i]
-        inner, outer = solid(grouping.parts[part].bar).transform(motion), solid(each.bar)
-        assert (inner - outer).volume() + (outer - inner).volume() < 0.01 * each.bar.volume
+        inner, outer = solid(grouping.parts[part].bar).transform(motion), solid(each.shape)
+        assert (inner - outer).volume() + (outer - inner).volume() < 0.01 * each.shape.volume
 
 
 def test_the_same_parts_come_out_bit_by_bit_whatever_the_order() -> None:
     many = [
-        stock(Bar(s.bar.section, s.bar.length + d, s.bar.start, s.bar.end), s.role)
+        stock(Bar(s.shape.section, s.shape.length + d, s.shape.start, s.shape.end), s.role)
         for s in CAST
         for d in (0.0, 1e-10, 0.3)
     ]
@@ -148,7 +148,7 @@ def test_a_mirrored_building_swaps_handed_marks_and_nothing_else() -> None:
     # Without the tubes of which only one hand is there.
     cast = CAST[:9] + CAST[12:]
     plain = group_parts(cast)
-    image = group_parts([stock(mirrored(s.bar), s.role, s.grade, s.finish) for s in cast])
+    image = group_parts([stock(mirrored(s.shape), s.role, s.grade, s.finish) for s in cast])
     assert image.parts == plain.parts
     changed = [
         i for i, (one, other) in enumerate(zip(marks(plain), marks(image), strict=True)) if one != other

@@ -18,7 +18,7 @@ from shedbim.sections.profiles import Flat, LippedZ, Pipe, Round
 from shedbim.sections.section import Profile, Section
 from shedbim.writers.palette import PALETTE
 from shedbim.writers.pictures.composition import LABELS, compose
-from shedbim.writers.pictures.meshes import bar_mesh
+from shedbim.writers.pictures.meshes import shape_mesh
 from shedbim.writers.pictures.picture import png_picture
 from shedbim.writers.pictures.png import png
 from shedbim.writers.pictures.projection import View, box_corners, fitted
@@ -178,7 +178,7 @@ def test_triangles_partly_outside_are_cut_at_the_border() -> None:
 
 
 def test_mesh_is_closed_and_faces_outwards_and_a_block_has_its_twelve_edges() -> None:
-    mesh = bar_mesh(Bar(Section("b", "b", Flat(80.0, 30.0), "test"), 500.0), 1.0)
+    mesh = shape_mesh(Bar(Section("b", "b", Flat(80.0, 30.0), "test"), 500.0), 1.0)
     a, b, c = np.moveaxis(mesh.points[mesh.triangles], 1, 0)
     assert np.einsum("ij,ij->", a, np.cross(b, c)) / 6 == pytest.approx(500 * 80 * 30)
     assert len(mesh.edges) == 12

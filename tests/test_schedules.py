@@ -23,7 +23,7 @@ from shedbim.writers.imprint import CAUTIONS, Imprint
 from shedbim.writers.schedules import tables
 from shedbim.writers.schedules.csv_text import csv_text, guarded, unguarded
 from shedbim.writers.schedules.table import Column, Table, Total
-from shedbim.writers.schedules.workbook import workbook_bytes
+from shedbim.writers.schedules.workbook import SHEETS, workbook_bytes
 
 STAMP = Imprint(datetime(2024, 5, 17, 9, 30, tzinfo=UTC), "IFC4", "ab" * 32)
 
@@ -234,9 +234,11 @@ def test_every_text_comes_back_from_a_csv(texts):
 def test_workbook_has_the_sheets_and_the_rows_of_the_tables():
     specimen = shed()
     book = sheets(workbook_bytes(specimen, STAMP), values=True)
-    assert book.sheetnames == ["Members", "Assemblies", "Sections", "Roles", "About"]
-    makers = (tables.members, tables.assemblies, tables.by_section, tables.by_role)
-    for name, make in zip(book.sheetnames[:4], makers, strict=True):
+    assert book.sheetnames == [
+        "Members", "Plates and fittings", "Bolts", "Anchors", "Welds", "Holes", "Assemblies", "Part lists",
+        "Finishes", "Sections", "Roles", "About",
+    ]  # fmt: skip
+    for name, make in zip(book.sheetnames[:-1], SHEETS, strict=True):
         table, sheet = make(specimen), book[name]
         headings = [cell.value for cell in sheet[1]]
         assert headings == [column.heading.replace("m2", "m²") for column in table.columns]
@@ -288,7 +290,7 @@ def test_no_text_of_a_user_becomes_a_formula_or_a_footer_code():
     assert about["B2"].value == "+2417"
     with zipfile.ZipFile(io.BytesIO(data)) as archive:
         sheet = archive.read("xl/worksheets/sheet1.xml").decode()
-        last = archive.read("xl/worksheets/sheet5.xml").decode()
+        last = archive.read(f"xl/worksheets/sheet{len(SHEETS) + 1}.xml").decode()
         strings = archive.read("xl/sharedStrings.xml").decode()
     assert "<f>" not in last
     assert "HYPERLINK" not in "".join(re.findall("<f>.*?</f>", sheet))
@@ -321,7 +323,8 @@ def test_the_last_sheet_says_what_this_is_and_is_not():
     cautions = " ".join(CAUTIONS)
     assert "user's own choice" in cautions
     assert "licensed engineer" in cautions
-    assert "Plates, bolts, welds" in cautions
+    assert "Plates, bolts and welds are laid out by rule" in cautions
+    assert "no resistance is computed" in cautions
     assert told["Steel"].startswith(f"{shed().mass / 1000:.3f} t")
 
 

@@ -30,6 +30,7 @@ def test_layers_import_only_from_lower_ones() -> None:
         {"errors", "tolerance", "version", "units"},
         {"geometry"},
         {"sections"},
+        {"fasteners"},
         {"webs"},
         {"fields", "roofs", "description"},
         {"model"},

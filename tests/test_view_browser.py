@@ -24,7 +24,7 @@ SPECIMEN = "lopsided"
 
 @pytest.fixture(scope="module")
 def shed() -> Shed:
-    return cast.shed_of(SPECIMEN)
+    return cast.members_of(SPECIMEN)
 
 
 def drawn(sight: Sight, picture: Picture) -> np.ndarray:
@@ -66,7 +66,7 @@ def assert_picks_as_seen(sight: Sight, shed: Shed, found: np.ndarray, count: int
 
 @pytest.mark.parametrize("name", ["barn", "seed-store"])
 def test_preset_opens_quietly_and_shows_all_its_pieces(desk: Desk, name: str) -> None:
-    model = cast.shed_of(name)
+    model = cast.members_of(name)
     with desk.opened(page_of(name), name) as sight:
         assert sight.text("#piece-count") == f"{len(model.pieces)} pieces"
         assert sight.text("#part-count") == f"{len(model.parts)} marks"
@@ -124,7 +124,7 @@ def test_silhouette_is_that_of_the_model(view: Sight, shed: Shed) -> None:
 
 
 def test_pictures_after_the_first_are_whole(desk: Desk) -> None:
-    model = cast.shed_of("flat")
+    model = cast.members_of("flat")
     with desk.opened(page_of("flat"), "moving", reduced_motion="no-preference") as sight:
         sight.page.uncheck("#grid-on")
         assert_draws(sight, model)

@@ -18,7 +18,7 @@ from shedbim.writers.view import ShownFinding
 
 @pytest.fixture(scope="module")
 def shed() -> Shed:
-    return cast.shed_of("flat")
+    return cast.members_of("flat")
 
 
 # Touch and small screens

@@ -19,7 +19,7 @@ SPECIMEN = "flat"
 
 @pytest.fixture(scope="module")
 def shed() -> Shed:
-    return cast.shed_of(SPECIMEN)
+    return cast.members_of(SPECIMEN)
 
 
 def roles_of(shed: Shed) -> Counter[str]:
@@ -177,8 +177,11 @@ def test_schedule_says_what_the_model_holds(view: Sight, shed: Shed) -> None:
 
 def test_schedule_sorts_and_filters(view: Sight, shed: Shed) -> None:
     view.page.click("#schedule")
-    for name, column in (("length", 5), ("mass each", 6), ("quantity", 2)):
-        head = view.page.locator(f"#schedule-head th[data-column='{name}']")
+    (heads,) = rows_of(view, "#schedule-head")
+    for name, column in ((name, heads.index(name)) for name in ("length mm", "mass each kg", "quantity")):
+        head = view.page.locator(
+            f"#schedule-head th[data-column='{name.removesuffix(' mm').removesuffix(' kg')}']"
+        )
         for order in ("ascending", "descending"):
             head.locator("button").click()
             assert head.get_attribute("aria-sort") == order

@@ -20,7 +20,7 @@ SPECIMEN = "flat"
 
 @pytest.fixture(scope="module")
 def shed() -> Shed:
-    return cast.shed_of(SPECIMEN)
+    return cast.members_of(SPECIMEN)
 
 
 # Colours and themes

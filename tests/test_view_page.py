@@ -21,7 +21,13 @@ from hypothesis import strategies as st
 from shedbim.errors import ModelError
 from shedbim.expand import expand
 from shedbim.geometry.placements import apply
+from shedbim.model.bars import Bar
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.plates import Plate
+from shedbim.model.roles import Sort
+from shedbim.model.shapes import Shape
 from shedbim.writers import view
+from shedbim.writers.coarse import coarse
 from shedbim.writers.imprint import CAUTIONS, Imprint
 from shedbim.writers.palette import PALETTE
 from shedbim.writers.schedules.tables import members
@@ -65,7 +71,8 @@ def test_both_ends_of_every_piece_lie_where_the_model_has_them(name):
     lengths = columns["part sizes"][shed.pieces.part, 0] / 1000
     for index, part in enumerate(shed.parts):
         here = shed.pieces.part == index
-        ends = np.array([[0.0, 0, 0], [part.bar.length, 0, 0], [part.bar.length, 100, 100]])
+        length = length_of(part.shape)
+        ends = np.array([[0.0, 0, 0], [length, 0, 0], [length, 100, 100]])
         wanted = apply(shed.pieces.placement[here], ends)
         shown = apply(
             placed[here], np.array([[0, 0, 0], [lengths[here][0], 0, 0], [lengths[here][0], 100, 100]])
@@ -74,23 +81,40 @@ def test_both_ends_of_every_piece_lie_where_the_model_has_them(name):
         assert np.abs(shown - wanted).max() < 0.0101
 
 
-def test_parts_travel_as_the_schedule_has_them(name):
+def length_of(shape: Shape) -> float:
+    """The length a shape is listed with: a plate's is its longer side, a bolt's the nominal one."""
+    if isinstance(shape, BoltGroup):
+        return shape.fastener.length
+    return shape.size[0] if isinstance(shape, Plate) else shape.length
+
+
+def test_members_travel_as_the_schedule_has_them(name):
     shed, (texts, columns) = cast.shed_of(name), data_of(name)
     table = members(shed)
+    ours = [index for index, part in enumerate(shed.parts) if part.role.sort is Sort.MEMBER]
     named = ["mark", "role", "section", "grade", "finish", "assemblies"]
     wanted = list(zip(*(table.column(column) for column in named), strict=True))
     shown = [(mark, texts["roles"][role][0], *rest) for mark, role, *rest in texts["parts"]]
-    assert shown == wanted
-    sizes = columns["part sizes"]
+    assert [shown[index] for index in ours] == wanted
+    sizes = columns["part sizes"][ours]
     assert np.abs(sizes[:, 0] / 1000 - table.column("length")).max() <= 0.0005001
-    assert np.abs(np.array(texts["masses"]) - table.column("mass each")).max() <= 0.000001
+    assert np.abs(np.array(texts["masses"])[ours] - table.column("mass each")).max() <= 0.000001
     assert np.abs(sizes[:, 1] / 1e4 - table.column("surface each")).max() <= 0.00005001
+
+
+def test_every_part_travels_with_mass_and_surface_of_its_true_shape(name):
+    shed, (texts, columns) = cast.shed_of(name), data_of(name)
+    shown = [(mark, texts["roles"][role][0], grade) for mark, role, _, grade, *_ in texts["parts"]]
+    assert shown == [(part.mark, part.role.word, part.grade) for part in shed.parts]
+    assert np.abs(np.subtract(texts["masses"], [part.shape.mass for part in shed.parts])).max() <= 0.000001
+    surfaces = [part.shape.surface / 1e6 for part in shed.parts]
+    assert np.abs(columns["part sizes"][:, 1] / 1e4 - surfaces).max() <= 0.00005001
 
 
 def test_roles_have_the_colours_of_the_palette(name):
     texts, _ = data_of(name)
-    assert {word: tuple(colour) for word, colour in texts["roles"]} == {
-        role.word: colour
+    assert {word: (tuple(colour), sort) for word, colour, sort in texts["roles"]} == {
+        role.word: (colour, role.sort.value)
         for role, colour in PALETTE.items()
         if role in {part.role for part in cast.shed_of(name).parts}
     }
@@ -102,6 +126,10 @@ def test_joints_travel_with_kind_pieces_and_ends(name):
     for number, run in enumerate(shed.joints):
         assert columns[f"joint {number} pieces"].tolist() == run.pieces.tolist()
         assert columns[f"joint {number} at"].tolist() == run.at.tolist()
+        if run.fittings.size:
+            assert columns[f"joint {number} fittings"].tolist() == run.fittings.tolist()
+        else:
+            assert f"joint {number} fittings" not in columns
 
 
 def test_assemblies_and_grid_travel(name):
@@ -125,17 +153,19 @@ def test_meshes_are_closed_and_hold_the_steel_of_their_parts(name):
             stack[first : first + count] for stack, first, count in zip(stacks, used, counts[:2], strict=True)
         )
         used += counts[:2]
-        assert counts[2] == part.bar.section.designation.startswith(("RD", "CHS"))
+        is_round = isinstance(part.shape, Bar) and part.shape.section.designation.startswith(("RD", "CHS"))
+        assert counts[2] == (2 if isinstance(part.shape, BoltGroup) else is_round)
         halves = np.vstack([triangles[:, [0, 1]], triangles[:, [1, 2]], triangles[:, [2, 0]]])
         there = {tuple(half) for half in halves.tolist()}
         assert len(there) == len(halves)
         assert there == {(b, a) for a, b in there}  # each edge once in each direction: closed
         a, b, c = (points[triangles[:, corner]] for corner in range(3))
         volume = np.einsum("ij,ij->i", a, np.cross(b, c)).sum() / 6
-        # Chords cut the arcs off: thin pipes of ten chords lose most, a fifteenth.
-        assert volume == pytest.approx(part.bar.volume, rel=0.07)
-        assert points[:, 0].min() == pytest.approx(0, abs=0.006)
-        assert points[:, 0].max() == pytest.approx(part.bar.length, abs=0.006)
+        # Chords cut the arcs off: thin pipes of ten chords lose most, a fifteenth. Bolts have their bores filled.
+        solid_bolts = coarse(part.shape)
+        assert volume == pytest.approx(solid_bolts.volume, rel=0.07)
+        reach = np.subtract(*part.shape.box[::-1])
+        assert np.abs(np.ptp(points, axis=0) - reach).max() < 0.0101  # points are rounded to hundredths
     assert used.tolist() == [len(stack) for stack in stacks]
 
 
@@ -239,7 +269,13 @@ def test_every_control_says_what_it_is():
     for element in elements:
         if element.name in ("input", "select", "canvas", "nav", "aside", "dialog"):
             named = {"aria-label", "aria-labelledby"} & set(element.attributes)
-            wrapped = element.attributes.get("id") in ("theme", "colour-by", "grid-on")
+            wrapped = element.attributes.get("id") in (
+                "theme",
+                "colour-by",
+                "grid-on",
+                "fittings-on",
+                "fasteners-on",
+            )
             assert named or wrapped, element
             labelled.add(element.name)
         if element.name == "button":

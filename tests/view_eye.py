@@ -15,9 +15,10 @@ import numpy as np
 from numpy.typing import NDArray
 from view_browser import Sight
 
-from shedbim.model.bars import Bar
+from shedbim.model.shapes import Shape
 from shedbim.model.shed import Shed
 from shedbim.model.shells import shell
+from shedbim.writers.pictures.extents import middle_line
 from shedbim.writers.pictures.raster import Canvas
 
 __all__ = ["EMPTY", "UNSURE", "Eye", "eye_of", "seen", "spots", "steady"]
@@ -83,7 +84,7 @@ def seen(eye: Eye, shed: Shed, shown: Iterable[int] | None = None, planes: Seque
     for part in np.unique(shed.pieces.part[pieces]):
         ours = pieces[shed.pieces.part[pieces] == part]
         place = shed.pieces.placement[ours]
-        local = _triangles(shed.parts[part].bar)
+        local = _triangles(shed.parts[part].body)
         moved = np.einsum("nij,tvj->ntvi", place[:, :, :3], local) + place[:, None, None, :, 3]
         corners.append(moved.reshape(-1, 3, 3))
         owners.append(np.repeat(ours, len(local)))
@@ -129,14 +130,14 @@ def spots(found: Ints, count: int, reach: int = 1) -> dict[int, tuple[int, int]]
 def _axes(shed: Shed, pieces: Ints) -> Floats:
     """The ends (n, 2, 3) of the axes of pieces in building axes."""
     place = shed.pieces.placement[pieces]
-    length = np.array([part.bar.length for part in shed.parts])[shed.pieces.part[pieces]]
-    return np.stack([place[:, :, 3], place[:, :, 3] + place[:, :, 0] * length[:, None]], axis=1)
+    lines = np.array([middle_line(part.body) for part in shed.parts])[shed.pieces.part[pieces]]
+    return np.einsum("nij,ntj->nti", place[:, :, :3], lines) + place[:, None, :, 3]
 
 
 @cache
-def _triangles(bar: Bar) -> Floats:
-    """Corners (t, 3, 3) of the mesh of a bar in its own frame."""
-    mesh = shell(bar, 0.5)
+def _triangles(shape: Shape) -> Floats:
+    """Corners (t, 3, 3) of the mesh of a shape in its own frame."""
+    mesh = shell(shape, 0.5)
     return mesh.points[mesh.triangles]
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import colorsys
+from collections import Counter
 from collections.abc import Sequence
 from functools import cache
 
@@ -11,11 +12,17 @@ import numpy as np
 from picture_scenes import block, scene
 from view_browser import Sight
 
+from shedbim.model.bars import Bar
+from shedbim.model.bolt_groups import BoltGroup
 from shedbim.model.joints import At
+from shedbim.model.plates import Plate
 from shedbim.model.roles import Role
+from shedbim.model.shapes import Shape
 from shedbim.model.shed import Shed
 from shedbim.sections.profiles import Flat, Hollow
+from shedbim.writers.described import described
 from shedbim.writers.imprint import Imprint
+from shedbim.writers.pictures.extents import middle_line
 from shedbim.writers.view.page import page
 
 __all__ = [
@@ -56,7 +63,7 @@ def page_text(shed: Shed, **more: Sequence[object]) -> str:
 @cache
 def page_of(name: str) -> str:
     """The page of a specimen of the cast."""
-    return page_text(cast.shed_of(name))
+    return page_text(cast.members_of(name))
 
 
 def keys_of(shed: Shed, **wanted: str) -> list[str]:
@@ -64,7 +71,7 @@ def keys_of(shed: Shed, **wanted: str) -> list[str]:
     found = []
     for key, index in zip(shed.pieces.keys, shed.pieces.part, strict=True):
         part = shed.parts[index]
-        has = {"mark": part.mark, "section": part.bar.section.designation, "role": part.role.word}
+        has = {"mark": part.mark, "section": described(part.shape), "role": part.role.word}
         if all(has[name] == value for name, value in wanted.items()):
             found.append(key)
     return sorted(found)
@@ -101,21 +108,52 @@ def assert_card_tells_of(sight: Sight, shed: Shed, piece: int) -> None:
     assert sight.text("#piece-key") == shed.pieces.keys[piece]
     assert sight.text("#piece-mark").split() == [part.mark, *part.role.word.split()]
     pairs = dict(sight.ask(_CELLS, "#details-body .pairs > div"))
-    assert pairs["section"] == part.bar.section.designation
     assert (pairs["grade"], pairs.get("finish", "")) == (part.grade, part.finish)
-    assert is_rounded(pairs["length"].removesuffix(" mm"), part.bar.length, 1)
-    assert is_rounded(pairs["mass"].removesuffix(" kg"), part.bar.mass)
-    assert is_rounded(pairs["surface"].removesuffix(" m²"), part.bar.surface / 1e6)
+    assert is_rounded(pairs["mass"].removesuffix(" kg"), part.shape.mass)
     assert number(pairs["pieces of this mark"]) == shed.quantities[shed.pieces.part[piece]]
+    _assert_sizes(pairs, part.shape)
     place = shed.pieces.placement[piece]
-    ends = place[:, 3], place[:, 3] + place[:, 0] * part.bar.length
-    for name, end in zip(("from, mm", "to, mm"), ends, strict=True):
+    ends = middle_line(part.body) @ place[:, :3].T + place[:, 3]
+    places = {"from, mm": ends[0], "to, mm": ends[1]}
+    if not isinstance(part.shape, Bar):
+        places = {"middle, mm": ends.mean(axis=0)}
+    for name, end in places.items():
         shown = [number(word) for word in pairs[name].split(", ")]
         assert np.abs(np.subtract(shown, end)).max() <= 0.51, (name, shown, end)
     card = " ".join(sight.page.inner_text("#details-body").split())
     assert " ".join(_assembly_words(shed, piece)) in card
     lines = sight.ask("[...document.querySelectorAll('#piece-joints > li')].map((line) => line.innerText)")
     assert sorted(" ".join(line.split()) for line in lines) == sorted(_joint_lines(shed, piece))
+
+
+def _assert_sizes(pairs: dict[str, str], shape: Shape) -> None:
+    """The card says what a shape is and how large, holes, thickness and grip included, and has no more sizes."""
+
+    def millimetres(name: str, value: float) -> None:
+        assert is_rounded(pairs.pop(name).removesuffix(" mm"), value, 1)
+
+    pairs = dict(pairs)
+    if isinstance(shape, BoltGroup):
+        fastener = shape.fastener
+        assert pairs.pop("fastener") == fastener.designation
+        counts = (pairs.pop(name) for name in ("in this group", "nuts each", "washers each"))
+        assert [number(text) for text in counts] == [shape.count, fastener.nuts, sum(fastener.washers)]
+        millimetres("grip", fastener.grip)
+        if fastener.length:
+            millimetres("length", fastener.length)
+    else:
+        assert number(pairs.pop("holes", "0")) == len(shape.holes)
+        assert is_rounded(pairs.pop("surface").removesuffix(" m²"), shape.surface / 1e6)
+        if isinstance(shape, Plate):
+            assert pairs.pop("plate") == described(shape)
+            millimetres("thickness", shape.thickness)
+            sides = pairs.pop("cut from").removesuffix(" mm").split(" × ")
+            assert all(is_rounded(side, value, 1) for side, value in zip(sides, shape.size, strict=True))
+        else:
+            assert pairs.pop("section") == described(shape)
+            millimetres("length", shape.length)
+    sizes = {"section", "plate", "fastener", "length", "thickness", "grip", "holes", "surface", "cut from"}
+    assert not sizes & pairs.keys()
 
 
 def _assembly_words(shed: Shed, piece: int) -> list[str]:
@@ -143,5 +181,19 @@ def _joint_lines(shed: Shed, piece: int) -> list[str]:
             for other in run.pieces[row]:
                 if other != piece:
                     words += [shed.pieces.keys[other], shed.parts[shed.pieces.part[other]].mark]
-            lines.append(" ".join(words))
+            lines.append(" ".join(words + _with(shed, run.fittings[row] if run.fittings.size else ())))
+        for row, cell in np.argwhere(run.fittings == piece):
+            words = ["in", run.kind.word]
+            if run.kind.fastening != "none":
+                words.append(run.kind.fastening)
+            for other in run.pieces[row]:
+                words += [shed.pieces.keys[other], shed.parts[shed.pieces.part[other]].mark]
+            lines.append(" ".join(words + _with(shed, np.delete(run.fittings[row], cell))))
     return lines
+
+
+def _with(shed: Shed, fittings: Sequence[int]) -> list[str]:
+    """The marks of fittings, each once with how many there are."""
+    marks = Counter(shed.parts[shed.pieces.part[each]].mark for each in fittings)
+    texts = [f"{count} × {mark}" if count > 1 else mark for mark, count in marks.items()]
+    return ["with", ", ".join(texts)] if texts else []

@@ -9,6 +9,7 @@ from pathlib import Path
 from textwrap import wrap
 
 from shedbim.cli.speech import complain, say, show_json, stage_line
+from shedbim.model.shed import Shed
 from shedbim.outputs import OUTPUTS
 from shedbim.pipeline import BuildResult, build
 from shedbim.writers.imprint import CAUTIONS
@@ -24,6 +25,7 @@ def run(
     file: Path,
     out: Path | None,
     schema: str,
+    level: str,
     outputs: tuple[str, ...],
     moment: datetime | None,
     *,
@@ -43,6 +45,7 @@ def run(
         file,
         out,
         schema=schema,
+        level=level,
         outputs=outputs,
         timestamp=moment or datetime.now(UTC),
         progress=stage_line if watched else None,
@@ -83,10 +86,19 @@ def report(result: BuildResult) -> Iterator[str]:
     if missed := summary(shed, result.imprint)["largest_node_eccentricity"]:
         yield ""
         yield f"  axes at truss nodes miss the chord axis by {abs(missed['mm']):.0f} mm at most: {missed['pieces'][0]}"
-    yield from _listed("Left open, so by default:", [f"{field}: {value}" for field, value in shed.defaults])
+    yield from _listed("Left open, so by default:", _default_lines(shed))
     yield from _listed("Notes:", shed.notes)
     yield from _listed("Cautions:", CAUTIONS)
     yield from _listed(f"Written to {result.folder}:", _file_lines(result))
+
+
+def _default_lines(shed: Shed) -> list[str]:
+    """What was left open: each field, but those of the connections in one line, for they are many."""
+    inside = [field for field, _ in shed.defaults if field.startswith("connections")]
+    lines = [f"{field}: {value}" for field, value in shed.defaults if field not in inside]
+    if inside:
+        lines.append(f"connections: {len(inside)} fields by rule; `shedbim fields connections` lists them")
+    return lines
 
 
 def _file_lines(result: BuildResult) -> list[str]:

@@ -12,12 +12,16 @@ import typer
 from shedbim.cli.guard import EXIT_CODES, guard
 from shedbim.cli.speech import say
 from shedbim.errors import OutputError
-from shedbim.outputs import LABEL_NAMES, OUTPUTS, SCHEMAS, VIEW_NAMES, chosen
+from shedbim.outputs import LABEL_NAMES, LEVEL_NAMES, OUTPUTS, SCHEMAS, VIEW_NAMES, chosen
 from shedbim.version import __version__
 
 __all__ = ["app"]
 
 _ONLY_NAMES = ", ".join(dict.fromkeys(word for row in OUTPUTS for word in (row.group, row.name)))
+_LEVEL_HELP = (
+    "What models and pictures show: coordination (members trimmed, plates, heads and nuts of bolts), "
+    "fabrication (every bolt and hole), outline (members alone)."
+)
 _CODES = "\n".join(f"  {code:<5}{meaning}" for code, meaning in EXIT_CODES)
 
 app = typer.Typer(
@@ -67,6 +71,13 @@ def _schema_name(text: str) -> str:
     raise typer.BadParameter(f"no schema {text!r}; there are: {', '.join(SCHEMAS)}")
 
 
+def _level_name(text: str) -> str:
+    """Give the name of a level of detail, whatever the case it is given in."""
+    if text.lower() not in LEVEL_NAMES:
+        raise typer.BadParameter(f"no level of detail {text!r}; there are: {', '.join(LEVEL_NAMES)}")
+    return text.lower()
+
+
 def _names(text: str) -> tuple[str, ...]:
     """Give the output names in a list with commas."""
     names = tuple(word.strip() for word in text.split(",") if word.strip())
@@ -101,6 +112,7 @@ def build(
     schema: str = typer.Option(
         SCHEMAS[0], metavar="NAME", help=f"Schema of the model file: {', '.join(SCHEMAS)}."
     ),
+    level: str = typer.Option(LEVEL_NAMES[0], metavar="NAME", help=_LEVEL_HELP),
     only: str = typer.Option("", metavar="NAMES", help=f"Only these outputs, with commas: {_ONLY_NAMES}."),
     time_stamp: str = typer.Option("", metavar="ISO", help="Time written into the outputs.  [default: now]"),
     json: bool = typer.Option(False, "--json", help="Print one JSON object and nothing else."),
@@ -115,16 +127,17 @@ def build(
     Examples:
       shedbim build store.yaml
       shedbim build store.yaml --out issue/P02 --schema IFC4X3_ADD2
+      shedbim build store.yaml --level fabrication
       shedbim build store.yaml --only schedules,summary
       shedbim build store.yaml --time-stamp 2024-05-17T09:30:00Z
       shedbim build store.yaml --json
     """
-    model_schema, names = _schema_name(schema), _names(only)
+    model_schema, detail, names = _schema_name(schema), _level_name(level), _names(only)
     moment = _moment(time_stamp) if time_stamp else None
     with guard():
         from shedbim.cli.build_command import run as run_build
 
-        run_build(file, out, model_schema, names, moment, as_json=json, quiet=quiet)
+        run_build(file, out, model_schema, detail, names, moment, as_json=json, quiet=quiet)
 
 
 @app.command(short_help="Draw a picture of the shed.")
@@ -145,6 +158,7 @@ def picture(
     highlight: list[str] = typer.Option(
         None, metavar="KEY", help="Key or pattern of pieces to show in red, all others pale; may be repeated."
     ),
+    level: str = typer.Option(LEVEL_NAMES[0], metavar="NAME", help=_LEVEL_HELP),
     caption: bool = typer.Option(True, help="Write project and view in the corner."),
     width: int = typer.Option(1600, min=100, max=8000, help="Pixels across."),
     height: int = typer.Option(1000, min=100, max=8000, help="Pixels down."),
@@ -161,6 +175,7 @@ def picture(
       shedbim picture store.yaml --view place --of 0,7000,9000 --highlight 2/column/A
       shedbim picture store.yaml --view plan --width 2400 --labels none --no-caption
     """
+    detail = _level_name(level)
     with guard():
         from shedbim.cli.picture_command import run as run_picture
 
@@ -173,6 +188,7 @@ def picture(
             height=height,
             labels=labels or None,
             highlight=tuple(highlight or ()),
+            level=detail,
             caption=caption,
         )
 

@@ -8,6 +8,7 @@ from typing import BinaryIO
 
 from shedbim.cli.speech import say
 from shedbim.errors import OutputError
+from shedbim.model.levels import at_level
 from shedbim.outputs import PICTURE_ENDINGS
 from shedbim.pipeline import read_and_expand
 from shedbim.saving import save
@@ -26,6 +27,7 @@ def run(
     height: int,
     labels: str | None,
     highlight: tuple[str, ...],
+    level: str,
     caption: bool,
 ) -> None:
     """Draw a view of the shed in a description file.
@@ -39,6 +41,7 @@ def run(
         height: pixels down.
         labels: what is written on it; None for what the view has by default.
         highlight: keys or patterns of pieces that stand out.
+        level: how much it shows, one of ``LEVEL_NAMES``.
         caption: whether project and view are written in the corner.
 
     Raises:
@@ -51,7 +54,7 @@ def run(
         raise OutputError(f"a picture is a file that ends in {endings}, not {target.name!r}")
     _, shed, _ = read_and_expand(file)
     data = render_view(
-        shed,
+        at_level(shed, level),
         view,
         of,
         form=form,

@@ -7,6 +7,7 @@ from uuid import UUID, uuid5
 
 from shedbim import units
 from shedbim.description.bracing import Bracing, EavesStrut, RoofBracing, Struts, Ties, WallBracing
+from shedbim.description.connections import BoltOptions, Connections
 from shedbim.description.gable_systems import GABLE_SYSTEMS, GableSystem, RafterGable, SameGable
 from shedbim.description.roof_systems import ROOF_SYSTEMS, RafterRoof, RoofSystem, TrussRoof
 from shedbim.description.secondary import Purlins, Rails
@@ -31,9 +32,11 @@ from shedbim.sections.section import Section
 __all__ = [
     "MOST_BAYS",
     "MOST_SPANS",
+    "BoltOptions",
     "Bracing",
     "Building",
     "Columns",
+    "Connections",
     "Description",
     "EavesStrut",
     "Finish",
@@ -60,6 +63,10 @@ MOST_BAYS = 500
 
 #: Scope of the ids of projects that have none of their own; a random UUID made once for this program.
 _NAMELESS = UUID("6e2b1a5c-93c4-4a0f-8d57-2f0c7be1d964")
+
+#: First purlin from the column line, and its least distance to the edge of a tubular column's head, mm (common
+#: practice, values from memory).
+_EAVES_OFFSET, _HEAD_EDGE = 150.0, 45.0
 
 _Base = Literal["pinned", "fixed"]
 _Finish = Literal["painted", "galvanized", "primed", "none"]
@@ -147,6 +154,23 @@ class Finish(Options):
     secondary: Annotated[_Finish, Choice(*get_args(_Finish))] = default(
         "galvanized", "finish of purlins, rails and sag bars"
     )
+    paint: Annotated[str, Text(longest=120)] = default(
+        "coating system to ISO 12944-5 for corrosivity C3, durability medium", "coating of painted steel"
+    )
+    zinc: Annotated[str, Text(longest=120)] = default(
+        "hot dip galvanized to EN ISO 1461", "zinc coating of galvanized frames, gables and bracing"
+    )
+
+    @property
+    def meanings(self) -> tuple[tuple[str, str], ...]:
+        """Each finish that steel of this building may have, and what it stands for."""
+        return (
+            ("painted", self.paint),
+            ("galvanized", self.zinc),
+            ("primed", "shop primer only"),
+            ("plated", "zinc plated fasteners"),
+            ("none", "bare steel, or weathering steel where the grade says so"),
+        )
 
 
 class Description(Options):
@@ -159,6 +183,7 @@ class Description(Options):
     purlins: Purlins = required("secondary steel of the roof")
     rails: Rails = required("secondary steel of the walls")
     bracing: Bracing = required("bracing of roof and walls")
+    connections: Connections = default({}, "how the steel is fastened together")
     finish: Finish = default({}, "protection of the steel")
 
     @property
@@ -167,6 +192,20 @@ class Description(Options):
         if self.project.id is not None:
             return UUID(self.project.id)
         return uuid5(_NAMELESS, f"{self.project.name}\n{self.project.number}")
+
+    @property
+    def purlin_eaves_offset(self) -> float:
+        """The first purlin from the column line at the eaves, along the slope, mm.
+
+        By rule 150 mm; beside the face of a tubular column is the bracket that the roof steel is bolted to,
+        so there it is over the column's head, clear of its edge.
+        """
+        if self.purlins.eaves_offset is not None:
+            return self.purlins.eaves_offset
+        columns = self.frames.columns.section
+        if isinstance(columns.profile, IShape):
+            return _EAVES_OFFSET
+        return max(min(_EAVES_OFFSET, (columns.height / 2 - _HEAD_EDGE) // 10 * 10), 0.0)
 
     @property
     def warnings(self) -> tuple[str, ...]:

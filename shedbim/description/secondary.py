@@ -13,6 +13,7 @@ from shedbim.fields import (
     SectionOf,
     WholeOr,
     default,
+    left_out,
     required,
 )
 from shedbim.sections.profiles import LippedC, LippedZ, Round
@@ -36,8 +37,9 @@ class Purlins(Options):
     section: Annotated[Section, _SECONDARY] = required("section of the purlins")
     grade: Annotated[str, COLD_FORMED] = default("S350GD", "steel grade of the purlins")
     spacing: Annotated[float, _SPACING] = default("1.8 m", "greatest distance of purlins along the slope")
-    eaves_offset: Annotated[float, _OFFSET] = default(
-        "150 mm", "first purlin from the column line at the eaves, along the slope"
+    eaves_offset: Annotated[float, _OFFSET] | None = left_out(
+        "150 mm, or over the head of a tubular column",
+        "first purlin from the column line at the eaves, along the slope",
     )
     ridge_offset: Annotated[float, _OFFSET] = default(
         "150 mm", "last purlin from the ridge line, along the slope"

@@ -16,6 +16,7 @@ from shedbim.expand.layout import lay_out
 from shedbim.expand.notes import notes
 from shedbim.expand.purlins import purlins
 from shedbim.expand.rails import gable_rails, rail_depth, side_rails
+from shedbim.expand.stays import stays
 from shedbim.model.shed import Georeference, ProjectInfo, Shed
 
 __all__ = ["expand"]
@@ -40,8 +41,9 @@ def expand(description: Description) -> Shed:
         gable_rails(description, layout, ends[0], outward=-1),
         gable_rails(description, layout, ends[1], outward=1),
         *bracing(description, layout, inner, ends),
+        *stays(description, layout, inner),
     ]
-    made = assemble(runs)
+    made = assemble(runs, description.connections)
     site = description.site
     return Shed(
         project=ProjectInfo(
@@ -59,6 +61,7 @@ def expand(description: Description) -> Shed:
         assembly_types=made.assembly_types,
         assemblies=made.assemblies,
         joints=made.joints,
+        finishes=description.finish.meanings,
         defaults=defaults_taken(description),
         notes=notes(description),
     )

@@ -12,7 +12,7 @@ from shedbim.description.models import Description
 from shedbim.expand.kits import Kit, Run
 from shedbim.expand.layout import Layout
 
-__all__ = ["Bay", "braced_bays", "runs_of_bays"]
+__all__ = ["Bay", "braced_bays", "is_odd", "runs_of_bays"]
 
 _NANOMETRE = 1e-6
 
@@ -22,23 +22,37 @@ _BRACED_EVERY = 50_000.0
 
 @dataclass(frozen=True)
 class Bay:
-    """What the kit of a bay depends on: its length and whether it is the first or the last."""
+    """What the kit of a bay depends on: its length, whether it is the first or the last, and its turn.
+
+    ``odd``: of bays that take turns, whether it is the first, the third and so on; True of all that do not.
+    """
 
     length: float
     first: bool
     last: bool
+    odd: bool = True
 
 
 def runs_of_bays(
-    layout: Layout, kit: Callable[[Bay], Kit], chosen: Callable[[int], bool] = lambda _: True
+    layout: Layout,
+    kit: Callable[[Bay], Kit],
+    chosen: Callable[[int], bool] = lambda _: True,
+    *,
+    in_turns: bool = False,
 ) -> list[Run]:
-    """Give the runs of the bays with a ``chosen`` number (0 for the first), one run for each kind of bay."""
+    """Give the runs of the bays with a ``chosen`` number (0 for the first), one run for each kind of bay.
+
+    ``in_turns``: odd and even bays are two kinds.
+    """
     lengths = layout.bay_lengths
     count = len(lengths)
     alike: dict[Bay, list[int]] = {}
     for number, length in enumerate(lengths):
         if chosen(number):
-            bay = Bay(round(length / _NANOMETRE) * _NANOMETRE, number == 0, number == count - 1)
+            bay = Bay(
+                round(length / _NANOMETRE) * _NANOMETRE, number == 0, number == count - 1,
+                not in_turns or is_odd(number),
+            )  # fmt: skip
             alike.setdefault(bay, []).append(number)
     numbers, labels = layout.grid.numbers, layout.bay_labels
     return [
@@ -52,6 +66,11 @@ def runs_of_bays(
         )
         for bay, each in alike.items()
     ]
+
+
+def is_odd(number: int) -> bool:
+    """Whether a bay (0 for the first) is the first, the third and so on."""
+    return number % 2 == 0
 
 
 def braced_bays(description: Description, layout: Layout) -> frozenset[int]:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from itertools import pairwise
-from math import ceil
+from math import ceil, hypot
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,13 +15,15 @@ from shedbim.expand.bays import Bay, braced_bays, runs_of_bays
 from shedbim.expand.braces import BraceEnd, Panel, brace_reach, braces, strut_reach
 from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, POST_HEAD_GAP, STRUT_END_GAP
 from shedbim.expand.frame import Frame
-from shedbim.expand.gables import post_places
 from shedbim.expand.impossible import impossible
+from shedbim.expand.joints.cap import cap_thickness
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout, Pitched
 from shedbim.expand.purlins import under_ridge_bars
+from shedbim.expand.roof_places import brace_places
 from shedbim.expand.set_out import even_places
 from shedbim.expand.sticks import stick
+from shedbim.expand.truss_chords import bar_over
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 from shedbim.sections.profiles import IShape
@@ -143,13 +145,14 @@ class _Maker:
         return self.columns.width / 2 + STRUT_END_GAP
 
     def eaves_level(self, column: int) -> float:
-        """Level of the strut at a column line: in the plane of the roof bracing, under the column's top."""
+        """Level of the strut at a column line: in the plane of the roof bracing, under the column's cap."""
         strut = self.options.eaves_strut.section
         pitched = self.layout.slopes_at_column(column)
         x = self.layout.grid.x[column]
         in_plane = min(float(p.point(x, self.depth())[2]) for p in pitched)
         steepest = max(abs(float(p.direction[2] / p.direction[0])) for p in pitched)
-        under = self.layout.column_top(column) - strut.height / 2 - steepest * strut.width / 2
+        cap = cap_thickness(self.columns, self.description.connections.caps) * hypot(1.0, steepest)
+        under = self.layout.column_top(column) - cap - strut.height / 2 - steepest * strut.width / 2
         return min(in_plane, under)
 
     def eaves_struts(self) -> None:
@@ -177,36 +180,24 @@ class _Maker:
             chosen = sorted({1 + int(np.abs(inner - x).argmin()) for x in wanted if len(inner)})
             for node in chosen:
                 x, z = here.bottom_nodes[node], here.bottom_levels[node]
-                number = 0 if len(here.bottom_chords) == 1 or x <= self.ridge_x(span) else 1
                 stop = here.bottom_chord.width / 2 + STRUT_END_GAP
-                carriers = ((here.bottom_chords[number], stop), (there.bottom_chords[number], stop))
+                carriers = tuple(
+                    (bar_over(made.bottom_chords, x).on_side(far=far), stop)
+                    for made, far in ((here, True), (there, False))
+                )
                 self.strut(
                     f"bottom chord tie/{span}/{node}", Role.TIE, options.section, options.grade,
                     np.array([x, 0.0, z]), carriers,
                 )  # fmt: skip
 
-    def ridge_x(self, span: str) -> float:
-        """x of the ridge over a span."""
-        number = self.layout.span_names.index(span)
-        return self.layout.slopes[self.layout.span_slopes(number)[0]].slope.x1
-
     # Roof
-
-    def roof_places(self, pitched: Pitched) -> list[float]:
-        """x of the bracing nodes of a slope: over the gable posts, or in as many panels as asked."""
-        s = pitched.slope
-        if self.options.roof.panels is not None:
-            n = self.options.roof.panels
-            return [s.x0 + (s.x1 - s.x0) * k / n for k in range(n + 1)]
-        posts = [x for x in post_places(self.description, self.layout) if s.x0 + 1.0 < x < s.x1 - 1.0]
-        return [s.x0, *posts, s.x1]
 
     def roof(self) -> None:
         """Braces over every slope, and struts at the nodes that no column line holds."""
         options = self.options.roof
         self.clear_of_posts()
         for number, pitched in enumerate(self.layout.slopes):
-            places = self.roof_places(pitched)
+            places = brace_places(self.description, self.layout, pitched)
             for k, (x0, x1) in enumerate(pairwise(places), start=1):
                 from_low = k if pitched.slope.rises else len(places) - k
                 panel = self.roof_panel(number, pitched, k, from_low, x0, x1)
@@ -237,8 +228,8 @@ class _Maker:
         options = self.options.struts
         _, at = self.strut_at_node(x, -1)
         carriers = tuple(
-            (frame.carriers[number], frame.carrier.width / 2 + STRUT_END_GAP)
-            for frame in (self.frames.first, self.frames.second)
+            (frame.carrier_at(number, x, far=far), frame.carrier.width / 2 + STRUT_END_GAP)
+            for frame, far in ((self.frames.first, True), (self.frames.second, False))
         )
         self.strut(f"strut/{pitched.name}/{k}", Role.STRUT, options.section, options.grade, at, carriers)
 
@@ -266,7 +257,9 @@ class _Maker:
                     beside = brace_reach(self.options.walls.section) + BRACE_SET_BACK
                     planes.append((middle + across * beside, across))
                 carrier = (
-                    f"column/{self.layout.grid.letters[column]}" if column >= 0 else frame.carriers[number]
+                    f"column/{self.layout.grid.letters[column]}"
+                    if column >= 0
+                    else frame.carrier_at(number, x, far=line == FIRST_LINE)
                 )
                 ends[line, x] = BraceEnd(at, Meets(carrier, At.ALONG, line), tuple(planes))
         # A slope that falls to the right is braced as the mirror image of one that rises.

@@ -7,21 +7,15 @@ fabricator's own standards replace.
 from __future__ import annotations
 
 __all__ = [
-    "APEX_SET_BACK",
     "BASE_NODE",
     "BRACE_SET_BACK",
     "CROSSING_GAP",
-    "END_PLATE",
     "GUSSET",
     "POST_HEAD_GAP",
     "STRUT_END_GAP",
     "WEB_TO_CHORD_END",
 ]
 
-#: Chord or rafter end to column face: a 20 mm end plate (common practice).
-END_PLATE = 20.0
-#: Rafter end to the plane through the ridge: a 20 mm end plate on each side (common practice).
-APEX_SET_BACK = 20.0
 #: Toe of the first web to the sawn end of the chord: room for its weld (common practice).
 WEB_TO_CHORD_END = 10.0
 #: Thickness of the plate between two crossing angles (common practice: 8 to 12 mm).

@@ -14,27 +14,45 @@ from shedbim.expand.sticks import along, stick
 from shedbim.geometry.placements import cross
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
-from shedbim.sections.profiles import LippedC
+from shedbim.sections.profiles import LippedC, LippedZ
 from shedbim.sections.section import Section
 
-__all__ = ["Course", "Stretch", "course_bar", "line_joint", "sag_bar", "web_faces"]
+__all__ = [
+    "STAGGER",
+    "Course",
+    "Stretch",
+    "box_corners",
+    "course_bar",
+    "faces_on_line",
+    "lap_joints",
+    "line_joint",
+    "next_bar",
+    "sag_bar",
+    "sag_bar_places",
+    "web_faces",
+    "web_middle",
+]
 
 Array = NDArray[np.float64]
 
 #: Sag bars of neighbouring courses pass each other at the web they share: this far off their row, to
 #: either side (common practice: hole lines 50 mm apart).
-_STAGGER = 25.0
+STAGGER = 25.0
 
 
 @dataclass(frozen=True, eq=False)
 class Course:
-    """One line of purlins or rails: a point (3,) of its centroid line, the way its flanges point, its outward face.
+    """One line of purlins or rails: a point (3,) of it, the way its upper flanges point, its outward face.
+
+    A C has its centroid on the line, a Z the middle of its web at half its depth.
 
     Attributes:
         name: for example ``purlin/A-B/1/4``.
         open_to: unit vector (3,) that the section's y axis takes: up the slope, or down the wall.
         outward: unit vector (3,) that the section's z axis takes: away from the steel that carries it.
         run: unit vector (3,) along the line, towards growing y or x.
+        aside: how far bars lie off the line along ``open_to``, and against ``outward``, mm: see ``laps``.
+        turned: whether bars are turned half round their axis, the lower flange up.
     """
 
     name: str
@@ -42,6 +60,8 @@ class Course:
     open_to: Array
     outward: Array
     run: Array
+    aside: float = 0.0
+    turned: bool = False
 
     @cached_property
     def forwards(self) -> bool:
@@ -61,11 +81,31 @@ def course_bar(
     course: Course, stretch: Stretch, section: Section, role: Role, grade: str, finish: str
 ) -> Member:
     """Give the bar of one stretch of a course."""
-    a, b = course.point + course.run * stretch.start, course.point + course.run * stretch.end
-    bar, place = (
-        stick(section, a, b, course.outward) if course.forwards else stick(section, b, a, course.outward)
-    )
+    axis = course.point + _off_line(course, section)
+    a, b = axis + course.run * stretch.start, axis + course.run * stretch.end
+    up = -course.outward if course.turned else course.outward
+    bar, place = stick(section, a, b, up) if course.forwards else stick(section, b, a, up)
     return Member(course.name, role, bar, place, grade, finish)
+
+
+def _off_line(course: Course, section: Section) -> Array:
+    """Where the centroid of a bar is, from the line of its course (3,)."""
+    y, z = web_middle(section)
+    side = -1.0 if course.turned else 1.0
+    off: Array = course.open_to * (course.aside - side * y) - course.outward * (course.aside + side * z)
+    return off
+
+
+def box_corners(course: Course, section: Section) -> Array:
+    """Give the corners (4, 3) of a bar's section where its course begins."""
+    low_y, low_z, high_y, high_z = section.outline.bounds
+    side = -1.0 if course.turned else 1.0
+    axis = course.point + _off_line(course, section)
+    return np.array([
+        axis + course.open_to * (y * side) + course.outward * (z * side)
+        for y in (low_y, high_y)
+        for z in (low_z, high_z)
+    ])  # fmt: skip
 
 
 def _near_end(course: Course) -> At:
@@ -85,6 +125,7 @@ def line_joint(
     near: bool,
     overhang: float = 0.0,
     following: Meets | None = None,
+    beside: Meets | None = None,
 ) -> list[Meeting]:
     """Give the joint of a course with what carries it at ``place`` along the line, and a free end beyond it.
 
@@ -92,20 +133,37 @@ def line_joint(
         near: whether it is the end where the bar begins along its line.
         overhang: how far the bar runs on beyond the carrier, mm.
         following: the next bar of the course, butted here.
+        beside: of a pair of angles that carries the course, the other one.
     """
     own_end = _near_end(course) if near else _far_end(course)
+    more = () if beside is None else (beside,)
     point = course.point + course.run * place
     if overhang:
-        held = Meeting(kind, (carrier, Meets(course.name, At.ALONG)), point)
+        held = Meeting(kind, (carrier, Meets(course.name, At.ALONG), *more), point)
         beyond = point + course.run * (-overhang if near else overhang)
         return [held, Meeting(JointKind.FREE, (Meets(course.name, own_end),), beyond)]
-    pieces = (carrier, Meets(course.name, own_end))
-    return [Meeting(kind, pieces if following is None else (*pieces, following), point)]
+    butted = () if following is None else (following,)
+    return [Meeting(kind, (carrier, Meets(course.name, own_end), *butted, *more), point)]
 
 
-def next_bar(course: Course) -> Meets:
-    """Give the piece that continues a course in the next bay, by the end that is butted."""
-    return Meets(course.name, _near_end(course), NEXT_BAY)
+def lap_joints(course: Course, carrier: Meets, place: float, half: float) -> list[Meeting]:
+    """Give the joints where a course is lapped at ``place`` along the line, ``half`` mm to either side.
+
+    The bar here and the one in the next bay run on over the carrier; each ends on the other's web.
+    """
+    here, beyond = Meets(course.name, At.ALONG), Meets(course.name, At.ALONG, NEXT_BAY)
+    ends = Meets(course.name, _far_end(course)), next_bar(course)
+    middle = course.point + course.run * place
+    return [
+        Meeting(JointKind.PURLIN_CLEAT, (carrier, here, beyond), middle),
+        Meeting(JointKind.PURLIN_LAP, (here, ends[1]), middle - course.run * half),
+        Meeting(JointKind.PURLIN_LAP, (beyond, ends[0]), middle + course.run * half),
+    ]
+
+
+def next_bar(course: Course, where: int = NEXT_BAY) -> Meets:
+    """Give the piece that continues a line beyond this one, by the end that is butted; in the next bay."""
+    return Meets(course.name, _near_end(course), where)
 
 
 def web_faces(section: Section) -> tuple[float, float]:
@@ -114,7 +172,24 @@ def web_faces(section: Section) -> tuple[float, float]:
     if isinstance(section.profile, LippedC):
         low = section.outline.bounds[0]
         return low, low + thickness
-    return -thickness / 2, thickness / 2
+    middle, _ = web_middle(section)
+    return middle - thickness / 2, middle + thickness / 2
+
+
+def web_middle(section: Section) -> tuple[float, float]:
+    """Give the point of a section that lies on the line of its course, from its centroid (y, z), mm."""
+    profile = section.profile
+    if isinstance(profile, LippedZ) and profile.narrow != profile.b:
+        y, z = profile.outline.centroid
+        return -y, -z
+    return 0.0, 0.0
+
+
+def faces_on_line(course: Course, section: Section) -> tuple[float, float]:
+    """Give the two faces of the web along ``open_to`` from the line of a course, mm."""
+    low, high = web_faces(section)
+    off = course.aside - web_middle(section)[0]
+    return low + off, high + off
 
 
 def sag_bar(
@@ -133,12 +208,11 @@ def sag_bar(
     ``number`` is the lower course's own: bars of odd and even courses stand on either side of their row.
     Where the courses lie in different planes the bar's ends are cut to the webs.
     """
-    shift = place + (_STAGGER if number % 2 else -_STAGGER)
+    shift = place + (STAGGER if number % 2 else -STAGGER)
     start = lower.point + lower.run * shift
     end = upper.point + upper.run * shift
-    low, high = web_faces(section)
-    start = start + lower.open_to * _facing(lower, end - start, low, high)
-    end = end + upper.open_to * _facing(upper, start - end, low, high)
+    start = start + lower.open_to * _facing(lower, end - start, section)
+    end = end + upper.open_to * _facing(upper, start - end, section)
     bar, where = stick(
         bar_section, start, end, lower.outward,
         start_planes=along(lower.open_to), end_planes=along(upper.open_to),
@@ -150,8 +224,9 @@ def sag_bar(
     return Member(name, Role.SAG_BAR, bar, where, grade, finish), joints
 
 
-def _facing(course: Course, towards: ArrayLike, low: float, high: float) -> float:
+def _facing(course: Course, towards: ArrayLike, section: Section) -> float:
     """The web face of a course that looks ``towards`` (3,), along its open_to direction."""
+    low, high = faces_on_line(course, section)
     return high if float(course.open_to @ np.asarray(towards)) > 0 else low
 
 

@@ -10,12 +10,13 @@ import numpy as np
 from shedbim.description.models import Columns, Description
 from shedbim.expand.kits import Kit, Meeting, Meets, Member
 from shedbim.expand.layout import Layout
+from shedbim.expand.pairs import Steel
 from shedbim.expand.sticks import along, stick
+from shedbim.expand.truss_chords import ChordBar, bar_over
 from shedbim.expand.trusses import Truss
 from shedbim.geometry.placements import translation
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
-from shedbim.sections.section import Section
 
 __all__ = ["Frame", "Upright", "columns", "end_wall_face", "frame_kit"]
 
@@ -37,17 +38,40 @@ class Frame:
     """A frame as a kit, with what the bays fasten to.
 
     Attributes:
-        carriers: name of the piece under the roof surface, one for each slope.
-        carrier: its section.
+        carriers: name of the piece under the roof surface, the first one of each slope.
+        carrier: its section, or the size of its pairs.
         trusses: one for each span, or none where rafters carry the roof.
         posts: the gable posts, left to right.
     """
 
     kit: Kit
     carriers: tuple[str, ...]
-    carrier: Section
+    carrier: Steel
     trusses: tuple[Truss, ...] = ()
     posts: tuple[Upright, ...] = ()
+
+    def carrier_at(self, slope: int, x: float, *, far: bool = False) -> str:
+        """The piece under the roof surface at x on a slope; of a pair the near one or the ``far`` one."""
+        return self._at(slope, x, [made.top_chords for made in self.trusses], far=far)
+
+    def other_of(self, name: str) -> str | None:
+        """The far angle of the pair that a top chord is the near one of; None where it is no pair."""
+        bars = (bar for made in self.trusses for bar in made.top_chords)
+        return next((bar.far for bar in bars if bar.name == name and bar.far), None)
+
+    def lowest_at(self, slope: int, x: float) -> str:
+        """The lowest piece at x under a slope of the frame."""
+        return self._at(slope, x, [made.bottom_chords for made in self.trusses], far=False)
+
+    def _at(self, slope: int, x: float, chords: Sequence[Sequence[ChordBar]], *, far: bool) -> str:
+        """The bar of one of the chords of the trusses, or the rafter where there are none."""
+        first = 0
+        for bars in chords:
+            own = [bar for bar in bars if first + bar.slope == slope]
+            if own:
+                return bar_over(own, x).on_side(far=far)
+            first += 1 + bars[-1].slope
+        return self.carriers[slope]
 
 
 def end_wall_face(description: Description, frame: Frame) -> float:
@@ -56,7 +80,7 @@ def end_wall_face(description: Description, frame: Frame) -> float:
 
 
 def columns(description: Description, layout: Layout) -> tuple[list[Member], list[Meeting]]:
-    """Give the columns of a frame, their bases and their free heads."""
+    """Give the columns of a frame, their bases and their caps."""
     options: Columns = description.frames.columns
     base = JointKind.FIXED_BASE if options.base == "fixed" else JointKind.PINNED_BASE
     members, meetings = [], []
@@ -71,7 +95,7 @@ def columns(description: Description, layout: Layout) -> tuple[list[Member], lis
         name = f"column/{letter}"
         members.append(Member(name, Role.COLUMN, bar, place, options.grade, description.finish.frames))
         meetings.append(Meeting(base, (Meets(name, At.START),), np.array([x, 0.0, layout.base])))
-        meetings.append(Meeting(JointKind.FREE, (Meets(name, At.END),), np.array([x, 0.0, top])))
+        meetings.append(Meeting(JointKind.COLUMN_CAP, (Meets(name, At.END),), np.array([x, 0.0, top])))
     return members, meetings
 
 

@@ -7,7 +7,8 @@ from dataclasses import dataclass
 from typing import Any
 
 from shedbim.description.models import Description
-from shedbim.description.roof_systems import RafterRoof, RoofSystem, TrussRoof
+from shedbim.description.roof_systems import AngleTrussRoof, RafterRoof, RoofSystem, TrussRoof
+from shedbim.expand.angle_truss_frames import angle_truss_frame
 from shedbim.expand.frame import Frame
 from shedbim.expand.layout import Layout
 from shedbim.expand.rafter_frames import rafter_frame, rafter_lifts
@@ -38,6 +39,7 @@ _SYSTEMS: Mapping[type[RoofSystem], _Carried] = {
         ),
     ),
     TrussRoof: _Carried(truss_roof_lifts, truss_frame),
+    AngleTrussRoof: _Carried(truss_roof_lifts, angle_truss_frame),
 }
 
 

@@ -3,22 +3,23 @@
 from __future__ import annotations
 
 from dataclasses import replace
-from math import ceil
 
 import numpy as np
 
 from shedbim.description.models import Description, RafterGable
-from shedbim.expand.clearances import POST_HEAD_GAP
 from shedbim.expand.frame import Frame, Upright, end_wall_face
 from shedbim.expand.frames import inner_frame
+from shedbim.expand.joints.post_head import head_room
 from shedbim.expand.kits import Meeting, Meets, Member
-from shedbim.expand.layout import Layout, Pitched
+from shedbim.expand.layout import Layout
 from shedbim.expand.rafter_frames import rafter_frame
+from shedbim.expand.roof_places import post_places
 from shedbim.expand.sticks import along, stick
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
+from shedbim.sections.profiles import IShape
 
-__all__ = ["gable_frame", "post_places"]
+__all__ = ["gable_frame"]
 
 _LENGTHWISE = (0.0, 1.0, 0.0)
 
@@ -42,19 +43,6 @@ def gable_frame(description: Description, layout: Layout, *, outward: int) -> Fr
     return replace(frame, kit=kit, posts=tuple(places))
 
 
-def post_places(description: Description, layout: Layout) -> tuple[float, ...]:
-    """Give x of the gable posts: every slope in equal parts no longer than the greatest post spacing."""
-    spacing = description.frames.gables.post_spacing
-    places: list[float] = []
-    for pitched in layout.slopes:
-        s = pitched.slope
-        parts = ceil((s.x1 - s.x0) / spacing - 1e-9)
-        places.extend(s.x0 + (s.x1 - s.x0) * k / parts for k in range(1, parts))
-        if pitched.right_column < 0:
-            places.append(s.x1)
-    return tuple(places)
-
-
 def _post(
     description: Description, layout: Layout, frame: Frame, x: float, name: str, outward: int
 ) -> tuple[Member, list[Meeting]]:
@@ -63,35 +51,29 @@ def _post(
     section = gables.posts
     y = outward * (end_wall_face(description, frame) - section.height / 2)
     over = [p for p in layout.slopes if p.slope.x0 - 1.0 <= x <= p.slope.x1 + 1.0]
-    steel = [_underside_line(frame, layout.slopes.index(p), p) for p in over]
+    steel = [_underside_line(frame, layout.slopes.index(p), x) for p in over]
     levels = [round(z + (x - x0) * rise, 6) for x0, z, rise in steel]
     lowest = over[levels.index(min(levels))]
-    level = min(levels) - POST_HEAD_GAP
+    steepest = max(abs(rise) for _, _, rise in steel)
+    level = min(levels) - head_room(section, description.connections.post_heads.size, steepest)
     normals = [(-rise, 0.0, 1.0) for _, _, rise in steel]
     if len(normals) == 2 and abs(steel[0][2] - steel[1][2]) < 1e-9:
         normals = normals[:1]
-    bar, place = stick(section, (x, y, layout.base), (x, y, level), _LENGTHWISE, end_planes=along(*normals))
+    # A tube ends square under the fin on its cap; an I follows the steel above.
+    planes = along(*normals) if isinstance(section.profile, IShape) else None
+    bar, place = stick(section, (x, y, layout.base), (x, y, level), _LENGTHWISE, end_planes=planes)
     member = Member(name, Role.GABLE_POST, bar, place, gables.grade, description.finish.frames)
     base = Meeting(JointKind.POST_BASE, (Meets(name, At.START),), np.array([x, y, layout.base]))
-    above = _lowest_piece(frame, layout.slopes.index(lowest), lowest)
+    above = frame.lowest_at(layout.slopes.index(lowest), x)
     head = Meeting(
         JointKind.POST_HEAD, (Meets(above, At.ALONG), Meets(name, At.END)), np.array([x, 0.0, level])
     )
     return member, [base, head]
 
 
-def _lowest_piece(frame: Frame, slope: int, pitched: Pitched) -> str:
-    """Name of the lowest piece of a gable frame under a slope."""
-    name = frame.carriers[slope]
-    if not frame.trusses:
-        return name
-    made = frame.trusses[pitched.slope.span]
-    return made.bottom_chords[made.top_chords.index(name)]
-
-
-def _underside_line(frame: Frame, slope: int, pitched: Pitched) -> tuple[float, float, float]:
-    """The line of the lowest face of a gable frame under a slope: x, z and rise over run."""
-    name = _lowest_piece(frame, slope, pitched)
+def _underside_line(frame: Frame, slope: int, x: float) -> tuple[float, float, float]:
+    """The line of the lowest face of a gable frame under a slope at x: x, z and rise over run."""
+    name = frame.lowest_at(slope, x)
     member = next(m for m in frame.kit.all_members() if m.name == name)
     origin, direction = member.placement[:, 3], member.placement[:, 0]
     rise = float(direction[2] / direction[0])

@@ -9,7 +9,6 @@ import numpy as np
 
 from shedbim.description.models import Description
 from shedbim.expand.bays import Bay, runs_of_bays
-from shedbim.expand.clearances import END_PLATE
 from shedbim.expand.cold_formed import (
     Course,
     Stretch,
@@ -20,19 +19,22 @@ from shedbim.expand.cold_formed import (
     sag_bar_places,
     web_faces,
 )
+from shedbim.expand.end_gaps import end_gap
 from shedbim.expand.frame import Frame
 from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
-from shedbim.expand.layout import Layout, Pitched, Surface
+from shedbim.expand.layout import Layout, Surface
 from shedbim.expand.set_out import NEAREST, even_places, places_over, sag_bar_rows
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 
-__all__ = ["purlin_courses", "purlins", "under_ridge_bars"]
+__all__ = ["carrier_of", "purlin_courses", "purlins", "under_ridge_bars"]
 
 _LENGTHWISE = np.array([0.0, 1.0, 0.0])
 #: Least distance in plan between the purlins on either side of a ridge or a valley, mm.
 _BESIDE = 5.0
+#: From the end of a sleeve to the row of sag bars beside it: their stagger, a nut and air, mm.
+_BESIDE_SLEEVE = 60.0
 
 
 def purlins(
@@ -115,7 +117,7 @@ def _places(description: Description, layout: Layout, frame: Frame, surface: Sur
     if options.set_out == "nodes":
         # Where a surface runs on over a column, one purlin there serves the end nodes of both trusses.
         lines = layout.grid.x
-        beside = description.frames.columns.section.height / 2 + END_PLATE + NEAREST
+        beside = description.frames.columns.section.height / 2 + end_gap(description, trussed=True) + NEAREST
         nodes = [x for made in frame.trusses for x in made.top_nodes]
         nodes = [x for x in nodes if min(abs(x - line) for line in lines) > beside]
         return places_over([*nodes, *lines], start, end, spacing)
@@ -126,16 +128,24 @@ def _offset(description: Description, layout: Layout, column: int) -> float:
     options = description.purlins
     if column < 0:
         return options.ridge_offset
-    return options.valley_offset if layout.is_valley(column) else options.eaves_offset
+    return options.valley_offset if layout.is_valley(column) else description.purlin_eaves_offset
 
 
-def _carrier(description: Description, layout: Layout, frame: Frame, pitched: Pitched, x: float) -> str:
-    """The piece of a frame that a purlin at x stands on: the column top next to a column line."""
-    half = description.frames.columns.section.height / 2
+def carrier_of(
+    description: Description, layout: Layout, frame: Frame, surface: Surface, course: Course
+) -> str:
+    """Give the piece of a frame that a purlin stands on: the column top next to a column line.
+
+    Over the gap for the end plates it is the nearer one.
+    """
+    options, half = description.purlins, description.frames.columns.section.height / 2
+    x = float(course.point[0] - course.outward[0] * (options.lift + options.section.height / 2))
+    pitched = surface.at(x)
+    gap = end_gap(description, trussed=bool(frame.trusses))
     for column in (pitched.left_column, pitched.right_column):
-        if column >= 0 and abs(x - layout.grid.x[column]) < half + END_PLATE:
+        if column >= 0 and abs(x - layout.grid.x[column]) < half + gap / 2:
             return f"column/{layout.grid.letters[column]}"
-    return frame.carriers[layout.slopes.index(pitched)]
+    return frame.carrier_at(layout.slopes.index(pitched), x)
 
 
 def _bay_kit(
@@ -157,12 +167,17 @@ def _bay_kit(
     for surface, lines in courses:
         for course in lines:
             members.append(course_bar(course, stretch, options.section, Role.PURLIN, options.grade, finish))
-            x = float(course.point[0] - course.outward[0] * (options.lift + options.section.height / 2))
-            first, second = (_carrier(description, layout, frame, surface.at(x), x) for frame in frames)
-            meetings.extend(_held(course, first, second, bay, verge))
+            carriers = [
+                _carriers(frame, carrier_of(description, layout, frame, surface, course), line)
+                for frame, line in zip(frames, (FIRST_LINE, SECOND_LINE), strict=True)
+            ]
+            meetings.extend(_held(course, carriers[0], carriers[1], bay, verge))
+    places = sag_bar_places(
+        bay.length, sag_bar_rows(options.sag_bars, bay.length, layout.slopes[0].slope.pitch)
+    )
+    _check_sleeves(description, bay, places)
     for name, lower, upper, number in _neighbours(layout, courses):
-        rows = sag_bar_rows(options.sag_bars, bay.length, layout.slopes[0].slope.pitch)
-        for row, place in enumerate(sag_bar_places(bay.length, rows), start=1):
+        for row, place in enumerate(places, start=1):
             member, joints = sag_bar(
                 lower, upper, place, number, options.section, options.sag_bar, f"{name}/{row}",
                 options.grade, finish,
@@ -172,15 +187,44 @@ def _bay_kit(
     return Kit(tuple(members), tuple(meetings))
 
 
-def _held(course: Course, first: str, second: str, bay: Bay, verge: float) -> list[Meeting]:
+def _check_sleeves(description: Description, bay: Bay, places: Sequence[float]) -> None:
+    """Refuse sleeves that reach the sag bars of a bay, or each other."""
+    cleats = description.connections.cleats
+    if cleats.continuity != "sleeved":
+        return
+    room = [bay.length] if bay.first or bay.last else [bay.length / 2]
+    room += [place for place in places if not bay.first] + [
+        bay.length - place for place in places if not bay.last
+    ]
+    most = 2 * (min(room) - _BESIDE_SLEEVE)
+    if cleats.sleeve > most:
+        raise impossible(
+            "connections.cleats.sleeve", "the sleeves reach the sag bars of a bay, or each other",
+            given=f"{cleats.sleeve:.0f} mm", allowed=f"{most:.0f} mm at most, or fewer rows of sag bars",
+        )  # fmt: skip
+
+
+def _carriers(frame: Frame, name: str, line: int) -> tuple[Meets, Meets | None]:
+    """What a course stands on: the piece of a frame, and of a pair of angles the other one."""
+    other = frame.other_of(name)
+    return Meets(name, At.ALONG, line), None if other is None else Meets(other, At.ALONG, line)
+
+
+def _held(
+    course: Course,
+    first: tuple[Meets, Meets | None],
+    second: tuple[Meets, Meets | None],
+    bay: Bay,
+    verge: float,
+) -> list[Meeting]:
     """The joints of a purlin on the bay's two lines: butted inside, running through at an end frame."""
     kind = JointKind.PURLIN_CLEAT
     found: list[Meeting] = []
     if bay.first:
-        found += line_joint(kind, course, Meets(first, At.ALONG, FIRST_LINE), 0.0, near=True, overhang=verge)
+        found += line_joint(kind, course, first[0], 0.0, near=True, overhang=verge, beside=first[1])
     found += line_joint(
-        kind, course, Meets(second, At.ALONG, SECOND_LINE), bay.length,
-        near=False, overhang=verge if bay.last else 0.0, following=None if bay.last else next_bar(course),
+        kind, course, second[0], bay.length, near=False, overhang=verge if bay.last else 0.0,
+        following=None if bay.last else next_bar(course), beside=second[1],
     )  # fmt: skip
     return found
 
@@ -188,12 +232,17 @@ def _held(course: Course, first: str, second: str, bay: Bay, verge: float) -> li
 def _neighbours(
     layout: Layout, courses: Sequence[tuple[Surface, list[Course]]]
 ) -> list[tuple[str, Course, Course, int]]:
-    """Each pair of courses that sag bars join, with the bar's name: down each slope, and over a ridge."""
-    pairs = []
-    for surface, lines in courses:
+    """Each pair of courses that sag bars join, with the bar's name: down each slope, and over a ridge.
+
+    The numbers run on over a ridge, so that bars of odd and even numbers take turns at every web.
+    """
+    down, over = [], []
+    count = 0
+    for place, (surface, lines) in enumerate(courses, start=1):
         for number, (a, b) in enumerate(pairwise(lines), start=1):
-            pairs.append((f"sag bar/{surface.name}/{number}", a, b, number))
-    for (left, before), (_, after) in pairwise(courses):
-        if left.slopes[-1].right_column < 0:
-            pairs.append((f"sag bar/{left.name}/ridge", before[-1], after[0], len(before)))
-    return pairs
+            count += 1
+            down.append((f"sag bar/{surface.name}/{number}", a, b, count))
+        if place < len(courses) and surface.slopes[-1].right_column < 0:
+            count += 1
+            over.append((f"sag bar/{surface.name}/ridge", lines[-1], courses[place][1][0], count))
+    return down + over

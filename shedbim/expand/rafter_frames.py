@@ -7,7 +7,7 @@ from itertools import pairwise
 from math import cos
 
 from shedbim.description.models import Description
-from shedbim.expand.clearances import APEX_SET_BACK, END_PLATE
+from shedbim.expand.end_gaps import end_gap
 from shedbim.expand.frame import Frame, columns, frame_kit
 from shedbim.expand.kits import Meeting, Meets, Member
 from shedbim.expand.layout import Layout
@@ -32,11 +32,12 @@ def rafter_frame(description: Description, layout: Layout, section: Section, gra
     """Columns with a rafter on each slope, from column face to column face or ridge."""
     members, meetings = columns(description, layout)
     half, names = description.frames.columns.section.height / 2, []
-    finish = description.finish.frames
+    finish, at_ridge = description.finish.frames, description.connections.apex.thickness
+    at_column = half + end_gap(description, trussed=False)
     for pitched in layout.slopes:
         s = pitched.slope
-        x0 = s.x0 + (half + END_PLATE if pitched.left_column >= 0 else APEX_SET_BACK)
-        x1 = s.x1 - (half + END_PLATE if pitched.right_column >= 0 else APEX_SET_BACK)
+        x0 = s.x0 + (at_column if pitched.left_column >= 0 else at_ridge)
+        x1 = s.x1 - (at_column if pitched.right_column >= 0 else at_ridge)
         bar, place = stick(
             section, pitched.point(x0, section.height / 2), pitched.point(x1, section.height / 2), _UP,
             start_planes=along(_ACROSS), end_planes=along(_ACROSS),

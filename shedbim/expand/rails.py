@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from itertools import pairwise
+from itertools import pairwise, zip_longest
 
 import numpy as np
 
@@ -19,7 +19,7 @@ from shedbim.expand.cold_formed import (
     sag_bar_places,
 )
 from shedbim.expand.frame import Frame, Upright, end_wall_face
-from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
+from shedbim.expand.kits import FIRST_LINE, HERE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout
 from shedbim.expand.set_out import even_places, sag_bar_rows
 from shedbim.model.joints import At, JointKind
@@ -120,43 +120,67 @@ def gable_rails(description: Description, layout: Layout, frame: Frame, *, outwa
     uprights = sorted([*corners, *frame.posts], key=lambda upright: upright.x)
     members: list[Member] = []
     meetings: list[Meeting] = []
-    last_segment = len(uprights) - 2
     levels = _gable_levels(description, layout)
-    for segment, (left, right) in enumerate(pairwise(uprights)):
-        x0, x1 = left.x, right.x
-        # The cleat of a rail needs the upright behind the whole of its width.
-        top = min(
-            min(_top_over(layout, x0), _top_over(layout, x1)) - options.eaves_offset,
-            min(left.head, right.head) - options.section.width,
-        )
-        courses = [
-            Course(
-                f"gable rail/{segment + 1}/{number}",
-                np.array([0.0, y, level]),
-                _DOWN,
-                np.array([0.0, float(outward), 0.0]),
-                _ACROSS,
-            )
-            for number, level in enumerate(levels, start=1)
-            if level <= top + 1e-6
-        ]
+    segments = [
+        _segment_courses(description, layout, number, pair, levels, y, outward)
+        for number, pair in enumerate(pairwise(uprights), start=1)
+    ]
+    for number, (left, right) in enumerate(pairwise(uprights)):
+        courses, x0, x1 = segments[number], left.x, right.x
         stretch = Stretch(
-            x0 - columns.height / 2 if segment == 0 else x0 + options.gap / 2,
-            x1 + columns.height / 2 if segment == last_segment else x1 - options.gap / 2,
+            x0 - columns.height / 2 if number == 0 else x0 + options.gap / 2,
+            x1 + columns.height / 2 if number == len(segments) - 1 else x1 - options.gap / 2,
         )
-        for course in courses:
-            members.append(_rail(description, course, stretch, Role.GABLE_RAIL))
-            for upright, near in ((left, True), (right, False)):
-                held = Meets(upright.name, At.ALONG, FIRST_LINE)
-                meetings += line_joint(JointKind.RAIL_CLEAT, course, held, upright.x, near=near)
+        members += [_rail(description, course, stretch, Role.GABLE_RAIL) for course in courses]
         rows = sag_bar_rows(options.sag_bars, x1 - x0)
         places = [x0 + place for place in sag_bar_places(x1 - x0, rows)]
-        bars, joints = _sag_bars(description, courses, places, f"rail sag bar/{segment + 1}")
+        bars, joints = _sag_bars(description, courses, places, f"rail sag bar/{number + 1}")
         members += bars
         meetings += joints
+    for number, upright in enumerate(uprights):
+        held = Meets(upright.name, At.ALONG, FIRST_LINE)
+        before = segments[number - 1] if number > 0 else []
+        after = segments[number] if number < len(segments) else []
+        for ending, beginning in zip_longest(before, after):
+            if ending is None:
+                meetings += line_joint(JointKind.RAIL_CLEAT, beginning, held, upright.x, near=True)
+                continue
+            following = None if beginning is None else next_bar(beginning, HERE)
+            meetings += line_joint(
+                JointKind.RAIL_CLEAT, ending, held, upright.x, near=False, following=following
+            )
     number = 0 if outward < 0 else -1
     label = grid.numbers[number]
     return Run(Kit(tuple(members), tuple(meetings)), [label], np.array([grid.y[number]]), first_lines=[label])
+
+
+def _segment_courses(
+    description: Description,
+    layout: Layout,
+    number: int,
+    ends: tuple[Upright, Upright],
+    levels: Sequence[float],
+    y: float,
+    outward: int,
+) -> list[Course]:
+    """The rails between two uprights, as far up as roof and uprights let them."""
+    options = description.rails
+    # The cleat of a rail needs the upright behind the whole of its width.
+    top = min(
+        min(_top_over(layout, upright.x) for upright in ends) - options.eaves_offset,
+        min(upright.head for upright in ends) - options.section.width,
+    )
+    return [
+        Course(
+            f"gable rail/{number}/{k}",
+            np.array([0.0, y, level]),
+            _DOWN,
+            np.array([0.0, float(outward), 0.0]),
+            _ACROSS,
+        )
+        for k, level in enumerate(levels, start=1)
+        if level <= top + 1e-6
+    ]
 
 
 def _gable_levels(description: Description, layout: Layout) -> list[float]:

@@ -5,31 +5,40 @@ from __future__ import annotations
 import itertools
 from collections.abc import Sequence
 from dataclasses import dataclass
-from math import atan, cos, tan
 
 import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.description.roof_systems import TrussRoof
-from shedbim.expand.clearances import END_PLATE, WEB_TO_CHORD_END
+from shedbim.expand.clearances import WEB_TO_CHORD_END
 from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import Kit, Meeting, Meets, Member
+from shedbim.expand.pairs import Steel
 from shedbim.expand.sticks import Planes, along, stick
-from shedbim.expand.web_ends import ChordFace, LandedWeb, WebAim, axes_miss, fits, land
+from shedbim.expand.truss_chords import (
+    BOTTOM,
+    TOP,
+    ChordBar,
+    bar_over,
+    chord_bars,
+    chord_member,
+    truss_lifts,
+)
+from shedbim.expand.truss_layout import TrussLayout, has_end_posts
+from shedbim.expand.truss_site_joints import Shipping, lap_length, site_meetings
+from shedbim.expand.truss_splits import Cut, Outline, cuts
+from shedbim.expand.web_ends import LandedWeb, WebAim, axes_miss, fits, footprint, land
 from shedbim.geometry.placements import translation
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 from shedbim.roofs.slope import Slope
-from shedbim.sections.section import Section
-from shedbim.webs import PATTERNS
-from shedbim.webs.topology import Topology, TrussLine, Web
+from shedbim.units import format_length
+from shedbim.webs.topology import Web
 
 __all__ = ["Truss", "truss", "truss_lifts"]
 
 Array = NDArray[np.float64]
-_BOTTOM, _TOP = 0, 1
-_UP = (0.0, 0.0, 1.0)
-_ACROSS = (1.0, 0.0, 0.0)
+_ROLES = (Role.BOTTOM_CHORD, Role.TOP_CHORD)
 
 
 @dataclass(frozen=True, eq=False)
@@ -37,41 +46,19 @@ class Truss:
     """A truss as a kit, with what others fasten to.
 
     Attributes:
-        top_chords, bottom_chords: names of the chord pieces, one for each slope.
+        top_chords, bottom_chords: the chord bars, left to right.
         top_nodes, bottom_nodes: x of the nodes on each chord, ascending, mm.
         bottom_levels: levels of the bottom chord's axis at those bottom nodes, mm.
-        bottom_chord: its section.
+        bottom_chord: its section, or the size of its pairs.
     """
 
     kit: Kit
-    top_chords: tuple[str, ...]
-    bottom_chords: tuple[str, ...]
+    top_chords: tuple[ChordBar, ...]
+    bottom_chords: tuple[ChordBar, ...]
     top_nodes: tuple[float, ...]
     bottom_nodes: tuple[float, ...]
     bottom_levels: tuple[float, ...]
-    bottom_chord: Section
-
-
-def _bottom_pitches(options: TrussRoof, slopes: Sequence[Slope]) -> list[float]:
-    """Signed pitch of the bottom chord under each slope of a span.
-
-    Under unequal slopes it is everywhere the same share of the roof's, so that both lengths meet at the ridge.
-    """
-    if options.shape == "parallel":
-        return [s.pitch for s in slopes]
-    share = tan(options.bottom_pitch) / tan(abs(slopes[0].pitch))
-    return [atan(share * tan(s.pitch)) for s in slopes]
-
-
-def _bottom_rise(options: TrussRoof, slopes: Sequence[Slope]) -> float:
-    """Axis of the bottom chord above the underside at the column line: its half depth on the steepest slope."""
-    return options.bottom_chord.height / 2 / min(cos(pitch) for pitch in _bottom_pitches(options, slopes))
-
-
-def truss_lifts(options: TrussRoof, slopes: Sequence[Slope]) -> list[float]:
-    """Give the height of the top chord's upper face above each slope's own line, mm."""
-    axis = _bottom_rise(options, slopes) + options.depth
-    return [axis + options.top_chord.height / 2 / cos(s.pitch) for s in slopes]
+    bottom_chord: Steel
 
 
 def truss(
@@ -79,18 +66,21 @@ def truss(
     slopes: Sequence[Slope],
     eaves: float,
     span_name: str,
-    faces: tuple[float, float],
+    ends: tuple[float, float],
     finish: str,
+    shipping: Shipping,
 ) -> Truss:
-    """Give the truss under the slopes of one span, between the column faces at x = ``faces``.
+    """Give the truss under the slopes of one span, its chords sawn off at x = ``ends``.
 
     ``eaves`` is the level of the underside where the slopes' own z is 0, mm.
     """
-    return _Maker(options, slopes, eaves, span_name, faces, finish).truss()
+    return _Maker(options, slopes, eaves, span_name, ends, finish, shipping).truss()
 
 
-class _Maker:
+class _Maker(TrussLayout):
     """The steps of one truss; every step reads what the steps before it set."""
+
+    options: TrussRoof
 
     def __init__(
         self,
@@ -98,134 +88,46 @@ class _Maker:
         slopes: Sequence[Slope],
         eaves: float,
         span_name: str,
-        faces: tuple[float, float],
+        ends: tuple[float, float],
         finish: str,
+        shipping: Shipping,
     ) -> None:
-        self.options, self.eaves, self.span, self.finish = options, eaves, span_name, finish
-        self.ends = (faces[0] + END_PLATE, faces[1] - END_PLATE)
-        self.slopes = slopes
-        self.ridge_x = self.slopes[0].x1 if len(self.slopes) == 2 else None
-        self.chords = (self._chord(_BOTTOM), self._chord(_TOP))
-        self.kinks = tuple(
-            len(faces) == 2 and abs(faces[0].slope - faces[1].slope) > 1e-9 for faces in self.chords
-        )
-        self.line_ends = self._end_nodes()
-        self.topology = self._topology()
+        self.finish, self.shipping, self.ends = finish, shipping, ends
+        super().__init__(options, slopes, eaves, span_name, self._end_nodes(options))
 
-    def _chord(self, which: int) -> list[ChordFace]:
-        """The straight lengths of one chord, left to right."""
-        rise = _bottom_rise(self.options, self.slopes)
-        faces = []
-        for s, bottom_pitch in zip(self.slopes, _bottom_pitches(self.options, self.slopes), strict=True):
-            low_x, low_z = (s.x0, s.z0) if s.rises else (s.x1, s.z1)
-            axis = self.eaves + low_z + rise
-            if which == _BOTTOM:
-                faces.append(
-                    ChordFace(
-                        s.x0, s.x1, low_x, axis, tan(bottom_pitch),
-                        self.options.bottom_chord.height / 2, 1,
-                    )
-                )  # fmt: skip
-            else:
-                faces.append(
-                    ChordFace(
-                        s.x0, s.x1, low_x, axis + self.options.depth, tan(s.pitch),
-                        self.options.top_chord.height / 2, -1,
-                    )
-                )  # fmt: skip
-        return faces
-
-    def _over(self, which: int, x: float) -> ChordFace:
-        """The length of a chord over x; at the ridge the left one."""
-        faces = self.chords[which]
-        return faces[0] if len(faces) == 1 or x <= faces[0].x_to else faces[1]
-
-    def _end_nodes(self) -> tuple[float, float]:
+    def _end_nodes(self, options: TrussRoof) -> tuple[float, float]:
         """x of the first and last panel point: the first web's toe stands clear of the sawn chord end."""
-        if self._has_end_posts():
-            inset = self._posts().height / 2 + WEB_TO_CHORD_END
+        if has_end_posts(options.pattern):
+            inset = options.post_section.height / 2 + WEB_TO_CHORD_END
         else:
-            diagonal = self.options.end_section
-            panel = (self.ends[1] - self.ends[0]) / self.options.panels
-            angle = float(np.arctan2(self.options.depth, panel / 2))
+            diagonal = options.end_section
+            panel = (self.ends[1] - self.ends[0]) / options.panels
+            angle = float(np.arctan2(options.depth, panel / 2))
             footprint = diagonal.height / 2 / np.sin(angle)
-            inset = footprint + WEB_TO_CHORD_END - self.options.bottom_chord.height / 2 / np.tan(angle)
+            inset = footprint + WEB_TO_CHORD_END - options.bottom_chord.height / 2 / np.tan(angle)
             inset = max(0.0, float(inset))
         return self.ends[0] + inset, self.ends[1] - inset
 
-    def _posts(self) -> Section:
-        return self.options.post_section
-
-    def _has_end_posts(self) -> bool:
-        """Whether the pattern stands a post on the first panel point, whatever the leverages are."""
-        smallest = TrussLine(2, None, False, False, (0.0, 1.0, 0.0))
-        return PATTERNS[self.options.pattern].topology(smallest).webs[0].kind == "post"
-
-    def _ridge_panel(self) -> int | None:
-        """Panels left of the ridge: in proportion to the plan lengths of the slopes."""
-        if self.ridge_x is None:
-            return None
-        share = (self.ridge_x - self.slopes[0].x0) / (self.slopes[1].x1 - self.slopes[0].x0)
-        return min(max(round(self.options.panels * share), 1), self.options.panels - 1)
-
-    def _x(self, coordinate: float) -> float:
-        """x of a panel coordinate."""
-        first, last = self.line_ends
-        ridge, panels = self._ridge_panel(), self.options.panels
-        if ridge is None or self.ridge_x is None:
-            return first + (last - first) * coordinate / panels
-        if coordinate <= ridge:
-            return first + (self.ridge_x - first) * coordinate / ridge
-        return self.ridge_x + (last - self.ridge_x) * (coordinate - ridge) / (panels - ridge)
-
-    def _topology(self) -> Topology:
-        panels = self.options.panels
-        first, last = self.line_ends
-        points = [self._x(float(i)) for i in range(panels + 1)]
-        leverage = tuple(
-            (x - first) * (last - x) / (self._over(_TOP, x).axis(x) - self._over(_BOTTOM, x).axis(x))
-            for x in points
-        )
-        line = TrussLine(panels, self._ridge_panel(), self.kinks[_TOP], self.kinks[_BOTTOM], leverage)
-        return PATTERNS[self.options.pattern].topology(line)
-
-    def _section(self, web: Web) -> Section:
-        if web.kind == "post":
-            return self._posts()
-        panels = self.options.panels
-        middle = (self.topology.bottom[web.bottom] + self.topology.top[web.top]) / 2
-        at_end = middle < 1 or middle > panels - 1
-        return (self.options.end_section) if at_end else self.options.diagonals
-
     def _aim(self, web: Web) -> WebAim:
-        nodes = (self._x(self.topology.bottom[web.bottom]), self._x(self.topology.top[web.top]))
+        nodes = (self.x(self.topology.bottom[web.bottom]), self.x(self.topology.top[web.top]))
         middle = sum(nodes) / 2
         is_post = web.kind == "post"
         ridge = self.ridge_x
         kinked = tuple(
             is_post and ridge is not None and abs(nodes[c] - ridge) < 1e-6 and self.kinks[c]
-            for c in (_BOTTOM, _TOP)
+            for c in (BOTTOM, TOP)
         )
         # A diagonal that ends at the ridge lands on the side that it comes from.
         faces = tuple(
-            self._over(c, nodes[c] if ridge is None or abs(nodes[c] - ridge) > 1e-6 else middle)
-            for c in (_BOTTOM, _TOP)
+            self.over(c, nodes[c] if ridge is None or abs(nodes[c] - ridge) > 1e-6 else middle)
+            for c in (BOTTOM, TOP)
         )
-        return WebAim(self._section(web), nodes, (faces[0], faces[1]), (kinked[0], kinked[1]), is_post)
-
-    def _groups(self, aims: Sequence[WebAim], which: int) -> list[list[int]]:
-        """The webs at each node of a chord, left to right."""
-        webs = self.topology.webs
-        count = len(self.topology.bottom if which == _BOTTOM else self.topology.top)
-        at: list[list[int]] = [[] for _ in range(count)]
-        for i, web in enumerate(webs):
-            at[web.bottom if which == _BOTTOM else web.top].append(i)
-        return [sorted(group, key=lambda i: aims[i].nodes[1 - which]) for group in at if group]
+        return WebAim(self.section(web), nodes, (faces[0], faces[1]), (kinked[0], kinked[1]), is_post)
 
     def truss(self) -> Truss:
         """Chords first, then webs, then their meetings."""
         aims = [self._aim(web) for web in self.topology.webs]
-        groups = (self._groups(aims, _BOTTOM), self._groups(aims, _TOP))
+        groups = (self.groups(BOTTOM), self.groups(TOP))
         room = (self.ends[0] + WEB_TO_CHORD_END, self.ends[1] - WEB_TO_CHORD_END)
         landed = land(aims, groups, (room, room), self.ridge_x)
         if not fits(aims, landed, groups, (room, room)):
@@ -233,76 +135,107 @@ class _Maker:
                 "frames.roof.panels", "webs lie too flat, or leave no gap for their welds at a node of the truss",
                 given=str(self.options.panels), allowed="another number of panels, more depth or slimmer webs",
             )  # fmt: skip
-        members, names = self._chord_members()
-        web_names = self._web_names()
-        for aim, at, (role, name) in zip(aims, landed, web_names, strict=True):
-            members.append(self._web_member(aim, at, role, name))
+        divided = self._cuts(aims, landed)
+        bars = (self._bars(BOTTOM, divided), self._bars(TOP, divided))
+        members = [self._chord_member(which, bar) for which in (BOTTOM, TOP) for bar in bars[which]]
+        sited = {(cut.web, cut.bolted) for cut in divided}
+        web_names, splices = self.web_names(), self.shipping.splices
+
+        def group_of(web: int, which: int) -> Sequence[int]:
+            return next(group for group in groups[which] if web in group)
+
+        for number, (aim, at, (role, name)) in enumerate(zip(aims, landed, web_names, strict=True)):
+            laps = tuple(
+                lap_length(aims, landed, group_of(number, which), number, which, splices)
+                if (number, which) in sited
+                else 0.0
+                for which in (BOTTOM, TOP)
+            )
+            members.append(self._web_member(aim, at, role, name, (laps[0], laps[1])))
+        names = [name for _, name in web_names]
         meetings = [
-            self._node(which, group, aims, landed, names[which], [n for _, n in web_names])
-            for which in (_BOTTOM, _TOP)
+            self._node(which, welded, aims, landed, bars[which], names)
+            for which in (BOTTOM, TOP)
             for group in groups[which]
+            if (welded := [i for i in group if (i, which) not in sited])
         ]
+        meetings += site_meetings(divided, aims, bars, names, lambda which, x: self.over(which, x).axis(x))
         if self.ridge_x is not None:
-            for which in (_BOTTOM, _TOP):
-                point = np.array([self.ridge_x, 0.0, self._over(which, self.ridge_x).axis(self.ridge_x)])
-                left, right = names[which]
-                pair = (Meets(left, At.END), Meets(right, At.START))
+            for which in (BOTTOM, TOP):
+                point = np.array([self.ridge_x, 0.0, self.over(which, self.ridge_x).axis(self.ridge_x)])
+                left = [bar for bar in bars[which] if bar.slope == 0][-1]
+                right = next(bar for bar in bars[which] if bar.slope == 1)
+                pair = (Meets(left.name, At.END), Meets(right.name, At.START))
                 meetings.append(Meeting(JointKind.CHORD_RIDGE, pair, point))
         start = self.line_ends[0]
-        origin = translation([start, 0.0, self._over(_BOTTOM, start).axis(start)])
+        origin = translation([start, 0.0, self.over(BOTTOM, start).axis(start)])
         kit = Kit(tuple(members), tuple(meetings), (f"truss/{self.span}", "truss", "shop"), origin)
-        bottom = tuple(self._x(c) for c in self.topology.bottom)
+        bottom = tuple(self.x(c) for c in self.topology.bottom)
         return Truss(
             kit,
-            tuple(names[_TOP]),
-            tuple(names[_BOTTOM]),
-            tuple(self._x(c) for c in self.topology.top),
+            tuple(bars[TOP]),
+            tuple(bars[BOTTOM]),
+            tuple(self.x(c) for c in self.topology.top),
             bottom,
-            tuple(self._over(_BOTTOM, x).axis(x) for x in bottom),
+            tuple(self.over(BOTTOM, x).axis(x) for x in bottom),
             self.options.bottom_chord,
         )
 
-    def _chord_members(self) -> tuple[list[Member], tuple[list[str], list[str]]]:
-        members = []
-        names: tuple[list[str], list[str]] = ([], [])
-        kinds = (
-            (Role.BOTTOM_CHORD, self.options.bottom_chord),
-            (Role.TOP_CHORD, self.options.top_chord),
+    # Site splices
+
+    def _cuts(self, aims: Sequence[WebAim], landed: Sequence[LandedWeb]) -> list[Cut]:
+        """Where the truss is divided for the road."""
+        longest = self.options.longest
+        if isinstance(longest, str):
+            return []
+        toes = tuple(
+            [footprint(aim, at, which) for aim, at in zip(aims, landed, strict=True)]
+            for which in (BOTTOM, TOP)
         )
-        for which, (role, section) in enumerate(kinds):
-            for number, face in enumerate(self.chords[which]):
-                x0, x1 = max(face.x_from, self.ends[0]), min(face.x_to, self.ends[1])
-                bar, place = stick(
-                    section, (x0, 0.0, face.axis(x0)), (x1, 0.0, face.axis(x1)), _UP,
-                    start_planes=along(_ACROSS), end_planes=along(_ACROSS),
-                )  # fmt: skip
-                name = f"truss/{role.word}/{self.span}/{number + 1}"
-                names[which].append(name)
-                members.append(Member(name, role, bar, place, self.options.grade, self.finish))
-        return members, names
+        nodes = tuple(
+            [self.x(c) for c in coordinates] for coordinates in (self.topology.bottom, self.topology.top)
+        )
+        stretch = max(1 / face.run for faces in self.chords for face in faces)
+        outline = Outline(
+            [(web.bottom, web.top) for web in self.topology.webs],
+            [web.kind == "diagonal" for web in self.topology.webs],
+            (nodes[0], nodes[1]), (toes[0], toes[1]), self.ends, stretch, self.ridge_x, self.shipping.busy,
+        )  # fmt: skip
+        found = cuts(outline, longest)
+        if found is None:
+            raise impossible(
+                "frames.roof.longest", "no place for site splices that leave no longer parts of a truss",
+                given=format_length(longest), allowed="a greater length, none, or more panels",
+            )  # fmt: skip
+        return found
 
-    def _web_names(self) -> list[tuple[Role, str]]:
-        named = []
-        counts = {Role.DIAGONAL: 0, Role.POST: 0}
-        for web in self.topology.webs:
-            role = Role.POST if web.kind == "post" else Role.DIAGONAL
-            counts[role] += 1
-            named.append((role, f"truss/{role.word}/{self.span}/{counts[role]}"))
-        return named
+    def _bars(self, which: int, divided: Sequence[Cut]) -> list[ChordBar]:
+        """The bars of a chord."""
+        places = [cut.x[which] for cut in divided]
+        return chord_bars(self.chords[which], self.ends, places, _ROLES[which], self.span)
 
-    def _web_member(self, aim: WebAim, at: LandedWeb, role: Role, name: str) -> Member:
+    def _chord_member(self, which: int, bar: ChordBar) -> Member:
+        face = self.chords[which][bar.slope]
+        back = self.shipping.splices.thickness
+        return chord_member(bar, face, self.options, _ROLES[which], self.finish, back)
+
+    def _web_member(
+        self, aim: WebAim, at: LandedWeb, role: Role, name: str, laps: tuple[float, float]
+    ) -> Member:
+        """A web; where it is bolted on site it ends square, ``laps`` before the chord's face."""
         d = at.direction
+        run = np.array([d[0], 0.0, d[1]])
         bar, place = stick(
             aim.section,
-            self._landing(aim, at, _BOTTOM),
-            self._landing(aim, at, _TOP),
+            self._landing(aim, at, BOTTOM) + run * laps[BOTTOM],
+            self._landing(aim, at, TOP) - run * laps[TOP],
             (-d[1], 0.0, d[0]),
-            start_planes=self._end_planes(aim, _BOTTOM),
-            end_planes=self._end_planes(aim, _TOP),
+            start_planes=None if laps[BOTTOM] else self._end_planes(aim, BOTTOM),
+            end_planes=None if laps[TOP] else self._end_planes(aim, TOP),
         )
         return Member(name, role, bar, place, self.options.grade, self.finish)
 
-    def _landing(self, aim: WebAim, at: LandedWeb, which: int) -> tuple[float, float, float]:
+    def _landing(self, aim: WebAim, at: LandedWeb, which: int) -> Array:
         """Where the axis of a web ends.
 
         Faces of unequal slopes miss each other at a kink: there the post keeps clear of both.
@@ -310,14 +243,14 @@ class _Maker:
         x, z = (at.bottom, at.top)[which]
         if aim.at_kink[which]:
             levels = [face.face(x) for face in self.chords[which]]
-            z = max(levels) if which == _BOTTOM else min(levels)
-        return x, 0.0, z
+            z = max(levels) if which == BOTTOM else min(levels)
+        return np.array([x, 0.0, z])
 
     def _end_planes(self, aim: WebAim, which: int) -> Planes:
         """The chord face or, at a kink, both: a bird's mouth over a peak, a point into a hollow."""
         lengths = self.chords[which] if aim.at_kink[which] else [aim.faces[which]]
         normals = [(face.normal[0], 0.0, face.normal[1]) for face in lengths]
-        peak = len(lengths) == 2 and (lengths[0].slope > lengths[1].slope) == (which == _BOTTOM)
+        peak = len(lengths) == 2 and (lengths[0].slope > lengths[1].slope) == (which == BOTTOM)
         return along(*normals, notched=peak)
 
     def _node(
@@ -326,18 +259,17 @@ class _Maker:
         group: Sequence[int],
         aims: Sequence[WebAim],
         landed: Sequence[LandedWeb],
-        chord_names: Sequence[str],
+        bars: Sequence[ChordBar],
         web_names: Sequence[str],
     ) -> Meeting:
-        """The joint of one node: the chord, and the end of each web that lands there."""
+        """The joint of one node: the chord, and the end of each web that is welded there."""
         x = aims[group[0]].nodes[which]
-        face = self._over(which, x)
-        number = self.chords[which].index(face)
+        face = self.over(which, x)
         misses = [
-            axes_miss(landed[i], landed[j], lambda v: self._over(which, v).axis(v))
+            axes_miss(landed[i], landed[j], lambda v: self.over(which, v).axis(v))
             for i, j in itertools.pairwise(group)
         ]
         worst = max(misses, key=abs, default=0.0)
-        end = At.START if which == _BOTTOM else At.END
-        pieces = (Meets(chord_names[number], At.ALONG), *(Meets(web_names[i], end) for i in group))
+        end = At.START if which == BOTTOM else At.END
+        pieces = (Meets(bar_over(bars, x).name, At.ALONG), *(Meets(web_names[i], end) for i in group))
         return Meeting(JointKind.NODE, pieces, np.array([x, 0.0, face.axis(x)]), worst)

@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 
 from shedbim.sections.section import Section
 
-__all__ = ["ChordFace", "LandedWeb", "WebAim", "axes_miss", "fits", "land"]
+__all__ = ["ChordFace", "LandedWeb", "WebAim", "axes_miss", "fits", "footprint", "land"]
 
 Array = NDArray[np.float64]
 _ROUNDS = 60
@@ -136,9 +136,7 @@ def fits(
         toes: list[tuple[float, float, float]] = []  # left toe, right toe, wall
         for group in groups[chord]:
             for i in group:
-                place = (landed[i].bottom, landed[i].top)[chord][0]
-                half = _half_footprint(webs[i], landed[i].direction, chord)
-                toes.append((place - half, place + half, webs[i].section.profile.thickness))
+                toes.append((*footprint(webs[i], landed[i], chord), webs[i].section.profile.thickness))
         if toes[0][0] < chord_ends[chord][0] - _TOE or toes[-1][1] > chord_ends[chord][1] + _TOE:
             return False
         runs = [webs[i].faces[chord].run for group in groups[chord] for i in group]
@@ -146,6 +144,13 @@ def fits(
             if left - right < (wall_a + wall_b) * run - _TOE:
                 return False
     return True
+
+
+def footprint(web: WebAim, at: LandedWeb, chord: int) -> tuple[float, float]:
+    """Give x from and to of what a web covers of a chord, mm."""
+    place = (at.bottom, at.top)[chord][0]
+    half = _half_footprint(web, at.direction, chord)
+    return place - half, place + half
 
 
 def _landed(web: WebAim, x_bottom: float, x_top: float) -> LandedWeb:

@@ -2,7 +2,17 @@
 
 from shedbim.fields.kind import FieldError, Kind, Options, default, left_out, nearest, required
 from shedbim.fields.lists import Labels, NumbersOr, Repeats
-from shedbim.fields.scalars import COLD_FORMED, ROLLED, Choice, Grade, Quantity, Text, Whole, WholeOr
+from shedbim.fields.scalars import (
+    COLD_FORMED,
+    ROLLED,
+    Choice,
+    Grade,
+    Quantity,
+    QuantityOr,
+    Text,
+    Whole,
+    WholeOr,
+)
 from shedbim.fields.sections import SHAPES, SectionOf
 from shedbim.fields.unions import OneOf, table
 
@@ -19,6 +29,7 @@ __all__ = [
     "OneOf",
     "Options",
     "Quantity",
+    "QuantityOr",
     "Repeats",
     "SectionOf",
     "Text",

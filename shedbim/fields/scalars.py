@@ -9,7 +9,7 @@ from typing import Any
 from shedbim import units
 from shedbim.fields.kind import FieldError, Kind, as_text, nearest
 
-__all__ = ["COLD_FORMED", "ROLLED", "Choice", "Grade", "Quantity", "Text", "Whole", "WholeOr"]
+__all__ = ["COLD_FORMED", "ROLLED", "Choice", "Grade", "Quantity", "QuantityOr", "Text", "Whole", "WholeOr"]
 
 #: Room for rounding when a value is compared with a bound that was written in another unit.
 _BOUND_ROOM = 1e-9
@@ -138,6 +138,32 @@ class WholeOr(Kind):
         return {"anyOf": [{"const": self.word}, Whole(self.low, self.high).schema()]}
 
 
+@dataclass(frozen=True)
+class QuantityOr(Kind):
+    """A quantity between two bounds, or a word."""
+
+    word: str
+    quantity: Quantity
+
+    @property
+    def allowed(self) -> str:
+        """The word and the bounds."""
+        return f"{self.word!r} or {self.quantity.allowed}"
+
+    def read(self, value: object) -> float | str:
+        """The quantity in the unit used inside, or the word."""
+        if as_text(value, self.allowed) == self.word:
+            return self.word
+        try:
+            return self.quantity.read(value)
+        except FieldError as error:
+            raise FieldError(error.message, self.allowed, nearest(str(value), [self.word])) from None
+
+    def schema(self) -> dict[str, Any]:
+        """The word, or a string with the pattern of number and unit."""
+        return {"anyOf": [{"const": self.word}, self.quantity.schema()]}
+
+
 class Choice(Kind):
     """One of a few words."""
 
@@ -190,10 +216,25 @@ class Grade(Kind):
 
 
 #: Grades of rolled sections and tubes: EN 10025-2 and -3, EN 10210-1 and EN 10219-1 (sub-grades JR to K2, N,
-#: M, with H for hollow sections); ASTM A36, A572, A992, A500 and A1085 (values from memory).
+#: M, with H for hollow sections), weathering steels of EN 10025-5 (J0, J2 or K2 with W or WP); ASTM A36, A572,
+#: A992, A500 and A1085, of weathering steel A588 and A847 (values from memory).
 ROLLED = Grade(
-    ("S235", "S275", "S355", "S420", "S460", "A36", "A572 Gr 50", "A992", "A500 Gr B", "A500 Gr C", "A1085"),
-    r"(?: ?(?:JR|J0|J2|K2|NL?|ML?)H?)?",
+    (
+        "S235",
+        "S275",
+        "S355",
+        "S420",
+        "S460",
+        "A36",
+        "A572 Gr 50",
+        "A992",
+        "A500 Gr B",
+        "A500 Gr C",
+        "A1085",
+        "A588",
+        "A847",
+    ),
+    r"(?: ?(?:JR|J0|J2|K2|NL?|ML?)(?:H|WP?)?)?",
 )
 
 #: Grades of cold-formed galvanized sections: EN 10346 (coating as Z275), ASTM A653 (values from memory).

@@ -1,4 +1,6 @@
-"""Bars: a section drawn along a straight axis, each end cut by one plane or two.
+"""Bars: a section drawn along a straight axis, each end cut by one plane or two, with holes and notches.
+
+An end of a round tube may be pressed flat: see ``pressed_ends``.
 
 A bar's own frame: x along it from its start, y and z the section's axes through the centroid; x = 0 is
 the first point of steel, x = ``length`` the last, so ``length`` is what the saw is set to.
@@ -13,51 +15,47 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.geometry.outlines import Outline
-from shedbim.sections.section import STEEL_DENSITY, Section
+from shedbim.model.end_cuts import SQUARE, EndCut
+from shedbim.model.holes import Hole, Notch
+from shedbim.model.notching import notched_away
+from shedbim.model.openings import hole_surface, hole_volume
+from shedbim.model.pressed_ends import PressedEnds, bored, check_pressed, flat_corners, less_surface
+from shedbim.sections.profiles import Pipe
+from shedbim.sections.section import STEEL_DENSITY, Profile, Section
 
 __all__ = ["SQUARE", "Bar", "EndCut", "bar_on_axis"]
 
 Array = NDArray[np.float64]
+Box = tuple[tuple[float, float, float], tuple[float, float, float]]
+
 _REACH_CHORD_ERROR = 1e-3
 
 
 @dataclass(frozen=True)
-class EndCut:
-    """How an end is cut: plane ``x = x0 + a*y + b*z`` for each pair (a, b), all through one axis point.
+class Bar:
+    """A straight piece of one section.
 
     Attributes:
-        slopes: one pair for a plane cut, two for a pointed or a notched end.
-        notched: with two planes, True leaves what lies inside either (a bird's mouth), False what lies
-            inside both (a point).
+        length: long point to long point, mm.
+        start, end: its two end cuts.
+        holes, notches: what is cut out of it besides, in its own frame.
+        pressed: what its ends are pressed to; None for an end that is left as it was cut.
+
+    Raises:
+        ModelError: when an end is pressed that cannot be.
     """
-
-    slopes: tuple[tuple[float, float], ...] = ((0.0, 0.0),)
-    notched: bool = False
-
-    @property
-    def is_square(self) -> bool:
-        """Whether the end is one plane square to the axis."""
-        return self.slopes == ((0.0, 0.0),)
-
-    def offsets(self, points: Array, *, at_end: bool) -> Array:
-        """How far along x the cut lies from its axis point over section points (n, 2), in mm (n,)."""
-        planes = points @ np.array(self.slopes).T
-        outermost = self.notched == at_end
-        result: Array = planes.max(axis=1) if outermost else planes.min(axis=1)
-        return result
-
-
-SQUARE = EndCut()
-
-
-@dataclass(frozen=True)
-class Bar:
-    """A straight piece of one section: its length long point to long point (mm) and its two end cuts."""
 
     section: Section
     length: float
     start: EndCut = SQUARE
     end: EndCut = SQUARE
+    holes: tuple[Hole, ...] = ()
+    notches: tuple[Notch, ...] = ()
+    pressed: PressedEnds = (None, None)
+
+    def __post_init__(self) -> None:
+        """Refuse ends that cannot be pressed."""
+        check_pressed(self.section.profile, self.length, (self.start, self.end), self.pressed)
 
     @cached_property
     def axis(self) -> tuple[float, float]:
@@ -68,24 +66,62 @@ class Bar:
 
     @cached_property
     def volume(self) -> float:
-        """Exact volume, mm³. A plane cut through the axis of centroids takes as much as it leaves."""
+        """Volume, mm³, exact: a plane cut through the axis of centroids takes as much as it leaves.
+
+        An end that is pressed flat keeps its steel. Holes and notches are off; no hole may reach into a notch, a fillet or an end.
+        """
         first, last = self.axis
         outline = self.section.outline
         corrections = _mean_offset(outline, self.end, at_end=True) - _mean_offset(
             outline, self.start, at_end=False
         )
-        return outline.area * (last - first + corrections)
+        drilled = sum(hole_volume(self.bored(hole), hole) for hole in self.holes)
+        return outline.area * (last - first + corrections) - drilled - self._notched_away[0]
 
     @property
     def mass(self) -> float:
         """Mass, kg."""
         return self.volume * STEEL_DENSITY
 
-    @property
+    @cached_property
     def surface(self) -> float:
-        """Painted outer surface without the cut ends, mm²."""
+        """Painted outer surface without the cut ends and the walls of holes and notches, mm²."""
         first, last = self.axis
-        return self.section.outline.outer_perimeter * (last - first)
+        drilled = sum(hole_surface(self.bored(hole), hole) for hole in self.holes)
+        whole = self.section.outline.outer_perimeter * (last - first)
+        return whole - self._pressed_away - drilled - self._notched_away[1]
+
+    @property
+    def box(self) -> Box:
+        """Its bounding box before notches: least and greatest corner, mm."""
+        low_y, low_z, high_y, high_z = self.section.outline.bounds
+        points = [np.array([[low_y, low_z], [high_y, high_z]])]
+        profile = self.section.profile
+        if isinstance(profile, Pipe):
+            points += [flat_corners(profile, each) for each in self.pressed if each is not None]
+        low, high = (tuple(f(np.vstack(points), axis=0).tolist()) for f in (np.min, np.max))
+        return (0.0, *low), (self.length, *high)
+
+    def bored(self, hole: Hole) -> Profile | None:
+        """What a hole of it is drilled through: its profile, or None for the level steel of a flat."""
+        return bored(self.section.profile, self.length, self.pressed, hole)
+
+    @cached_property
+    def _pressed_away(self) -> float:
+        """How much painted surface went when ends were pressed flat, mm²."""
+        profile = self.section.profile
+        if not isinstance(profile, Pipe):
+            return 0.0
+        return sum(less_surface(profile, each) for each in self.pressed if each is not None)
+
+    @cached_property
+    def _notched_away(self) -> tuple[float, float]:
+        """What the notches take of volume, mm³, and of painted surface, mm²."""
+        if not self.notches:
+            return 0.0, 0.0
+        first, last = self.axis
+        ends = ((first, self.start), (last, self.end))
+        return notched_away(self.section.outline, self.length, ends, self.notches)
 
 
 def bar_on_axis(section: Section, axis_length: float, start: EndCut = SQUARE, end: EndCut = SQUARE) -> Bar:

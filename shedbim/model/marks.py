@@ -1,13 +1,12 @@
-"""Parts of a building's bars and types of its assemblies, each with its mark.
+"""Parts of a building and types of its assemblies, each with its mark.
 
 A mark is the prefix of the role, or of the kind of assembly, and a number from 1. Numbers follow from what
-the things are and never from the order in which they came: parts by section, then from long to short, then
-by their cuts; assemblies by their parts, then by where these lie.
+the things are and never from the order in which they came: parts as ``part_order`` says, assemblies by their
+parts, then by where these lie.
 """
 
 from __future__ import annotations
 
-import re
 from collections import defaultdict
 from collections.abc import Sequence
 from dataclasses import dataclass
@@ -18,11 +17,18 @@ from numpy.typing import NDArray
 from shedbim.errors import ModelError
 from shedbim.geometry.placements import IDENTITY, Placements, apply, compose
 from shedbim.model.bars import Bar
+from shedbim.model.bolt_congruence import bolt_likeness
+from shedbim.model.bolt_groups import BoltGroup
 from shedbim.model.clouds import Cloud, match, order
-from shedbim.model.congruence import congruence, forms, is_free_to_turn, ranks, symmetries
+from shedbim.model.feature_congruence import bar_likeness
+from shedbim.model.likeness import Likeness
+from shedbim.model.part_clouds import PROBES, part_cloud
+from shedbim.model.part_order import Distinct, sequence
+from shedbim.model.plate_congruence import plate_likeness
+from shedbim.model.plates import Plate
 from shedbim.model.roles import Role
+from shedbim.model.shapes import Shape
 from shedbim.model.shed import AssemblyType, Part
-from shedbim.sections.section import Section
 
 __all__ = [
     "AssemblyGrouping",
@@ -33,11 +39,9 @@ __all__ = [
     "group_parts",
 ]
 
-#: The letters that marks of assemblies begin with; no role has them.
-_PREFIXES = {"truss": "TR", "frame": "F"}
-_NUMBER = re.compile(r"(\d+(?:\.\d+)?)")
-#: Labels a part has in a cloud.
-_PROBES = 3
+#: The letters that marks of assemblies begin with; no role has them. Those named after the role of their main
+#: piece have its letters after an A.
+_PREFIXES = {**{role.word: f"A{role.prefix}" for role in Role}, "truss": "TR", "frame": "F"}
 
 #: Kind, types of children, parts, place of making.
 _Content = tuple[str, tuple[int, ...], tuple[int, ...], str]
@@ -45,24 +49,24 @@ _Content = tuple[str, tuple[int, ...], tuple[int, ...], str]
 
 @dataclass(frozen=True)
 class Stock:
-    """One bar as the expansion made it, before it is known which bars are equal."""
+    """One thing as the expansion made it, before it is known which are equal."""
 
     role: Role
-    bar: Bar
+    shape: Shape
     grade: str
     finish: str
 
 
 @dataclass(frozen=True, eq=False)
 class PartGrouping:
-    """Which part each stock bar is.
+    """Which part each thing of the stock is.
 
     Attributes:
         parts: sorted by role, then by number.
         part_of: (s,) int, index into ``parts``.
-        motion: (s, 3, 4) float, placement of the part's frame in the stock bar's frame, mm: a piece lies at
-            the placement of its stock bar composed with this.
-        flipped: (s,) bool, True where the part's start is the stock bar's end.
+        motion: (s, 3, 4) float, placement of the part's frame in that of the thing, mm: a piece lies at the
+            placement of its thing composed with this.
+        flipped: (s,) bool, True where the part's start is the end of a bar of the stock.
     """
 
     parts: tuple[Part, ...]
@@ -76,9 +80,9 @@ class AssemblyTemplate:
     """One assembly as the expansion made it, in a frame of its own.
 
     Attributes:
-        kind: ``truss`` or ``frame``.
+        kind: ``truss``, ``frame`` or the word of its main piece's role.
         made: ``shop`` or ``site``.
-        members: index of a stock bar and the placement (3, 4) of that bar's frame.
+        members: index of a thing of the stock and the placement (3, 4) of its frame.
         children: index of a template that comes earlier in the list, and the placement (3, 4) of its frame.
     """
 
@@ -105,37 +109,58 @@ class AssemblyGrouping:
 
 
 def group_parts(stock: Sequence[Stock]) -> PartGrouping:
-    """Sort stock bars into parts and give each part its mark.
+    """Sort stock into parts and give each part its mark.
 
-    Bars of one role, section, grade and finish are one part if a rigid motion lays one on the other within
-    ``SAME_LENGTH``; see ``congruence``. The part's bar is as long as the shortest of them.
+    Things of one role, grade and finish, and bars of one section, are one part if a rigid motion, never a mirror,
+    lays one on the other within ``SAME_LENGTH``, holes and all; see ``feature_congruence``, ``plate_congruence``
+    and ``bolt_congruence``. The bar of a part is as long as the shortest of them.
     """
-    sections: dict[Section, list[int]] = defaultdict(list)
+    # Most joints of a kind give the same things to the last bit: these are looked at once.
+    row = {each: i for i, each in enumerate(dict.fromkeys(stock))}
+    once = _grouped(list(row))
+    rows = np.array([row[each] for each in stock], np.int64)
+    return PartGrouping(once.parts, once.part_of[rows], once.motion[rows], once.flipped[rows])
+
+
+def _grouped(stock: Sequence[Stock]) -> PartGrouping:
+    """The parts of stock no two entries of which are equal."""
+    lots: dict[object, list[int]] = defaultdict(list)
     for i, each in enumerate(stock):
-        sections[each.bar.section].append(i)
-    found: list[Stock] = []
-    loose = np.zeros(len(stock), np.int64)
-    motion, flipped = np.empty((len(stock), 3, 4)), np.zeros(len(stock), bool)
-    for rows in sections.values():
-        uses = [(stock[i].role, stock[i].grade, stock[i].finish) for i in rows]
-        numbers = {use: i for i, use in enumerate(dict.fromkeys(uses))}
-        same = congruence([stock[i].bar for i in rows], [numbers[use] for use in uses])
+        lots[each.shape.section if isinstance(each.shape, Bar) else type(each.shape)].append(i)
+    uses = [(each.role.prefix, each.grade, each.finish) for each in stock]
+    numbers = {use: i for i, use in enumerate(sorted(set(uses)))}
+    found: list[Distinct] = []
+    loose, motion = np.empty(len(stock), np.int64), np.tile(IDENTITY, (len(stock), 1, 1))
+    flipped = np.zeros(len(stock), bool)
+    for rows in lots.values():
+        same = _likeness([stock[i].shape for i in rows], [numbers[uses[i]] for i in rows])
         loose[rows] = same.shape_of + len(found)
         motion[rows], flipped[rows] = same.motion, same.flipped
-        use_of = dict(zip(same.shape_of.tolist(), uses, strict=True))
-        found += [Stock(use_of[i][0], bar, *use_of[i][1:]) for i, bar in enumerate(same.shapes)]
-    sequence = _sequence(found)
+        first = dict(zip(same.shape_of[::-1].tolist(), rows[::-1], strict=True))
+        for i, (shape, signature) in enumerate(zip(same.shapes, same.signatures, strict=True)):
+            like = stock[first[i]]
+            found.append(Distinct(like.role, shape, like.grade, like.finish, signature))
+    numbered = sequence(found)
     counts: dict[Role, int] = defaultdict(int)
     parts = []
-    for i in sequence:
-        role = found[i].role
-        counts[role] += 1
-        parts.append(
-            Part(f"{role.prefix}{counts[role]}", role, found[i].bar, found[i].grade, found[i].finish)
-        )
+    for i in numbered:
+        one = found[i]
+        counts[one.role] += 1
+        mark = f"{one.role.prefix}{counts[one.role]}"
+        parts.append(Part(mark, one.role, one.shape, one.grade, one.finish))
     place = np.empty(len(found), np.int64)
-    place[sequence] = np.arange(len(found))
+    place[numbered] = np.arange(len(found))
     return PartGrouping(tuple(parts), place[loose], motion, flipped)
+
+
+def _likeness(shapes: Sequence[Shape], classes: Sequence[int]) -> Likeness:
+    """Sort shapes of one kind, and bars of one section, into distinct ones."""
+    bars = [each for each in shapes if isinstance(each, Bar)]
+    plates = [each for each in shapes if isinstance(each, Plate)]
+    groups = [each for each in shapes if isinstance(each, BoltGroup)]
+    if bars:
+        return bar_likeness(bars, classes)
+    return plate_likeness(plates, classes) if plates else bolt_likeness(groups, classes)
 
 
 def group_assemblies(templates: Sequence[AssemblyTemplate], grouping: PartGrouping) -> AssemblyGrouping:
@@ -147,14 +172,15 @@ def group_assemblies(templates: Sequence[AssemblyTemplate], grouping: PartGroupi
 
     Args:
         templates: t templates, children before what holds them.
-        grouping: of the stock bars that the members name.
+        grouping: of the stock that the members name.
 
     Raises:
         ModelError: when a child comes after its parent, or a kind has no prefix.
     """
-    part_clouds = [_part_cloud(part.bar, _PROBES * i) for i, part in enumerate(grouping.parts)]
+    used = {int(grouping.part_of[s]) for each in templates for s, _ in each.members}
+    part_clouds = {i: part_cloud(grouping.parts[i].shape, PROBES * i) for i in sorted(used)}
     type_clouds: list[Cloud] = []  # of each type, with the labels it has as a child
-    next_label = _PROBES * len(part_clouds)
+    next_label = PROBES * len(grouping.parts)
     types: list[AssemblyType] = []
     counts: dict[str, int] = defaultdict(int)
     type_of, motion = np.full(len(templates), -1), np.tile(IDENTITY, (len(templates), 1, 1))
@@ -166,7 +192,7 @@ def group_assemblies(templates: Sequence[AssemblyTemplate], grouping: PartGroupi
             clouds = []
             for t in rows:
                 members = [
-                    (part_clouds[grouping.part_of[s]], compose(at, grouping.motion[s]))
+                    (part_clouds[int(grouping.part_of[s])], compose(at, grouping.motion[s]))
                     for s, at in templates[t].members
                 ]
                 children = [
@@ -182,36 +208,6 @@ def group_assemblies(templates: Sequence[AssemblyTemplate], grouping: PartGroupi
                 type_clouds.append(Cloud(cloud.points, labels))
                 next_label += len(cloud.blocks)
     return AssemblyGrouping(tuple(types), type_of, motion)
-
-
-def _sequence(found: Sequence[Stock]) -> list[int]:
-    """The order of distinct things: by role, section, from long to short, then by cuts, grade and finish."""
-    if not found:
-        return []
-    form = forms([each.bar for each in found])
-    longest_first = -ranks(form.length)
-    cuts = np.column_stack([form.kind, -ranks(form.slopes).reshape(len(found), -1)])
-    roles = list(Role)
-
-    def place(i: int) -> tuple[object, ...]:
-        section = found[i].bar.section
-        shape = (int(longest_first[i]), *cuts[i].tolist())
-        return (
-            roles.index(found[i].role),
-            _natural(section.designation),
-            section.family,
-            shape,
-            found[i].grade,
-            found[i].finish,
-        )
-
-    return sorted(range(len(found)), key=place)
-
-
-def _natural(text: str) -> tuple[str | float, ...]:
-    """A key that puts 80 before 300: words and numbers by turns, a word first."""
-    pieces = _NUMBER.split(text)
-    return tuple(float(piece) if i % 2 else piece for i, piece in enumerate(pieces))
 
 
 def _prefix(kind: str) -> str:
@@ -234,25 +230,6 @@ def _content(each: AssemblyTemplate, part_of: NDArray[np.int64], type_of: NDArra
     """What must be the same in two assemblies whatever their placements."""
     children = tuple(sorted(int(type_of[child]) for child, _ in each.children))
     return each.kind, children, tuple(sorted(int(part_of[s]) for s, _ in each.members)), each.made
-
-
-def _part_cloud(bar: Bar, label: int) -> Cloud:
-    """Points that show how a part lies as far as its symmetries let one tell, labelled from ``label``.
-
-    Three points of its bounding box off every axis and plane of symmetry, or the ends of the axis where it
-    is free to turn, each with its images under the symmetries.
-    """
-    low_y, low_z, high_y, high_z = bar.section.outline.bounds
-    if is_free_to_turn(bar):
-        probes = np.zeros((1, 3))
-    else:
-        middle = bar.length / 2
-        probes = np.array(
-            [[0.0, high_y, 0.4 * high_z], [0.0, 0.3 * low_y, high_z], [0.9 * middle, high_y, 0.6 * low_z]]
-        )
-    images = apply(symmetries(bar), probes)  # (g, p, 3)
-    labels = label + np.repeat(np.arange(len(probes)), len(images))
-    return Cloud(np.swapaxes(images, 0, 1).reshape(-1, 3), labels)
 
 
 def _gathered(things: Sequence[tuple[Cloud, Placements]]) -> Cloud:

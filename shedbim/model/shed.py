@@ -12,23 +12,47 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
+from shedbim.errors import ModelError
 from shedbim.geometry.placements import Placements
 from shedbim.model.bars import Bar
 from shedbim.model.joints import JointRun
 from shedbim.model.roles import Role
+from shedbim.model.shapes import Shape
 
 __all__ = ["Assemblies", "AssemblyType", "Georeference", "Grid", "Part", "Pieces", "ProjectInfo", "Shed"]
 
 
 @dataclass(frozen=True)
 class Part:
-    """One distinct thing to make."""
+    """One distinct thing to make or to buy.
+
+    Attributes:
+        shape: what it is made as, every hole included.
+        drawn: what models and pictures show of it where that is less; see ``model.levels``.
+    """
 
     mark: str
     role: Role
-    bar: Bar
+    shape: Shape
     grade: str
     finish: str
+    drawn: Shape | None = None
+
+    @property
+    def bar(self) -> Bar:
+        """Its shape as a bar.
+
+        Raises:
+            ModelError: when it is none.
+        """
+        if not isinstance(self.shape, Bar):
+            raise ModelError(f"{self.mark} is not a bar")
+        return self.shape
+
+    @property
+    def body(self) -> Shape:
+        """The shape that models and pictures show."""
+        return self.shape if self.drawn is None else self.drawn
 
 
 @dataclass(frozen=True, eq=False)
@@ -121,6 +145,7 @@ class Shed:
     Attributes:
         parts: sorted by role, then mark.
 
+        finishes: (finish, what it stands for) of the finishes that parts may name.
         defaults: (field, value) of everything that the description left open.
         notes: sentences a reader must know: what was assumed or simplified.
     """
@@ -133,6 +158,7 @@ class Shed:
     assembly_types: tuple[AssemblyType, ...]
     assemblies: Assemblies
     joints: tuple[JointRun, ...]
+    finishes: tuple[tuple[str, str], ...] = ()
     defaults: tuple[tuple[str, str], ...] = ()
     notes: tuple[str, ...] = ()
 
@@ -144,7 +170,7 @@ class Shed:
     @cached_property
     def mass(self) -> float:
         """Mass of all pieces, kg."""
-        return float(self.quantities @ np.array([part.bar.mass for part in self.parts]))
+        return float(self.quantities @ np.array([part.shape.mass for part in self.parts]))
 
     @property
     def footprint(self) -> float:

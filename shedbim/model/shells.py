@@ -5,15 +5,21 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from manifold3d import Manifold
 from numpy.typing import NDArray
 
 from shedbim.geometry.rows import distinct_rows
-from shedbim.model.bars import Bar, EndCut
-from shedbim.model.slices import creased, section_slice
+from shedbim.model.bars import Bar
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.end_cuts import EndCut
+from shedbim.model.plates import Plate
+from shedbim.model.polygons import disc_polygons, plate_polygons
+from shedbim.model.shapes import Shape
+from shedbim.model.slices import Slice, creased, section_slice, slice_of
 from shedbim.model.solids import solid
 from shedbim.tolerance import NOISE
 
-__all__ = ["Shell", "shell"]
+__all__ = ["Shell", "shell", "shell_of"]
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
@@ -42,10 +48,68 @@ class Shell:
     faces: Integers
 
 
-def shell(bar: Bar, chord_error: float) -> Shell:
-    """Give the shell of a bar, its arcs cut into chords that leave them by ``chord_error`` mm at most."""
-    made = _prism(bar, chord_error)
-    return _of_solid(bar, chord_error) if made is None else made
+def shell(shape: Shape, chord_error: float) -> Shell:
+    """Give the shell of a part, its arcs cut into chords that leave them by ``chord_error`` mm at most.
+
+    That of a bolt group is a closed shell for each prism of its fasteners; faces at which these touch stay.
+    """
+    if isinstance(shape, Plate):
+        return _upright(slice_of(plate_polygons(shape, chord_error)), 0.0, shape.thickness)
+    if isinstance(shape, BoltGroup):
+        return _bolts(shape, chord_error)
+    worked = shape.holes or shape.notches or shape.pressed != (None, None)
+    made = None if worked else _prism(shape, chord_error)
+    return shell_of(solid(shape, chord_error)) if made is None else made
+
+
+def _upright(cut: Slice, low: float, high: float) -> Shell:
+    """The shell of a prism over a slice in x and y from z = ``low`` to ``high``."""
+    count, chords, flat = len(cut.points), len(cut.outwards), len(cut.triangles)
+    points = np.column_stack([np.tile(cut.points, (2, 1)), np.repeat([low, high], count)])
+    faces = np.concatenate([cut.chord, cut.chord, np.repeat([chords, chords + 1], flat)])
+    normals = np.zeros((chords + 2, 3))
+    normals[:chords, :2] = cut.outwards
+    normals[chords:, 2] = -1.0, 1.0
+    return Shell(points, _triangles(cut), normals[faces], faces)
+
+
+def _bolts(group: BoltGroup, chord_error: float) -> Shell:
+    """The shell of a bolt group, a prism after the other."""
+    prisms = [
+        _upright(slice_of(disc_polygons(disc, chord_error)), disc.start, disc.end)
+        for disc in group.fastener.stack
+    ]
+    points = np.concatenate([each.points for each in prisms])
+    begin = np.cumsum([0] + [len(each.points) for each in prisms])
+    triangles = np.concatenate([each.triangles + at for each, at in zip(prisms, begin, strict=False)])
+    first = np.cumsum([0] + [int(each.faces.max()) + 1 for each in prisms])
+    faces = np.concatenate([each.faces + at for each, at in zip(prisms, first, strict=False)])
+    normals = np.concatenate([each.normals for each in prisms])
+    places = np.column_stack([np.array(group.points), np.zeros(group.count)])
+    shifts = np.arange(group.count)[:, None, None] * len(points)
+    return Shell(
+        (places[:, None] + points).reshape(-1, 3),
+        (shifts + triangles).reshape(-1, 3),
+        np.tile(normals, (group.count, 1)),
+        np.tile(faces, group.count),
+    )
+
+
+def _triangles(cut: Slice) -> Integers:
+    """The triangles (t, 3) of a prism over a slice, whose points stand twice: those of its foot come first.
+
+    Its sides come first, then its foot, then its top.
+    """
+    count = len(cut.points)
+    here, there = cut.rim.T
+    return np.vstack(
+        [
+            np.column_stack([here, there, there + count]),
+            np.column_stack([here, there + count, here + count]),
+            cut.triangles[:, ::-1],
+            cut.triangles + count,
+        ]
+    )
 
 
 def _prism(bar: Bar, chord_error: float) -> Shell | None:
@@ -62,16 +126,7 @@ def _prism(bar: Bar, chord_error: float) -> Shell | None:
     far = last + bar.end.offsets(cut.points, at_end=True)
     if not (far - near > NOISE).all():
         return None
-    count, chords = len(cut.points), len(cut.outwards)
-    here, there = cut.rim.T
-    triangles = np.vstack(
-        [
-            np.column_stack([here, there, there + count]),
-            np.column_stack([here, there + count, here + count]),
-            cut.triangles[:, ::-1],
-            cut.triangles + count,
-        ]
-    )
+    chords = len(cut.outwards)
     # The faces are numbered: one for each chord, two for the planes of the start, two for those of the end.
     middles = cut.points[cut.triangles].mean(axis=1)
     faces = np.concatenate(
@@ -90,7 +145,7 @@ def _prism(bar: Bar, chord_error: float) -> Shell | None:
         ]
     )
     points = np.column_stack([np.concatenate([near, far]), np.tile(cut.points, (2, 1))])
-    return Shell(points, triangles, normals[faces], faces)
+    return Shell(points, _triangles(cut), normals[faces], faces)
 
 
 def _planes(cut: EndCut, points: Floats, *, at_end: bool) -> Integers:
@@ -107,9 +162,9 @@ def _square_to(cut: EndCut) -> Floats:
     return unit
 
 
-def _of_solid(bar: Bar, chord_error: float) -> Shell:
-    """The shell of a bar with ends of any shape, from its solid."""
-    mesh = solid(bar, chord_error).to_mesh64()
+def shell_of(body: Manifold) -> Shell:
+    """Give the shell of a solid."""
+    mesh = body.to_mesh64()
     points = np.asarray(mesh.vert_properties, float)[:, :3]
     triangles = np.asarray(mesh.tri_verts, np.int64)
     a, b, c = points[triangles[:, 0]], points[triangles[:, 1]], points[triangles[:, 2]]

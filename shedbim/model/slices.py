@@ -1,8 +1,8 @@
-"""Sections as flat triangles, which can be split along a straight crease; mm, in the section's own axes."""
+"""Flat figures cut into triangles, which can be split along a straight crease; mm, in the figure's own axes."""
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
 from itertools import pairwise
@@ -13,7 +13,7 @@ from numpy.typing import NDArray
 
 from shedbim.geometry.outlines import Outline
 
-__all__ = ["Slice", "creased", "section_slice"]
+__all__ = ["Slice", "creased", "section_slice", "slice_of"]
 
 Floats = NDArray[np.float64]
 Integers = NDArray[np.int64]
@@ -25,11 +25,11 @@ _ON_CREASE = 0.01
 
 @dataclass(frozen=True, eq=False)
 class Slice:
-    """A section cut into chords and filled with triangles.
+    """A section, or the outline of a plate, cut into chords and filled with triangles.
 
     Attributes:
-        points: (n, 2) float, y and z.
-        triangles: (m, 3) int, anticlockwise seen from where x points to.
+        points: (n, 2) float, y and z of a section, x and y of a plate.
+        triangles: (m, 3) int, anticlockwise seen from where the third axis points to.
         rim: (k, 2) int, from point to point along the outline, steel on the left.
         chord: (k,) int, which chord of the outline each piece of the rim lies on.
         outwards: (c, 2) float, unit, square to each chord, away from the steel.
@@ -48,7 +48,11 @@ def section_slice(outline: Outline, chord_error: float) -> Slice:
 
     It is kept: many parts have the same section.
     """
-    loops = outline.polygons(chord_error)
+    return slice_of(outline.polygons(chord_error))
+
+
+def slice_of(loops: Sequence[Floats]) -> Slice:
+    """Give the slice of polygons (m, 2): the outer one anticlockwise, holes clockwise."""
     points = np.vstack(loops)
     following = np.arange(1, len(points) + 1)
     end = 0
@@ -59,7 +63,7 @@ def section_slice(outline: Outline, chord_error: float) -> Slice:
     here = np.arange(len(points))
     return Slice(
         points,
-        np.asarray(triangulate(loops), np.int64),
+        np.asarray(triangulate(list(loops)), np.int64),
         np.column_stack([here, following]),
         here,
         np.column_stack([chord[:, 1], -chord[:, 0]]) / np.hypot(*chord.T)[:, None],

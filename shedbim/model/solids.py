@@ -2,34 +2,46 @@
 
 from __future__ import annotations
 
-import numpy as np
-from manifold3d import CrossSection, FillRule, Manifold
+from manifold3d import Manifold, OpType
 
-from shedbim.model.bars import Bar, EndCut
+from shedbim.model.bars import Bar
+from shedbim.model.bodies import bar_body, drill, notch_body, prism
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.plates import Plate
+from shedbim.model.polygons import disc_polygons, plate_polygons
+from shedbim.model.pressed_solids import pressed_body
+from shedbim.model.shapes import Shape
+from shedbim.sections.profiles import Pipe
 from shedbim.tolerance import SOLID_CHORD_ERROR
 
 __all__ = ["solid"]
 
 
-def solid(bar: Bar, chord_error: float = SOLID_CHORD_ERROR) -> Manifold:
-    """Give the solid of a bar, arcs of its section cut into chords that leave them by ``chord_error`` mm."""
-    polygons = [loop.tolist() for loop in bar.section.outline.polygons(chord_error)]
-    prism = Manifold.extrude(CrossSection(polygons, FillRule.EvenOdd), bar.length)
-    # The extrusion runs along z over (y, z): turn it so that it runs along x.
-    body = prism.transform(np.array([[0.0, 0, 1, 0], [1, 0, 0, 0], [0, 1, 0, 0]]))
+def solid(shape: Shape, chord_error: float = SOLID_CHORD_ERROR) -> Manifold:
+    """Give the solid of a part, its arcs cut into chords that leave them by ``chord_error`` mm at most."""
+    if isinstance(shape, Bar):
+        return _bar(shape, chord_error)
+    if isinstance(shape, Plate):
+        return prism(plate_polygons(shape, chord_error), 0.0, shape.thickness)
+    return _bolts(shape, chord_error)
+
+
+def _bar(bar: Bar, chord_error: float) -> Manifold:
+    """The solid of a bar with its holes and notches."""
     first, last = bar.axis
-    return _cut(_cut(body, bar.start, first, facing=1.0), bar.end, last, facing=-1.0)
+    ends = ((first, bar.start), (last, bar.end))
+    profile = bar.section.profile
+    if isinstance(profile, Pipe) and bar.pressed != (None, None):
+        body = pressed_body(profile, bar.length, ends, bar.pressed, chord_error)
+    else:
+        body = bar_body(bar.section.outline, bar.length, ends, chord_error)
+    taken = [drill(bar.bored(hole), hole, chord_error) for hole in bar.holes]
+    taken += [notch_body(notch) for notch in bar.notches]
+    return Manifold.batch_boolean([body, *taken], OpType.Subtract) if taken else body
 
 
-def _cut(body: Manifold, cut: EndCut, x0: float, *, facing: float) -> Manifold:
-    """Keep what lies on the ``facing`` side (+1 towards +x) of the planes through (x0, 0, 0)."""
-    if cut.is_square:
-        return body
-    normals = [np.array([1.0, -a, -b]) * facing for a, b in cut.slopes]
-    offsets = [n[0] * x0 / np.linalg.norm(n) for n in normals]
-    if cut.notched:
-        kept = [body.trim_by_plane(n.tolist(), o) for n, o in zip(normals, offsets, strict=True)]
-        return kept[0] + kept[1]
-    for normal, offset in zip(normals, offsets, strict=True):
-        body = body.trim_by_plane(normal.tolist(), offset)
-    return body
+def _bolts(group: BoltGroup, chord_error: float) -> Manifold:
+    """The solid of a bolt group: the prisms of each fastener as one."""
+    discs = [prism(disc_polygons(disc, chord_error), disc.start, disc.end) for disc in group.fastener.stack]
+    one = Manifold.batch_boolean(discs, OpType.Add)
+    return Manifold.compose([one.translate((x, y, 0.0)) for x, y in group.points])

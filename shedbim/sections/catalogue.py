@@ -72,27 +72,29 @@ def section(designation: str) -> Section:
             reason.
     """
     parsed = parse(designation)
-    if parsed is None:
+    name, size, strokes = parsed if parsed is not None else ("", (), ())
+    family = _BY_NAME.get(name)
+    if parsed is None or (strokes and (family is None or family.strokes(size) != strokes)):
         shown = designation if len(designation) <= LONGEST else f"{designation[:LONGEST]}…"
         reason = "not a family name followed by its dimensions"
         raise UnknownSection(shown, _similar(designation), reason=reason)
-    name, size = parsed
-    family = _BY_NAME.get(name)
     if family is None:
         raise UnknownSection(designation, _across(_closest(name), size), reason="no such family")
     if family.square and len(size) == 2:
         size = (size[0], *size)
     if not family.listed:
-        return _made(designation, family, size)
+        return _made(designation, family, size, strokes)
     entry = _index(family.name).get(size)
     if entry is None:
         raise UnknownSection(designation, _across((family,), size))
     return _built(family.name, entry.size)
 
 
-def _made(designation: str, family: Family, size: Size) -> Section:
+def _made(designation: str, family: Family, size: Size, strokes: Size) -> Section:
     """Give the section of a family made from dimensions."""
     try:
+        if strokes != family.strokes(size):
+            raise ValueError("no / before the second flange")
         return _built(family.name, size)
     except ValueError as refusal:
         raise UnknownSection(designation, reason=f"{refusal} ({family.pattern}, in mm)") from refusal

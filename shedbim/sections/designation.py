@@ -12,7 +12,7 @@ __all__ = ["LONGEST", "folded", "parse"]
 LONGEST = 60
 
 _NUMBER = r"-?[0-9]+(?:[.,][0-9]+)?|-?[.,][0-9]+"
-_TIMES = r"\s*[x×*]\s*"
+_TIMES = r"\s*[x×*/]\s*"
 _DESIGNATION = re.compile(
     rf"(?:([a-z][a-z\s]*)(?:(?<=[a-z])-)?)?((?:{_NUMBER})(?:{_TIMES}(?:{_NUMBER}))*)\s*([a-z]*)",
     re.IGNORECASE,
@@ -24,8 +24,8 @@ def folded(name: str) -> str:
     return "".join(name.split()).upper()
 
 
-def parse(text: str) -> tuple[str, Size] | None:
-    """Give the folded family name and the size, or None where the text is no designation at all.
+def parse(text: str) -> tuple[str, Size, Size] | None:
+    """Give folded family name, size and the places of numbers behind a ``/``; None where it is no designation.
 
     Case, spaces, ``×`` or ``*`` for ``x``, a decimal comma and trailing zeros do not matter, nor a hyphen
     straight behind the name; a letter that follows the depth, as EN 10365 writes ``HE 300 B``, is taken into
@@ -38,4 +38,5 @@ def parse(text: str) -> tuple[str, Size] | None:
         return None
     name, numbers, suffix = match.group(1) or "", match.group(2), match.group(3)
     size = tuple(float(part.replace(",", ".")) for part in re.split(_TIMES, numbers, flags=re.IGNORECASE))
-    return folded(name + suffix), size
+    between = re.findall("[x×*/]", numbers, flags=re.IGNORECASE)
+    return folded(name + suffix), size, tuple(k for k, sign in enumerate(between, start=1) if sign == "/")

@@ -52,6 +52,7 @@ class Family:
         entries: gives all listed sizes; None for a family made from dimensions.
         aliases: other names accepted for ``name``.
         square: True where ``100x5`` may stand for ``100x100x5``.
+        stroke: (n, k): sizes of n numbers have an oblique stroke before number k, counted from 0: ``200x75/68x20x2``.
     """
 
     name: str
@@ -63,6 +64,7 @@ class Family:
     entries: Callable[[], Sequence[Entry]] | None = field(default=None, repr=False, compare=False)
     aliases: tuple[str, ...] = ()
     square: bool = False
+    stroke: tuple[int, int] | None = None
 
     @property
     def listed(self) -> bool:
@@ -71,7 +73,11 @@ class Family:
 
     def designation(self, size: Size) -> str:
         """Give the designation of a size: ``IPE 300``, ``CHS 114.3x5``."""
-        return f"{self.name} {spelled(size)}"
+        return f"{self.name} {spelled(size, self.strokes(size))}"
+
+    def strokes(self, size: Size) -> Size:
+        """Give the places of the numbers that have an oblique stroke before them."""
+        return self.stroke[1:] if self.stroke is not None and len(size) == self.stroke[0] else ()
 
 
 def sized(text: str) -> Size:
@@ -79,9 +85,10 @@ def sized(text: str) -> Size:
     return tuple(float(number) for number in text.split("x"))
 
 
-def spelled(size: Size) -> str:
-    """Give ``457x191x67`` of its numbers, without trailing zeros."""
-    return "x".join(f"{number:.10g}" for number in size)
+def spelled(size: Size, strokes: Size = ()) -> str:
+    """Give ``457x191x67`` of its numbers, without trailing zeros; ``/`` for ``x`` before those at ``strokes``."""
+    parts = [f"{number:.10g}" for number in size]
+    return parts[0] + "".join(("/" if k in strokes else "x") + parts[k] for k in range(1, len(parts)))
 
 
 def read_rows(name: str) -> list[dict[str, str]]:

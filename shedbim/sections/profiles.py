@@ -8,7 +8,18 @@ from math import pi
 from shedbim.geometry.outlines import Outline, circle, polyline, rounded
 from shedbim.sections.section import Symmetry
 
-__all__ = ["Angle", "Channel", "Flat", "Hollow", "IShape", "LippedC", "LippedZ", "Pipe", "Round"]
+__all__ = [
+    "Angle",
+    "Channel",
+    "Flat",
+    "FoldedChannel",
+    "Hollow",
+    "IShape",
+    "LippedC",
+    "LippedZ",
+    "Pipe",
+    "Round",
+]
 
 
 @dataclass(frozen=True)
@@ -189,29 +200,71 @@ class LippedC:
 
 @dataclass(frozen=True)
 class LippedZ:
-    """A cold-formed lipped Z: depth h, both flanges b, lips c, wall t, inside bend radius ri."""
+    """A cold-formed lipped Z: depth h, upper flange b, lips c, wall t, inside bend radius ri, lower flange b2.
+
+    Without b2 both flanges are b. The outline is drawn about the middle of the web.
+    """
 
     h: float
     b: float
     c: float
     t: float
     ri: float
+    b2: float | None = None
+
+    @property
+    def narrow(self) -> float:
+        """The lower flange."""
+        return self.b if self.b2 is None else self.b2
 
     @property
     def outline(self) -> Outline:
         """The folded strip, upper flange to the right, lower flange to the left."""
         z, ro, ri, t = self.h / 2, self.ri + self.t, self.ri, self.t
-        w, far = t / 2, self.b - t / 2
-        half = [
-            (w, z - t, ri), (far - t, z - t, ri), (far - t, z - self.c, 0.0), (far, z - self.c, 0.0),
-            (far, z, ro), (-w, z, ro),
-        ]  # fmt: skip
-        return Outline(rounded(half + [(-y, -zz, radius) for y, zz, radius in half]))
+        w = t / 2
+        upper, lower = (
+            [
+                (w, z - t, ri), (far - t, z - t, ri), (far - t, z - self.c, 0.0), (far, z - self.c, 0.0),
+                (far, z, ro), (-w, z, ro),
+            ]
+            for far in (self.b - w, self.narrow - w)
+        )  # fmt: skip
+        return Outline(rounded(upper + [(-y, -zz, radius) for y, zz, radius in lower]))
 
     @property
     def symmetry(self) -> Symmetry:
-        """Half turns and no mirror: a Z is handed."""
-        return Symmetry(turns=2, mirror=None)
+        """No mirror: a Z is handed; half turns where the flanges are equal."""
+        return Symmetry(turns=2 if self.narrow == self.b else 1, mirror=None)
+
+    @property
+    def thickness(self) -> float:
+        """The strip."""
+        return self.t
+
+
+@dataclass(frozen=True)
+class FoldedChannel:
+    """A cold-formed channel without lips: depth h, flange b, wall t, inside bend radius ri, outside dimensions."""
+
+    h: float
+    b: float
+    t: float
+    ri: float
+
+    @property
+    def outline(self) -> Outline:
+        """The folded strip, web on the left."""
+        z, ro, ri, t = self.h / 2, self.ri + self.t, self.ri, self.t
+        corners = [
+            (0.0, -z, ro), (self.b, -z, 0.0), (self.b, -z + t, 0.0), (t, -z + t, ri),
+            (t, z - t, ri), (self.b, z - t, 0.0), (self.b, z, 0.0), (0.0, z, ro),
+        ]  # fmt: skip
+        return Outline(rounded(corners))
+
+    @property
+    def symmetry(self) -> Symmetry:
+        """One mirror, along y."""
+        return Symmetry(turns=1, mirror=0.0)
 
     @property
     def thickness(self) -> float:

@@ -16,7 +16,8 @@ UNDATED = datetime(2000, 1, 1, tzinfo=UTC)
 CAUTIONS = (
     "Sizes are the user's own choice. Nothing here is a structural design: every section, connection and "
     "foundation needs checking to the local code by a licensed engineer.",
-    "Plates, bolts, welds, cladding and foundations are not yet included, in the model or in any mass.",
+    "Plates, bolts and welds are laid out by rule from the members that meet: no resistance is computed. "
+    "Cladding and foundations are not included, in the model or in any mass; welds are lists, not masses.",
     "Lengths are saw lengths, long point to long point. Masses are computed from the outlines with fillets "
     "at 7850 kg/m³, without coating, waste or rolling tolerance. Surfaces are outer ones, without cut ends.",
 )
@@ -31,12 +32,14 @@ class Imprint:
         schema: the schema of the model file, for example ``IFC4``.
         digest: SHA-256 of the description's bytes as 64 hexadecimal digits, or empty when there was no file.
         version: of the program.
+        level: the level of detail that the models show.
     """
 
     timestamp: datetime = UNDATED
     schema: str = "IFC4"
     digest: str = ""
     version: str = __version__
+    level: str = "coordination"
 
     @property
     def stamp(self) -> str:

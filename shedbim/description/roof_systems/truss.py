@@ -2,38 +2,26 @@
 
 from __future__ import annotations
 
-from typing import Annotated, Literal, get_args
+from typing import Annotated, Literal
 
 from shedbim import units
-from shedbim.description.roof_systems.system import RoofSystem
-from shedbim.fields import ROLLED, Choice, Quantity, SectionOf, Whole, default, left_out, required
+from shedbim.description.roof_systems.trussed import TrussedRoof
+from shedbim.fields import Quantity, QuantityOr, SectionOf, default, left_out, required
 from shedbim.sections.profiles import Hollow, Pipe
 from shedbim.sections.section import Section
-from shedbim.webs import PATTERNS
 
 __all__ = ["TrussRoof"]
 
-_Shape = Literal["parallel", "pitched"]
 _CHORD = SectionOf(Hollow, why="webs are welded to a flat chord face")
 _WEB = SectionOf(Hollow, Pipe)
+#: The default: a rigid load of 18.65 m is the longest on British roads without notice (published guidance).
+_LONGEST = QuantityOr("none", Quantity(units.LENGTH, "6 m", "60 m"))
 
 
-class TrussRoof(RoofSystem):
+class TrussRoof(TrussedRoof):
     """Trusses of hollow sections, one in each span."""
 
     system: Literal["truss"] = required("trusses of hollow sections, one in each span")
-    shape: Annotated[_Shape, Choice(*get_args(_Shape))] = default(
-        "parallel", "parallel: both chords follow the roof; pitched: the bottom chord is level or flatter"
-    )
-    pattern: Annotated[str, Choice(*PATTERNS)] = required("how the webs run")
-    panels: Annotated[int, Whole(2, 60)] = required("number of panels in a span")
-    depth: Annotated[float, Quantity(units.LENGTH, "200 mm", "12 m")] = required(
-        "distance of the chord axes, measured upright; of a pitched truss at the eaves"
-    )
-    bottom_pitch: Annotated[float, Quantity(units.ANGLE, "0 deg", "45 deg")] = default(
-        "0 deg",
-        "pitch of the bottom chord of a pitched truss, under the left-hand slope where the slopes differ",
-    )
     top_chord: Annotated[Section, _CHORD] = required("section of the top chord")
     bottom_chord: Annotated[Section, _CHORD] = required("section of the bottom chord")
     diagonals: Annotated[Section, _WEB] = required("section of the diagonals")
@@ -41,14 +29,6 @@ class TrussRoof(RoofSystem):
         "as diagonals", "section of the diagonals next to the columns"
     )
     posts: Annotated[Section, _WEB] | None = left_out("as diagonals", "section of the upright webs")
-    grade: Annotated[str, ROLLED] = default("S355", "steel grade of chords and webs")
-
-    @property
-    def end_section(self) -> Section:
-        """Section of the diagonals next to the columns."""
-        return self.end_diagonals or self.diagonals
-
-    @property
-    def post_section(self) -> Section:
-        """Section of the upright webs."""
-        return self.posts or self.diagonals
+    longest: Annotated[float | Literal["none"], _LONGEST] = default(
+        "18 m", "greatest length of a truss or a part of one as it leaves the shop; none: never divided"
+    )

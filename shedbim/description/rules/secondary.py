@@ -6,16 +6,18 @@ from collections.abc import Iterator
 
 from shedbim.description.bracing import RoofBracing, WallBracing
 from shedbim.description.models import Description
-from shedbim.description.roof_systems import TrussRoof
+from shedbim.description.roof_systems import TrussedRoof
 from shedbim.description.rules.broken import Broken
 from shedbim.roofs import Gable, Slope
-from shedbim.sections.profiles import Angle
+from shedbim.sections.profiles import Angle, LippedZ
 from shedbim.units import format_length
 
 __all__ = ["RULES"]
 
 #: Two purlins or rails nearer than this foul each other's cleats (common practice), mm.
 _NEAREST = 300.0
+#: Air between the lips of two lapped purlins, mm.
+_LAP_PLAY = 1.0
 
 #: Room that a brace in a column line needs beside the middle of the column: half a gusset plate and the way
 #: to the flange (common practice), mm.
@@ -29,7 +31,7 @@ def purlin_offsets_leave_a_slope(description: Description) -> Iterator[Broken]:
     if isinstance(roof, Gable):
         ends = [(_low_offset(description, slope) + purlins.ridge_offset, slope.length) for slope in slopes]
     else:
-        ends = [(2 * purlins.eaves_offset, sum(slope.length for slope in slopes))]
+        ends = [(2 * description.purlin_eaves_offset, sum(slope.length for slope in slopes))]
     for offsets, length in ends:
         if offsets + _NEAREST > length:
             message = f"the offsets of the purlins take up a slope of {format_length(length)}"
@@ -42,14 +44,25 @@ def _low_offset(description: Description, slope: Slope) -> float:
     """The purlin offset at the low end of a slope of a gable roof, mm."""
     last = len(description.building.spans) - 1
     at_eaves = slope.span == 0 if slope.rises else slope.span == last
-    return description.purlins.eaves_offset if at_eaves else description.purlins.valley_offset
+    return description.purlin_eaves_offset if at_eaves else description.purlins.valley_offset
 
 
 def purlins_over_nodes_need_trusses(description: Description) -> Iterator[Broken]:
     """Only trusses have panel points."""
-    if description.purlins.set_out == "nodes" and not isinstance(description.frames.roof, TrussRoof):
+    if description.purlins.set_out == "nodes" and not isinstance(description.frames.roof, TrussedRoof):
         message = "purlins over panel points, but the roof has no trusses"
         yield Broken("purlins.set_out", message, "even, or frames.roof.system: truss")
+
+
+def lapped_purlins_nest(description: Description) -> Iterator[Broken]:
+    """Purlins that lap are Z with a wide flange that takes the narrow one of the next, both walls between."""
+    profile = description.purlins.section.profile
+    if description.connections.cleats.continuity != "lapped":
+        return
+    if not isinstance(profile, LippedZ) or profile.b - profile.narrow < 2 * profile.t + _LAP_PLAY:
+        more = f" by {2 * profile.thickness + _LAP_PLAY:g} mm or more"
+        allowed = f"a Z with one flange wider than the other{more}, or another connections.cleats.continuity"
+        yield Broken("purlins.section", "lapped purlins do not nest in each other", allowed)
 
 
 def rail_offsets_leave_a_wall(description: Description) -> Iterator[Broken]:
@@ -92,6 +105,7 @@ def wall_braces_fit_the_columns(description: Description) -> Iterator[Broken]:
 RULES = (
     purlin_offsets_leave_a_slope,
     purlins_over_nodes_need_trusses,
+    lapped_purlins_nest,
     rail_offsets_leave_a_wall,
     angles_cross,
     wall_braces_fit_the_columns,

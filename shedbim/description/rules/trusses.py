@@ -6,7 +6,7 @@ from collections.abc import Iterator
 from math import atan2, degrees, tan
 
 from shedbim.description.models import Description
-from shedbim.description.roof_systems import TrussRoof
+from shedbim.description.roof_systems import AngleTrussRoof, TrussedRoof
 from shedbim.description.rules.broken import Broken
 from shedbim.roofs import Gable
 from shedbim.sections.section import Section
@@ -25,10 +25,10 @@ _CLEAR_DIAGONALS = 2.0
 _SAME_PITCH = 1e-9  # rad
 
 
-def _truss(description: Description) -> TrussRoof | None:
+def _truss(description: Description) -> TrussedRoof | None:
     """The trusses, or None where rafters carry the roof."""
     roof = description.frames.roof
-    return roof if isinstance(roof, TrussRoof) else None
+    return roof if isinstance(roof, TrussedRoof) else None
 
 
 def depth_is_less_than_eaves(description: Description) -> Iterator[Broken]:
@@ -118,6 +118,16 @@ def webs_meet_the_chords_well(description: Description) -> Iterator[Broken]:
             return
 
 
+def pairs_have_equal_legs(description: Description) -> Iterator[Broken]:
+    """The angles of a pair have equal legs, so that the two angles are alike back to back."""
+    roof = description.frames.roof
+    if isinstance(roof, AngleTrussRoof):
+        for field in ("top_chord", "bottom_chord", "diagonals", "end_diagonals", "posts"):
+            section = getattr(roof, field)
+            if section is not None and section.width != section.height:
+                yield Broken(f"frames.roof.{field}", "an angle with unequal legs in a pair", "equal legs")
+
+
 RULES = (
     depth_is_less_than_eaves,
     depth_holds_the_webs,
@@ -125,4 +135,5 @@ RULES = (
     bottom_pitch_fits_the_shape,
     webs_fit_the_chords,
     webs_meet_the_chords_well,
+    pairs_have_equal_legs,
 )

@@ -8,9 +8,11 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from shedbim.model.bars import Bar
+from shedbim.model.shapes import Shape
 from shedbim.model.shed import Part
 from shedbim.model.shells import shell
+from shedbim.writers.coarse import coarse
+from shedbim.writers.described import described, figures
 from shedbim.writers.glb.text import compact
 
 __all__ = ["CHORD_ERROR", "FlatMesh", "MeshSet", "flat_mesh", "mesh_set"]
@@ -62,17 +64,22 @@ class MeshSet:
     data: list[bytes]
 
 
-def flat_mesh(bar: Bar) -> FlatMesh:
-    """Give the mesh of a bar with a normal of its own for each flat face."""
-    made = shell(bar, CHORD_ERROR)
-    corner, face = made.triangles.reshape(-1), np.repeat(made.faces, 3)
+def flat_mesh(shape: Shape) -> FlatMesh:
+    """Give the mesh of a shape with a normal of its own for each flat face."""
+    made = shell(coarse(shape), CHORD_ERROR)
+    # Points that fall together in 32 bits are one, and the slivers between them are gone: it stays closed.
+    points, which = np.unique((made.points / 1000 + 0.0).astype(np.float32), axis=0, return_inverse=True)
+    triangles = which.reshape(-1)[made.triangles]
+    sound = (triangles != np.roll(triangles, 1, axis=1)).all(axis=1)
+    triangles, normals = triangles[sound], made.normals[sound]
+    corner, face = triangles.reshape(-1), np.repeat(made.faces[sound], 3)
     # One number for each pair of a corner and a face.
-    pairs = face * len(made.points) + corner
+    pairs = face * len(points) + corner
     _, first, vertex = np.unique(pairs, return_index=True, return_inverse=True)
     return FlatMesh(
-        (made.points[corner[first]] / 1000).astype(np.float32),
+        points[corner[first]],
         # Adding zero turns -0.0 into 0.0.
-        (made.normals[first // 3] + 0.0).astype(np.float32),
+        (normals[first // 3] + 0.0).astype(np.float32),
         vertex.astype(np.uint16) if len(first) <= _MOST_SHORT else vertex.astype(np.uint32),
     )
 
@@ -88,7 +95,7 @@ def mesh_set(parts: Sequence[Part], materials: Sequence[int]) -> MeshSet:
     indices: list[bytes] = []
     vertex_end = index_end = 0
     for part, material in zip(parts, materials, strict=True):
-        mesh = flat_mesh(part.bar)
+        mesh = flat_mesh(part.body)
         meshes.append(_mesh(part, material, len(accessors)))
         vertices.append(_little_endian(mesh.points) + _little_endian(mesh.normals))
         # A closed surface has an even number of triangles: indices of 16 bits fill whole words too.
@@ -113,12 +120,12 @@ def _mesh(part: Part, material: int, accessor: int) -> str:
     """The text of a part's mesh, whose accessors begin with ``accessor``."""
     extras = {
         "mark": part.mark,
-        "section": part.bar.section.designation,
+        "section": described(part.shape),
         "role": part.role.word,
         "grade": part.grade,
         "finish": part.finish,
-        "length_mm": round(part.bar.length, 3),
-        "mass_kg": round(part.bar.mass, 3),
+        **figures(part.shape),
+        "mass_kg": round(part.shape.mass, 3),
     }
     return (
         f'{{"name":{compact(part.mark)},"primitives":[{{"attributes":{{"POSITION":{accessor},'

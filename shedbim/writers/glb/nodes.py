@@ -17,6 +17,7 @@ from shedbim.geometry.quaternions import quaternions
 from shedbim.geometry.rows import distinct_rows
 from shedbim.model.roles import Role
 from shedbim.model.shed import Shed
+from shedbim.writers.described import described
 from shedbim.writers.glb.text import compact, decimals, strings
 
 __all__ = ["node_texts"]
@@ -69,7 +70,7 @@ def node_texts(shed: Shed, extras: str) -> Iterator[str]:
     yield from _placed(groups.keys, relative(groups.placement, groups.placement, groups.parent), tails)
     kinds = [
         f',"mesh":{index},"extras":'
-        + compact({"mark": part.mark, "section": part.bar.section.designation, "role": part.role.word})
+        + compact({"mark": part.mark, "section": described(part.shape), "role": part.role.word})
         + "}"
         for index, part in enumerate(shed.parts)
     ]

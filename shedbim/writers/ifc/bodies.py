@@ -1,139 +1,86 @@
-"""The body of a bar: a swept profile, cut only at ends that are not square.
+"""The body of a part: what its shape is written as.
 
-The sweep runs from long point to long point, so a square end needs no cut. A plane cut is a clipping by a
-half space; a pointed end is two of them; a notched end, of which what lies inside either plane is kept,
-loses the wedge outside both: a prism.
+A plate is one sweep of its outline, holes and all. A bolt group is a sweep for each prism of each fastener: a
+type then has the whole shape of its pieces. One fastener mapped to many places would save 600 bytes a fastener
+in each part and no time to mesh, and its type would show one bolt of a group.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
+from math import pi, sqrt
 
 import numpy as np
-from numpy.typing import NDArray
 
-from shedbim.model.bars import SQUARE, Bar, EndCut
-from shedbim.writers.ifc.placements import axis2placement, direction, point
+from shedbim.fasteners.fastener import Disc
+from shedbim.model.bars import Bar
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.plates import Plate
+from shedbim.model.shapes import Shape
+from shedbim.writers.ifc.bar_bodies import bar_bodies
+from shedbim.writers.ifc.curves import area, circle_curve, closed_line, loop_curve, position
+from shedbim.writers.ifc.profiles import profile
 from shedbim.writers.ifc.stepfile import StepFile
-from shedbim.writers.ifc.text import TRUE, enum, listed, metres
+from shedbim.writers.ifc.sweeps import round_profile, sweep
+from shedbim.writers.ifc.text import enum, metres
 
 __all__ = ["Body", "body"]
 
-Vector = NDArray[np.float64]
-
-#: A wedge is this many times as large as the steel it may meet.
-_BEYOND = 1.5
+_UP, _ACROSS = (0.0, 0.0, 1.0), (1.0, 0.0, 0.0)
 
 
 @dataclass(frozen=True)
 class Body:
-    """A written body: its reference, and the RepresentationType of a representation that holds it."""
+    """A written body: what it consists of, and the RepresentationType of a representation that holds that."""
 
-    item: str
+    items: tuple[str, ...]
     kind: str
 
 
-@dataclass(frozen=True)
-class _Cut:
-    """A cut that is to be made.
-
-    Attributes:
-        normals: unit normals (3,) of its planes, each towards the steel it keeps.
-        notched: as of ``EndCut``.
-        x0: where the planes meet the axis, mm.
-        reach: steel that a notch takes away lies within so much of that point, mm.
-    """
-
-    normals: tuple[Vector, ...]
-    notched: bool
-    x0: float
-    reach: float
+def body(step: StepFile, shape: Shape) -> Body:
+    """Write the body of a shape in the part's own frame."""
+    if isinstance(shape, Bar):
+        return Body(*bar_bodies(step, shape, profile(step, shape.section)))
+    if isinstance(shape, Plate):
+        return Body((_plate(step, shape),), "SweptSolid")
+    return Body(_bolts(step, shape), "SweptSolid")
 
 
-def body(step: StepFile, bar: Bar, profile: str) -> Body:
-    """Write the body of a bar in the part's own frame, swept from the ``profile`` it refers to."""
-    sweep = step.add(
-        "IfcExtrudedAreaSolid",
-        SweptArea=profile,
-        # The profile's x is the bar's y, its y the bar's z.
-        Position=axis2placement(step, (0.0, 0.0, 0.0), (1.0, 0.0, 0.0), (0.0, 1.0, 0.0)),
-        ExtrudedDirection=direction(step, 0.0, 0.0, 1.0),
-        Depth=metres(bar.length),
+def _plate(step: StepFile, plate: Plate) -> str:
+    """Write a plate as one sweep: round holes are circles, all else follows its lines and arcs."""
+    outer, *openings = plate.outline.loops
+    curves = [loop_curve(step, outer)]
+    for hole, loop in zip(plate.holes, openings, strict=True):
+        if hole.slot:
+            curves.append(loop_curve(step, loop))
+        else:
+            curves.append(circle_curve(step, hole.diameter, hole.centre[0], hole.centre[1]))
+    return sweep(step, area(step, curves), (0.0, 0.0, 0.0), _UP, _ACROSS, plate.thickness)
+
+
+def _bolts(step: StepFile, group: BoltGroup) -> tuple[str, ...]:
+    """Write the prisms of all fasteners of a group."""
+    return tuple(
+        sweep(step, _disc(step, disc), (x, y, disc.start), _UP, _ACROSS, disc.end - disc.start)
+        for x, y in group.points
+        for disc in group.fastener.stack
     )
-    result = Body(sweep, "SweptSolid")
-    first, last = bar.axis
-    cuts = [_cut(bar, bar.start, first, 1.0), _cut(bar, bar.end, last, -1.0)]
-    # Notches come last: a clipping takes a sweep or another clipping only.
-    for cut in sorted((cut for cut in cuts if cut), key=lambda each: each.notched):
-        result = (_notched if cut.notched else _clipped)(step, result, cut)
-    return result
 
 
-def _cut(bar: Bar, end: EndCut, x0: float, facing: float) -> _Cut | None:
-    """Give the cut at an end, nothing where it is square; ``facing`` is +1 where the steel lies towards +x."""
-    slopes = tuple(dict.fromkeys(end.slopes))  # two equal planes are one
-    if slopes == SQUARE.slopes:
-        return None
-    normals = tuple(_unit(np.array([1.0, -a, -b]) * facing) for a, b in slopes)
-    low_y, low_z, high_y, high_z = bar.section.outline.bounds
-    radius = float(np.hypot(max(-low_y, high_y), max(-low_z, high_z)))
-    steepest = max(float(np.hypot(a, b)) for a, b in slopes)
-    beyond = x0 if facing > 0 else bar.length - x0
-    reach = float(np.hypot(radius, max(beyond, radius * steepest)))
-    return _Cut(normals, end.notched and len(slopes) > 1, x0, reach)
-
-
-def _clipped(step: StepFile, whole: Body, cut: _Cut) -> Body:
-    """Take away what lies outside each plane of a cut."""
-    item = whole.item
-    for normal in cut.normals:
-        across = _unit(np.cross(normal, _least_along(normal)))
-        position = axis2placement(step, (cut.x0, 0.0, 0.0), normal.tolist(), across.tolist())
-        plane = step.share("IfcPlane", Position=position)
-        # AgreementFlag true: the normal points out of the half space, which is taken away, into the steel.
-        outside = step.share("IfcHalfSpaceSolid", BaseSurface=plane, AgreementFlag=TRUE)
-        item = step.add(
-            "IfcBooleanClippingResult", Operator=enum("DIFFERENCE"), FirstOperand=item, SecondOperand=outside
-        )
-    return Body(item, "Clipping")
-
-
-def _notched(step: StepFile, whole: Body, cut: _Cut) -> Body:
-    """Take away the wedge outside both planes of a cut."""
-    first, second = cut.normals
-    edge = _unit(np.cross(first, second))
-    # In each plane, the direction from the edge that leads out of what the other plane keeps.
-    sides = [_unit(np.cross(edge, normal)) for normal in (first, second)]
-    sides = [side if side @ other < 0 else -side for side, other in zip(sides, (second, first), strict=True)]
-    outwards = _unit(sides[0] + sides[1])
-    corners = [np.zeros(3), sides[0], sides[0] + outwards, sides[1] + outwards, sides[1]]
-    x, y = sides[0], np.cross(edge, sides[0])
-    if y @ sides[1] < 0:  # the profile runs anticlockwise
-        edge, y = -edge, -y
-    size = _BEYOND * cut.reach
-    outline = [point(step, *(size * np.array([corner @ x, corner @ y])).tolist()) for corner in corners]
-    foot = np.array([cut.x0, 0.0, 0.0]) - size * edge
-    wedge = step.add(
-        "IfcExtrudedAreaSolid",
-        SweptArea=step.add(
-            "IfcArbitraryClosedProfileDef",
+def _disc(step: StepFile, disc: Disc) -> str:
+    """Write (or find) the profile of one prism; hexagons and squares stand with two flats square to y."""
+    if disc.form == "round":
+        if not disc.bore:
+            return round_profile(step, disc.size)
+        return step.share(
+            "IfcCircleHollowProfileDef",
             ProfileType=enum("AREA"),
-            OuterCurve=step.add("IfcPolyline", Points=listed([*outline, outline[0]])),
-        ),
-        Position=axis2placement(step, foot.tolist(), edge.tolist(), x.tolist()),
-        ExtrudedDirection=direction(step, 0.0, 0.0, 1.0),
-        Depth=metres(2 * size),
-    )
-    operands = {"FirstOperand": whole.item, "SecondOperand": wedge}
-    return Body(step.add("IfcBooleanResult", Operator=enum("DIFFERENCE"), **operands), "CSG")
-
-
-def _unit(vector: Vector) -> Vector:
-    """Give the vector (3,) with length 1."""
-    return vector / float(np.linalg.norm(vector))
-
-
-def _least_along(normal: Vector) -> Vector:
-    """Give the axis (3,) that a direction leans to least."""
-    least: Vector = np.eye(3)[int(np.argmin(np.abs(normal)))]
-    return least
+            Position=position(step, 0.0, 0.0),
+            Radius=metres(disc.size / 2),
+            WallThickness=metres((disc.size - disc.bore) / 2),
+        )
+    sides = 6 if disc.form == "hexagon" else 4
+    corner = disc.size / sqrt(3) if sides == 6 else disc.size / sqrt(2)
+    angle = 2 * pi * np.arange(sides) / sides + (0.0 if sides == 6 else pi / 4)
+    outline = closed_line(step, (corner * np.column_stack([np.cos(angle), np.sin(angle)])).round(6).tolist())
+    return area(step, [outline, circle_curve(step, disc.bore, 0.0, 0.0)] if disc.bore else [outline])

@@ -22,7 +22,7 @@ from shedbim.writers.ifc.parts import Mapped, PartWriter, shape_representation
 from shedbim.writers.ifc.placements import write_placements
 from shedbim.writers.ifc.spatial import Storey
 from shedbim.writers.ifc.stepfile import SLOT, StepFile, numbered
-from shedbim.writers.ifc.text import enum, label, labels, listed, quoted
+from shedbim.writers.ifc.text import NONE, enum, label, labels, listed, quoted
 
 __all__ = ["Numbering", "number_pieces", "write_assemblies", "write_pieces", "write_tree"]
 
@@ -96,17 +96,18 @@ def write_assemblies(step: StepFile, shed: Shed, storey: Storey) -> tuple[list[s
                 RelativePlacement=f"#{start + which}",
             )
         )
-        item, place = classes[type_]
+        classed = classes[type_]
         elements.append(
             step.add(
                 "IfcElementAssembly",
                 GlobalId=quoted(global_id),
                 OwnerHistory=step.owner,
                 Name=label(key),
+                ObjectType=label(classed.named) if classed.named else NONE,
                 ObjectPlacement=placements[-1],
                 Tag=label(shed.assembly_types[type_].mark),
-                AssemblyPlace=enum(place),
-                PredefinedType=enum(item),
+                AssemblyPlace=enum(classed.place),
+                PredefinedType=enum(classed.item),
             )
         )
     return elements, placements
@@ -136,43 +137,41 @@ def write_pieces(
     for part, first, last in zip(shed.parts, numbering.starts, numbering.starts[1:], strict=False):
         if first < last:
             mapped = parts.write(part, numbering.in_order[first:last])
-            write_part_pieces(
-                step, contexts, mapped, label(part.mark), [column[first:last] for column in columns]
-            )
+            write_part_pieces(step, mapped, label(part.mark), [column[first:last] for column in columns])
     parts.finish()
 
 
-def _write_shared_shape(
-    step: StepFile, contexts: Contexts, mapped: Mapped, tag: str, columns: Sequence[Sequence[str]]
-) -> None:
+def _write_shared_shape(step: StepFile, mapped: Mapped, tag: str, columns: Sequence[Sequence[str]]) -> None:
     """Write the pieces of a part, which share one shape; ``columns`` are those of ``write_pieces``."""
     shown = [
-        shape_representation(step, context, identifier, _MAPPED, item)
-        for context, identifier, item in _representations(contexts, mapped)
+        shape_representation(step, each.context, each.identifier, _MAPPED, [each.item])
+        for each in mapped.shown
     ]
     shape = step.add("IfcProductDefinitionShape", Representations=listed(shown))
     template = step.template("IfcLocalPlacement", "PlacementRelTo", "RelativePlacement")
-    template += step.template(mapped.element.entity, "Name", **_ELEMENT, Representation=shape, Tag=tag)
+    template += step.template(
+        mapped.element.entity, "Name", **_ELEMENT, Representation=shape, Tag=tag, **mapped.attributes
+    )
     owners, places, elements, ids, names = columns
     local = numbered(step.reserve(len(names)), len(names))
     step.fill(template, local, owners, places, elements, ids, names, local)
 
 
-def _write_owned_shapes(
-    step: StepFile, contexts: Contexts, mapped: Mapped, tag: str, columns: Sequence[Sequence[str]]
-) -> None:
+def _write_owned_shapes(step: StepFile, mapped: Mapped, tag: str, columns: Sequence[Sequence[str]]) -> None:
     """Write the pieces of a part, each with a shape of its own, as IFC2X3 wants it."""
     template = "".join(
         step.template(
             "IfcShapeRepresentation",
-            ContextOfItems=context,
-            RepresentationIdentifier=quoted(identifier),
+            ContextOfItems=each.context,
+            RepresentationIdentifier=quoted(each.identifier),
             RepresentationType=quoted(_MAPPED),
-            Items=listed([item]),
+            Items=listed([each.item]),
         )
-        for context, identifier, item in _representations(contexts, mapped)
+        for each in mapped.shown
     )
-    template += step.template("IfcProductDefinitionShape", Representations=f"(#{SLOT},#{SLOT})")
+    template += step.template(
+        "IfcProductDefinitionShape", Representations=listed([f"#{SLOT}"] * len(mapped.shown))
+    )
     template += step.template("IfcLocalPlacement", "PlacementRelTo", "RelativePlacement")
     template += step.template(
         mapped.element.entity,
@@ -181,27 +180,34 @@ def _write_owned_shapes(
         Representation=f"#{SLOT}",
         Tag=tag,
         ObjectType=label(mapped.element.named or mapped.element.items[step.schema.name]),
+        **mapped.attributes,
     )
     owners, places, elements, ids, names = columns
     count = len(names)
-    axis, body, shape, local = (numbered(step.reserve(count), count) for _ in range(4))
-    step.fill(
-        template, axis, body, shape, axis, body, local, owners, places, elements, ids, names, local, shape
-    )  # fmt: skip
-
-
-def _representations(contexts: Contexts, mapped: Mapped) -> tuple[tuple[str, str, str], ...]:
-    """Give context, identifier and item of each representation of a piece."""
-    return (contexts.axis, "Axis", mapped.axis), (contexts.body, "Body", mapped.body)
+    shown = [numbered(step.reserve(count), count) for _ in mapped.shown]
+    shape, local = (numbered(step.reserve(count), count) for _ in range(2))
+    step.fill(template, *shown, shape, *shown, local, owners, places, elements, ids, names, local, shape)
 
 
 def write_tree(
-    step: StepFile, shed: Shed, storey: Storey, pieces: Sequence[str], assemblies: Sequence[str], *, grid: str
+    step: StepFile,
+    shed: Shed,
+    storey: Storey,
+    assemblies: Sequence[str],
+    held: Sequence[tuple[Integers, Sequence[str]]],
+    *,
+    grid: str,
 ) -> None:
-    """Write where each element belongs: in its assembly, or else in the storey."""
+    """Write where each element belongs: in its assembly, or else in the storey.
+
+    Args:
+        assemblies: references of all.
+        held: indices of assemblies (n,), -1 for none, and the n references of what each holds.
+        grid: the reference of the grid.
+    """
     loose = [grid]
     inside: list[list[str]] = [[] for _ in assemblies]
-    for owners, references in ((shed.assemblies.parent, assemblies), (shed.pieces.assembly, pieces)):
+    for owners, references in ((shed.assemblies.parent, assemblies), *held):
         for owner, reference in zip(owners.tolist(), references, strict=True):
             (inside[owner] if owner >= 0 else loose).append(reference)
     step.rooted(

@@ -1,30 +1,48 @@
-"""Property sets and quantity sets: what a reader can ask of a part, a place, an assembly."""
+"""Property sets: what a reader can ask of a part, a place, an assembly."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
 
+from shedbim.model.bars import Bar
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.plates import Plate
 from shedbim.model.shed import AssemblyType, Part
-from shedbim.sections.section import STEEL_DENSITY
 from shedbim.writers.ifc.classes import ElementClass
 from shedbim.writers.ifc.stepfile import StepFile
-from shedbim.writers.ifc.text import FALSE, TRUE, label, listed, number, quoted, typed
+from shedbim.writers.ifc.text import FALSE, TRUE, label, listed, metres, quoted, typed
 
 __all__ = [
     "assembly_set",
-    "common_set",
+    "count",
     "identifier",
     "one_property",
-    "part_set",
+    "part_sets",
     "property_set",
-    "quantity_set",
     "relate_set",
+    "size",
+    "word",
 ]
 
 
 def identifier(text: str) -> str:
     """Give a typed identifier."""
     return typed("IfcIdentifier", label(text))
+
+
+def word(text: str) -> str:
+    """Give a typed label."""
+    return typed("IfcLabel", label(text))
+
+
+def count(number: int) -> str:
+    """Give a typed number of things."""
+    return typed("IfcCountMeasure", str(number))
+
+
+def size(length: float) -> str:
+    """Give a typed length above zero, of ``length`` mm, in metres."""
+    return typed("IfcPositiveLengthMeasure", metres(length))
 
 
 def one_property(step: StepFile, name: str, value: str) -> str:
@@ -48,56 +66,80 @@ def relate_set(step: StepFile, definition: str, name: str, objects: Sequence[str
     )
 
 
-def common_set(step: StepFile, part: Part, element: ElementClass) -> str:
-    """Write the standard set that all pieces of a class have."""
-    values = {"Reference": identifier(part.mark), "LoadBearing": typed("IfcBoolean", TRUE)}
-    values["IsExternal"] = typed("IfcBoolean", FALSE)
+def part_sets(step: StepFile, part: Part, element: ElementClass) -> dict[str, str]:
+    """Write the sets that all pieces of a part share; give them by a word for each."""
+    sets = {"common": _common_set(step, part, element), "part": _part_set(step, part)}
+    if isinstance(part.shape, BoltGroup):
+        sets["fasteners"] = _fastener_set(step, part, part.shape)
+        sets["fastener"] = _standard_fastener_set(step, part, part.shape, element)
+    return {name: made for name, made in sets.items() if made}
+
+
+def _common_set(step: StepFile, part: Part, element: ElementClass) -> str:
+    """Write the standard set that all pieces of a class have; empty where the schema has none."""
+    values = {"Reference": identifier(part.mark)}
+    if element.entity in {"IfcMechanicalFastener", "IfcDiscreteAccessory"}:
+        known = not step.schema.is_first
+        return property_set(step, "Pset_ElementComponentCommon", part.mark, values) if known else ""
+    values |= {"LoadBearing": typed("IfcBoolean", TRUE), "IsExternal": typed("IfcBoolean", FALSE)}
     return property_set(step, f"Pset_{element.noun}Common", part.mark, values)
 
 
-def part_set(step: StepFile, part: Part) -> str:
+def _part_set(step: StepFile, part: Part) -> str:
     """Write the program's own set of a part."""
-    texts = {"Section": part.bar.section.designation, "Grade": part.grade, "Finish": part.finish}
-    values = {"Mark": identifier(part.mark), "Role": typed("IfcLabel", label(part.role.word))}
-    values |= {name: typed("IfcLabel", label(text)) for name, text in texts.items()}
+    shape = part.shape
+    values = {"Mark": identifier(part.mark), "Role": word(part.role.word)}
+    if isinstance(shape, Bar):
+        values["Section"] = word(shape.section.designation)
+    elif isinstance(shape, Plate):
+        length, width = shape.size
+        values["Plate"] = word(f"PL {shape.thickness:g}x{width:.10g}x{length:.10g}")
+    else:
+        values["Fastener"] = word(shape.fastener.designation)
+    values |= {"Grade": word(part.grade), "Finish": word(part.finish)}
+    if not isinstance(shape, BoltGroup) and shape.holes:
+        values["Holes"] = count(len(shape.holes))
     return property_set(step, "Shedbim_Part", part.mark, values)
+
+
+def _fastener_set(step: StepFile, part: Part, group: BoltGroup) -> str:
+    """Write the program's own set of a bolt group."""
+    item = group.fastener
+    under_head, under_nut = item.washers
+    values = {
+        "Count": count(group.count),
+        "Grade": word(item.grade),
+        "NominalDiameter": size(item.diameter),
+        "NominalLength": size(item.length) if item.length else "",
+        "Grip": size(item.grip),
+        "WashersUnderHead": count(under_head),
+        "WashersUnderNut": count(under_nut),
+        "NutsEach": count(item.nuts),
+    }
+    return property_set(step, "Shedbim_Fasteners", part.mark, {k: v for k, v in values.items() if v})
+
+
+def _standard_fastener_set(step: StepFile, part: Part, group: BoltGroup, element: ElementClass) -> str:
+    """Write the standard set of bolts or anchors, numbers being those of one of them; empty where there is none."""
+    item, kind = group.fastener, element.items[step.schema.name]
+    if step.schema.is_first or kind == "USERDEFINED":
+        return ""
+    if kind == "ANCHORBOLT":
+        values = {"AnchorBoltLength": size(item.length), "AnchorBoltDiameter": size(item.diameter)}
+        return property_set(step, "Pset_MechanicalFastenerAnchorBolt", part.mark, values)
+    values = {
+        "ThreadDiameter": size(item.diameter),
+        "NutsCount": count(item.nuts),
+        "WashersCount": count(sum(item.washers)),
+    }
+    return property_set(step, "Pset_MechanicalFastenerBolt", part.mark, values)
 
 
 def assembly_set(step: StepFile, kind: AssemblyType) -> str:
     """Write the program's own set of equal assemblies."""
     values = {
         "Mark": identifier(kind.mark),
-        "Kind": typed("IfcLabel", label(kind.kind)),
-        "Made": typed("IfcLabel", label(kind.made)),
+        "Kind": word(kind.kind),
+        "Made": word(kind.made),
     }
     return property_set(step, "Shedbim_Assembly", kind.mark, values)
-
-
-def quantity_set(step: StepFile, part: Part, element: ElementClass) -> str:
-    """Write the base quantities of a part: lengths in m, areas in m², volumes in m³, masses in kg.
-
-    Length is the saw length, long point to long point; gross is the bar before its ends are cut.
-    """
-    bar, section = part.bar, part.bar.section
-    gross = section.area * bar.length
-    quantities = (
-        ("Length", "Length", bar.length / 1e3),
-        ("Area", "CrossSectionArea", section.area / 1e6),
-        ("Area", "OuterSurfaceArea", bar.surface / 1e6),
-        ("Volume", "GrossVolume", gross / 1e9),
-        ("Volume", "NetVolume", bar.volume / 1e9),
-        ("Weight", "GrossWeight", gross * STEEL_DENSITY),
-        ("Weight", "NetWeight", bar.mass),
-    )
-    listing = listed(
-        step.share(f"IfcQuantity{kind}", **{"Name": quoted(name), f"{kind}Value": number(value)})
-        for kind, name, value in quantities
-    )
-    name = "BaseQuantities" if step.schema.is_first else f"Qto_{element.noun}BaseQuantities"
-    return step.rooted(
-        "IfcElementQuantity",
-        f"quantities/{part.mark}",
-        Name=quoted(name),
-        MethodOfMeasurement=quoted("BaseQuantities"),
-        Quantities=listing,
-    )

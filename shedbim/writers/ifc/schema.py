@@ -83,6 +83,10 @@ class Schema:
         """Whether this is IFC2X3, in which a shape has one owner and materials know no profiles."""
         return self.name == "IFC2X3"
 
+    def has(self, entity: str, attribute: str) -> bool:
+        """Whether an entity of the table has an attribute."""
+        return attribute in {spelled.strip("?*") for spelled in self.entities[entity].attributes}
+
     def text(self, entity: str, given: Mapping[str, str]) -> str:
         """Give the text of an entity; see ``Entity.text``.
 

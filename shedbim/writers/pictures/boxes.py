@@ -17,8 +17,7 @@ def piece_corners(shed: Shed, pieces: NDArray[np.int64]) -> Floats:
     """Give the corners (n, 8, 3) of the box round each piece that runs along the piece's own axes."""
     local = np.empty((len(shed.parts), 8, 3))
     for index, part in enumerate(shed.parts):
-        low_y, low_z, high_y, high_z = part.bar.section.outline.bounds
-        local[index] = box_corners((0.0, low_y, low_z), (part.bar.length, high_y, high_z))
+        local[index] = box_corners(*part.body.box)
     motion = shed.pieces.placement[pieces]
     corners: Floats = (
         local[shed.pieces.part[pieces]] @ np.swapaxes(motion[:, :, :3], 1, 2) + motion[:, None, :, 3]

@@ -96,7 +96,8 @@ def compose(
         room.take(np.array(place))
         scale = scale_bar(projection, capital, place)
     if labels in ("marks", "keys"):
-        seen = seen_pieces(shed, shot, projection, owners)
+        # A view that looks into a box is a close-up; in all others small things would bury the members.
+        seen = seen_pieces(shed, shot, projection, owners, close=view.box is not None)
         written += piece_labels(shed, seen, room, owners, shot, _texts(shed, labels), capital)
     written += scale + ([title] if title is not None else [])
     return Composition(width, height, shot, projection, tuple(written), caption)

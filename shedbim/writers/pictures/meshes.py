@@ -1,4 +1,4 @@
-"""The mesh of a bar and the edges a draughtsman would draw, in the bar's own frame, mm."""
+"""The mesh of a shape and the edges a draughtsman would draw, in its own frame, mm."""
 
 from __future__ import annotations
 
@@ -8,10 +8,10 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from shedbim.model.bars import Bar
+from shedbim.model.shapes import Shape
 from shedbim.model.shells import Shell, shell
 
-__all__ = ["Mesh", "bar_mesh"]
+__all__ = ["Mesh", "shape_mesh"]
 
 Floats = NDArray[np.float64]
 Indices = NDArray[np.int64]
@@ -40,9 +40,9 @@ class Mesh(Shell):
         return _edges(self.triangles, self.normals)
 
 
-def bar_mesh(bar: Bar, chord_error: float) -> Mesh:
-    """Give the mesh of a bar, its arcs cut into chords that leave them by ``chord_error`` mm at most."""
-    made = shell(bar, chord_error)
+def shape_mesh(shape: Shape, chord_error: float) -> Mesh:
+    """Give the mesh of a shape, its arcs cut into chords that leave them by ``chord_error`` mm at most."""
+    made = shell(shape, chord_error)
     return Mesh(made.points, made.triangles, made.normals, made.faces)
 
 

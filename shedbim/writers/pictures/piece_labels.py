@@ -14,8 +14,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.geometry.placements import Placements
+from shedbim.model.roles import Sort
 from shedbim.model.shed import Shed
 from shedbim.writers.pictures.annotations import INK, Annotation, Stroke, Words
+from shedbim.writers.pictures.extents import middle_line
 from shedbim.writers.pictures.placing import Room
 from shedbim.writers.pictures.projection import Projection
 from shedbim.writers.pictures.shot import Shot
@@ -25,8 +27,9 @@ __all__ = ["Seen", "piece_labels", "seen_pieces"]
 Floats = NDArray[np.float64]
 Indices = NDArray[np.int64]
 
-#: A piece is labelled when it shows this many pixels.
-_LEAST_PIXELS = 8
+#: A member is labelled when it shows this many pixels; a fitting or bolt group, where it is labelled at all, when
+#: it shows so many: as large as a small letter.
+_LEAST_PIXELS, _LEAST_SMALL_PIXELS = 8, 64
 #: No more labels than this on a picture.
 _MOST_LABELS = 160
 #: Where along what is seen of a piece a label may be, best first.
@@ -42,7 +45,7 @@ _UPRIGHT = 0.3
 #: many heights of a capital.
 _ON_PIECE, _BESIDE = 0.97, 0.25
 #: Points looked at between a piece and words beside it.
-_STEPS = 16
+_STEPS = 48
 #: A repeat is left out rather than cover more than this share of its rectangle.
 _REPEAT_COVER = 0.06
 
@@ -51,7 +54,7 @@ _REPEAT_COVER = 0.06
 class Seen:
     """What is seen of a piece: its index in the shed, the number of pixels, and at some places along it the
     middle of its width (p, 2) and half that width (p,); ``across`` (2,) points out of its axis to the
-    side where a label is looked for first; in pixels.
+    side where a label is looked for first; in pixels. ``bearing``: words may lie on it; bolts they would hide.
     """
 
     piece: int
@@ -59,24 +62,29 @@ class Seen:
     middle: Floats
     half: Floats
     across: Floats
+    bearing: bool = True
 
 
-def seen_pieces(shed: Shed, shot: Shot, projection: Projection, owners: Indices) -> list[Seen]:
-    """Give what is seen of each piece.
+def seen_pieces(
+    shed: Shed, shot: Shot, projection: Projection, owners: Indices, *, close: bool
+) -> list[Seen]:
+    """Give what is seen of each piece that may be labelled.
 
     Args:
         shed: the building.
         shot: the drawn view.
         projection: from building axes to pixels of the picture.
         owners: (height, width) int, the piece seen at each pixel of the picture, -1 for none.
+        close: whether fittings and bolts are labelled as well as members; what is highlighted always is.
     """
+    least = _least_pixels(shed, shot, close=close)
     flat = owners.ravel()
     at = np.flatnonzero(flat >= 0)
     at = at[np.argsort(flat[at], kind="stable")]
     pieces, starts = np.unique(flat[at], return_index=True)
     found = []
     for piece, where in zip(pieces.tolist(), np.split(at, starts[1:]), strict=True):
-        if len(where) >= _LEAST_PIXELS:
+        if len(where) >= least[piece]:
             points = np.stack([where % owners.shape[1], where // owners.shape[1]], axis=1) + 0.5
             found.append(_seen(shed, piece, points, projection))
     return found
@@ -129,11 +137,19 @@ def piece_labels(
     return leaders + words
 
 
+def _least_pixels(shed: Shed, shot: Shot, *, close: bool) -> Floats:
+    """How many pixels each piece (n,) must show to be labelled; infinitely many for one that is not."""
+    small = np.array([part.role.sort is not Sort.MEMBER for part in shed.parts], bool)[shed.pieces.part]
+    least = np.where(small, _LEAST_SMALL_PIXELS if close else np.inf, _LEAST_PIXELS)
+    return np.where(shot.emphasis.loud, _LEAST_PIXELS, least)
+
+
 def _seen(shed: Shed, piece: int, points: Floats, projection: Projection) -> Seen:
     """What is seen of a piece at pixels (n, 2)."""
     motion: Placements = shed.pieces.placement[piece]
-    length = shed.parts[shed.pieces.part[piece]].bar.length
-    ends = projection.points(np.stack([motion[:, 3], motion[:, 3] + motion[:, 0] * length]))[:, :2]
+    part = shed.parts[shed.pieces.part[piece]]
+    line = middle_line(part.body)
+    ends = projection.points(line @ motion[:, :3].T + motion[:, 3])[:, :2]
     step = ends[1] - ends[0]
     size = float(np.linalg.norm(step))
     along = step / size if size > 1.0 else np.array([1.0, 0.0])
@@ -153,7 +169,8 @@ def _seen(shed: Shed, piece: int, points: Floats, projection: Projection) -> See
         best = inside[np.abs(n[inside] - (low + high) / 2).argmin()]
         middle.append(points[best])
         half.append((high - low) / 2 + 0.5)
-    return Seen(piece, len(points), np.array(middle), np.array(half), across)
+    bearing = part.role.sort is not Sort.FASTENER
+    return Seen(piece, len(points), np.array(middle), np.array(half), across, bearing)
 
 
 def _best(
@@ -161,7 +178,7 @@ def _best(
 ) -> tuple[Floats, Floats | None] | None:
     """The middle (2,) of the best free place and the leader (4,) it needs; None when there is none."""
     size = _size(label)
-    on = _on_the_piece(each, size, room, owners)
+    on = _on_the_piece(each, size, room, owners) if each.bearing else None
     if on is not None:
         return on, None
     middles, costs = _beside(each, size, label.capital)

@@ -14,9 +14,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.geometry.placements import Placements
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.roles import Sort
 from shedbim.model.shed import Part, Shed
+from shedbim.writers.coarse import coarse
 from shedbim.writers.pictures.boxes import piece_corners
-from shedbim.writers.pictures.meshes import Mesh, bar_mesh
+from shedbim.writers.pictures.extents import chord_error, depth, middle_line
+from shedbim.writers.pictures.meshes import Mesh, shape_mesh
 from shedbim.writers.pictures.projection import Projection
 from shedbim.writers.pictures.raster import Canvas
 from shedbim.writers.pictures.tints import Emphasis, shades, tints
@@ -28,12 +32,12 @@ Indices = NDArray[np.int64]
 
 #: Each pixel of a picture is 2 x 2 pixels of the canvas.
 FINER = 2
-#: Arcs become chords this far off, mm, and no further than this share of a section's radius, so that the
-#: chords of a thin round bar do not turn so sharply that they are drawn as edges.
-_CHORD_ERROR, _CHORD_SHARE = 1.0, 0.02
 #: A bar whose section is no deeper than this many pixels of the canvas is drawn with its axis as a line and
 #: without edges, which would cover it all.
 _SLENDER_PIXELS = 4.0
+#: A fitting or a bolt head smaller than this, pixels of the canvas, is left out: a building seen from afar has
+#: tens of thousands of them and shows none. So are holes.
+_LEAST_PIXELS = 2.0
 #: Triangles of one batch: bounds memory.
 _AT_ONCE = 400_000
 
@@ -64,9 +68,8 @@ class Batch:
         return replace(self, pieces=self.pieces[rows], placements=self.placements[rows])
 
     def depth(self, projection: Projection) -> float:
-        """The greater side of the section, pixels of the projection."""
-        section = self.part.bar.section
-        return max(section.width, section.height) * projection.scale
+        """The size that edges fade by, pixels of the projection."""
+        return depth(self.part.body) * projection.scale
 
     def slender(self, projection: Projection) -> bool:
         """Whether its pieces are so thin on the canvas that they are drawn without edges."""
@@ -132,9 +135,10 @@ def shoot(
         emphasis: which pieces stand out.
     """
     fine = projection.finer(FINER)
+    pieces = pieces[_large_enough(shed, fine, emphasis)[pieces]]
     depths = piece_corners(shed, pieces) @ fine.turn[2] if len(pieces) else np.zeros(1)
     canvas = Canvas(width * FINER, height * FINER, float(depths.min()), float(depths.max()))
-    batches = tuple(_batches(shed, pieces))
+    batches = tuple(_batches(shed, pieces, _LEAST_PIXELS / fine.scale))
     colours, owners, base = [np.zeros(0, np.uint32)], [np.zeros(0, np.int64)], 0
     all_tints = tints(shed, emphasis)
     for batch in batches:
@@ -145,13 +149,26 @@ def shoot(
     return Shot(fine, canvas, np.concatenate(colours), np.concatenate(owners), batches, emphasis)
 
 
-def part_mesh(part: Part) -> Mesh:
-    """Give the mesh of a part, as coarse as a picture allows."""
-    section = part.bar.section
-    return bar_mesh(part.bar, min(_CHORD_ERROR, _CHORD_SHARE * min(section.width, section.height) / 2))
+def part_mesh(part: Part, least_hole: float = 0.0) -> Mesh:
+    """Give the mesh of a part, as coarse as a picture allows, without holes narrower than ``least_hole`` mm."""
+    shape = coarse(part.body, least_hole)
+    return shape_mesh(shape, chord_error(shape))
 
 
-def _batches(shed: Shed, pieces: Indices) -> Iterator[Batch]:
+def _large_enough(shed: Shed, projection: Projection, emphasis: Emphasis) -> NDArray[np.bool_]:
+    """Which pieces of a shed (n,) are drawn: all members, and of the others those that can be seen or shall be."""
+    by_part = np.array(
+        [
+            part.role.sort is Sort.MEMBER or depth(part.body) * projection.scale >= _LEAST_PIXELS
+            for part in shed.parts
+        ],
+        bool,
+    )
+    drawn: NDArray[np.bool_] = by_part[shed.pieces.part] | emphasis.loud
+    return drawn
+
+
+def _batches(shed: Shed, pieces: Indices, least_hole: float) -> Iterator[Batch]:
     """Cut pieces (n,) into those of one part, and those into runs of about ``_AT_ONCE`` triangles."""
     if not len(pieces):
         return
@@ -159,7 +176,7 @@ def _batches(shed: Shed, pieces: Indices) -> Iterator[Batch]:
     order = np.argsort(part, kind="stable")
     kinds, starts = np.unique(part[order], return_index=True)
     for kind, rows in zip(kinds.tolist(), np.split(order, starts[1:]), strict=True):
-        mesh = part_mesh(shed.parts[kind])
+        mesh = part_mesh(shed.parts[kind], least_hole)
         normals, face = np.unique(mesh.normals.round(6) + 0.0, axis=0, return_inverse=True)
         step = max(_AT_ONCE // len(mesh.triangles), 1)
         for begin in range(0, len(rows), step):
@@ -181,7 +198,10 @@ def _draw(canvas: Canvas, projection: Projection, batch: Batch, base: int) -> No
         points[row[:, None], mesh.triangles[triangle]], _numbers(base, count, row, batch.face[triangle])
     )
     if batch.slender(projection):
-        axis = projection.placed(batch.placements, np.array([[0.0, 0, 0], [batch.part.bar.length, 0, 0]]))
+        # Between the bolts of a group there is nothing that a line could stand for.
+        if isinstance(batch.part.body, BoltGroup):
+            return
+        axis = projection.placed(batch.placements, middle_line(batch.part.body))
         canvas.lines(axis, _numbers(base, count, np.arange(len(axis)), turned[:, :, 2].argmin(axis=1)))
         return
     one, other = batch.face[mesh.sides].T

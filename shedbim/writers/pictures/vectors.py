@@ -11,6 +11,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from shedbim.model.bars import Bar
 from shedbim.writers.pictures.main_faces import despeckled, main_faces
 from shedbim.writers.pictures.picture import edge_strength
 from shedbim.writers.pictures.regions import outlines
@@ -64,6 +65,7 @@ def vectors(shot: Shot) -> Vectors:
         ends, width = _axes(batch, shot)
         length = np.hypot(*(ends[:, 1, :2] - ends[:, 0, :2]).T) / FINER
         thin = (width <= _SLENDER) & (length >= np.maximum(_LONGER * width, 1.0))
+        thin &= isinstance(batch.part.body, Bar)
         slender[batch.pieces[thin]] = True
         own = shot.colours[base : base + len(batch.pieces) * len(batch.normals)]
         base += len(own)
@@ -103,10 +105,10 @@ def _from_behind(bars: dict[tuple[int, float], Floats]) -> dict[tuple[int, float
 
 
 def _axes(batch: Batch, shot: Shot) -> tuple[Floats, Floats]:
-    """The middle lines of pieces (n, 2, 3), canvas, and how wide each is seen (n,), pixels of the picture."""
-    low_y, low_z, high_y, high_z = batch.part.bar.section.outline.bounds
+    """The middle lines of bars (n, 2, 3), canvas, and how wide each is seen (n,), pixels of the picture."""
+    (_, low_y, low_z), (length, high_y, high_z) = batch.part.body.box
     y, z = (low_y + high_y) / 2, (low_z + high_z) / 2
-    ends = shot.projection.placed(batch.placements, np.array([[0.0, y, z], [batch.part.bar.length, y, z]]))
+    ends = shot.projection.placed(batch.placements, np.array([[0.0, y, z], [length, y, z]]))
     step = ends[:, 1, :2] - ends[:, 0, :2]
     along = step / np.maximum(np.hypot(*step.T), 1e-9)[:, None]
     across = np.stack([-along[:, 1], along[:, 0]], axis=1)

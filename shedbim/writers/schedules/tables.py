@@ -13,13 +13,16 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.errors import ModelError
-from shedbim.model.roles import Role
+from shedbim.model.bars import Bar
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.roles import Role, Sort
+from shedbim.model.shapes import Shape
 from shedbim.model.shed import Part, Shed
 from shedbim.writers.schedules.table import Cell, Column, Table, Total
 
 K = TypeVar("K", bound=Hashable)
 
-__all__ = ["assemblies", "by_role", "by_section", "members", "totals"]
+__all__ = ["assemblies", "by_role", "by_section", "members", "stock_name", "totals"]
 
 _AMOUNTS = (
     Column("parts", decimals=0, summed=True),
@@ -34,7 +37,7 @@ _SAME_MASS = 1e-9
 
 
 def members(shed: Shed) -> Table:
-    """Give the members by mark: one row a part, in the order of the parts."""
+    """Give the members by mark: one row a part, in the order of the parts; plates and bolts have their own lists."""
     columns = (
         Column("mark"),
         Column("role"),
@@ -53,6 +56,8 @@ def members(shed: Shed) -> Table:
     for part, count, marks in zip(
         shed.parts, shed.quantities.tolist(), shed.part_assembly_marks, strict=True
     ):
+        if part.role.sort is not Sort.MEMBER:
+            continue
         bar = part.bar
         surface = bar.surface / 1e6
         rows.append((
@@ -100,10 +105,13 @@ def assemblies(shed: Shed) -> Table:
 
 
 def by_section(shed: Shed) -> Table:
-    """Give totals by section and grade, in the order of their first part."""
+    """Give totals by section and grade, plate thickness or bolt, in the order of their first part.
+
+    What has no length weighs nothing per metre here.
+    """
     columns = (Column("section"), Column("grade"), Column("mass per metre", "kg/m", 2), *_AMOUNTS)
-    weights = {part.bar.section.designation: part.bar.section.mass_per_metre for part in shed.parts}
-    groups = _grouped(shed, lambda part: (part.bar.section.designation, part.grade))
+    weights = {stock_name(part.shape): _mass_per_metre(part.shape) for part in shed.parts}
+    groups = _grouped(shed, lambda part: (stock_name(part.shape), part.grade))
     rows = tuple(
         (name, grade, weights[name], *_amounts(shed, where)) for (name, grade), where in groups.items()
     )
@@ -141,14 +149,25 @@ def _grouped(shed: Shed, key: Callable[[Part], K]) -> dict[K, list[int]]:
 def _amounts(shed: Shed, parts: Sequence[int]) -> tuple[int, int, float, float, float]:
     """Parts, pieces, length in m, mass in kg and surface in m² of all pieces of some parts, by index."""
     counts = shed.quantities.tolist()
-    bars = [(counts[index], shed.parts[index].bar) for index in parts]
+    shapes = [(counts[index], shed.parts[index].shape) for index in parts]
     return (
-        len(bars),
-        sum(count for count, _ in bars),
-        sum(count * bar.length for count, bar in bars) / 1e3,
-        sum(count * bar.mass for count, bar in bars),
-        sum(count * bar.surface for count, bar in bars) / 1e6,
+        len(shapes),
+        sum(count for count, _ in shapes),
+        sum(count * shape.length for count, shape in shapes if isinstance(shape, Bar)) / 1e3,
+        sum(count * shape.mass for count, shape in shapes),
+        sum(count * shape.surface for count, shape in shapes) / 1e6,
     )
+
+
+def stock_name(shape: Shape) -> str:
+    """Give the name of what a shape is cut from, or of the fastener it is a group of."""
+    if isinstance(shape, Bar):
+        return shape.section.designation
+    return shape.fastener.designation if isinstance(shape, BoltGroup) else f"PL {shape.thickness:g}"
+
+
+def _mass_per_metre(shape: Shape) -> float:
+    return shape.section.mass_per_metre if isinstance(shape, Bar) else 0.0
 
 
 def _contents(shed: Shed) -> tuple[NDArray[np.int64], NDArray[np.float64]]:
@@ -156,7 +175,7 @@ def _contents(shed: Shed) -> tuple[NDArray[np.int64], NDArray[np.float64]]:
     number = len(shed.assemblies)
     inside = shed.pieces.assembly >= 0
     owner = shed.pieces.assembly[inside]
-    mass_of_part = np.array([part.bar.mass for part in shed.parts])
+    mass_of_part = np.array([part.shape.mass for part in shed.parts])
     pieces: NDArray[np.int64] = np.bincount(owner, minlength=number).astype(np.int64)
     weights = mass_of_part[shed.pieces.part[inside]]
     masses: NDArray[np.float64] = np.bincount(owner, weights=weights, minlength=number).astype(np.float64)

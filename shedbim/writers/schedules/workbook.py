@@ -17,6 +17,8 @@ from xlsxwriter.worksheet import Worksheet
 from shedbim.model.shed import Shed
 from shedbim.writers.imprint import Imprint
 from shedbim.writers.schedules.about import about_lines
+from shedbim.writers.schedules.fasteners import anchors, bolts, welds
+from shedbim.writers.schedules.fittings import finishes, fittings, holes, part_lists
 from shedbim.writers.schedules.formats import Formats
 from shedbim.writers.schedules.table import Table, Total
 from shedbim.writers.schedules.tables import assemblies, by_role, by_section, members
@@ -24,7 +26,19 @@ from shedbim.writers.schedules.tables import assemblies, by_role, by_section, me
 __all__ = ["SHEETS", "workbook_bytes"]
 
 #: The sheets in order; a further schedule is one function and one row here.
-SHEETS: tuple[Callable[[Shed], Table], ...] = (members, assemblies, by_section, by_role)
+SHEETS: tuple[Callable[[Shed], Table], ...] = (
+    members,
+    fittings,
+    bolts,
+    anchors,
+    welds,
+    holes,
+    assemblies,
+    part_lists,
+    finishes,
+    by_section,
+    by_role,
+)
 
 _A4 = 9  # the paper number of ISO/IEC 29500-1, 18.3.1.63 (value from memory)
 _WIDEST = 40  # characters; longer texts wrap

@@ -39,6 +39,11 @@ class ColumnReader {
     if (!column) throw new Error(`the data hold no column ${name}`);
     return column;
   }
+
+  /** The same, without rows where the data do not hold it. */
+  find(name) {
+    return this.columns.get(name) ?? { rows: 0, width: 0, values: new Int32Array(0) };
+  }
 }
 
 /** Unpacks base64 text of a zlib stream into bytes. */
@@ -63,7 +68,7 @@ async function unpackModel(text) {
     imprint: head.imprint,
     defaults: head.defaults,
     grid: head.grid,
-    roles: head.roles.map(([word, colour]) => ({ word, colour })),
+    roles: head.roles.map(([word, colour, sort]) => ({ word, colour, sort })),
     parts,
     pieces,
     assemblies: readAssemblies(head, columns, pieces),
@@ -82,7 +87,11 @@ async function unpackModel(text) {
   return model;
 }
 
-/** Parts: mark, role, section ..., length in mm, mass in kg, surface in m², and the mesh in the part's frame. */
+/**
+ * Parts: mark, role, section ..., length in mm, mass in kg, surface in m², and the mesh in the part's frame. `sort` is
+ * member, fitting or fastener, `kind` is bar, plate or bolts; `figures` are what else is told of it; `depth` and
+ * `breadth`, mm, are what edges and all of it fade by from afar.
+ */
 function readParts(head, columns) {
   const sizes = columns.get('part sizes').values;
   const counts = columns.get('mesh counts').values;
@@ -90,27 +99,31 @@ function readParts(head, columns) {
   const triangles = columns.get('mesh triangles').values;
   const used = [0, 0];
   return head.parts.map(([mark, role, section, grade, finish, assemblies], index) => {
-    const [pointCount, triangleCount, round] = counts.subarray(3 * index, 3 * index + 3);
+    const [pointCount, triangleCount, surface] = counts.subarray(3 * index, 3 * index + 3);
     const mesh = {
       points: Float64Array.from(points.subarray(3 * used[0], 3 * (used[0] + pointCount)), (value) => value / 100),
       triangles: triangles.subarray(3 * used[1], 3 * (used[1] + triangleCount)),
     };
     used[0] += pointCount;
     used[1] += triangleCount;
-    mesh.edges = sharpEdges(mesh, round === 1);
+    mesh.edges = sharpEdges(mesh, surface);
     return {
       index,
       mark,
       role: head.roles[role][0],
+      sort: head.roles[role][2],
+      kind: head.kinds[index],
+      figures: head.figures[index],
       section,
       grade,
       finish,
       assemblies,
       mesh,
-      length: sizes[3 * index] / 1000,
+      length: sizes[4 * index] / 1000,
       mass: head.masses[index],
-      surface: sizes[3 * index + 1] / 1e4,
-      depth: sizes[3 * index + 2] / 100,
+      surface: sizes[4 * index + 1] / 1e4,
+      depth: sizes[4 * index + 2] / 100,
+      breadth: sizes[4 * index + 3] / 100,
     };
   });
 }
@@ -157,37 +170,50 @@ function readAssemblies(head, columns, pieces) {
   return assemblies;
 }
 
-/** Joints by piece: `of(piece)` gives [{kind, fastening, at, others}], `at` being start, end or along. */
+/**
+ * Joints by piece: `of(piece)` gives [{kind, fastening, at, others, fittings}]: the other members, and the plates and
+ * bolts that the joint adds. `at` is start, end or along, or `in` where the piece is itself one of those.
+ */
 function readJoints(head, columns, count) {
   const runs = head.joints.map(([kind, fastening], number) => ({
     kind,
     fastening,
     pieces: columns.get(`joint ${number} pieces`),
     at: columns.get(`joint ${number} at`).values,
+    fittings: columns.find(`joint ${number} fittings`),
   }));
+  /** Members first, then fittings, as one run of cells. */
+  const cells = ({ pieces, fittings }) => [pieces, fittings];
   const first = new Int32Array(count + 1);
-  for (const run of runs) for (const piece of run.pieces.values) first[piece + 1]++;
+  for (const run of runs) for (const { values } of cells(run)) for (const piece of values) first[piece + 1]++;
   for (let piece = 0; piece < count; piece++) first[piece + 1] += first[piece];
   const next = first.slice();
   const places = new Int32Array(2 * first[count]);
   runs.forEach((run, number) => {
-    run.pieces.values.forEach((piece, cell) => {
-      const slot = next[piece]++;
-      places[2 * slot] = number;
-      places[2 * slot + 1] = cell;
-    });
+    let before = 0;
+    for (const { values } of cells(run)) {
+      values.forEach((piece, cell) => {
+        const slot = next[piece]++;
+        places[2 * slot] = number;
+        places[2 * slot + 1] = before + cell;
+      });
+      before += values.length;
+    }
   });
   const words = ['start', 'end', 'along'];
   const of = (piece) => {
     const found = [];
     for (let slot = first[piece]; slot < first[piece + 1]; slot++) {
       const run = runs[places[2 * slot]];
+      const members = run.pieces.values.length;
       const cell = places[2 * slot + 1];
-      const row = Math.floor(cell / run.pieces.width) * run.pieces.width;
-      const others = Array.from(run.pieces.values.subarray(row, row + run.pieces.width)).filter(
-        (each) => each !== piece,
+      const isMember = cell < members;
+      const row = Math.floor(isMember ? cell / run.pieces.width : (cell - members) / run.fittings.width);
+      const [others, fittings] = cells(run).map(({ values, width }) =>
+        Array.from(values.subarray(row * width, (row + 1) * width)).filter((each) => each !== piece),
       );
-      found.push({ kind: run.kind, fastening: run.fastening, at: words[run.at[cell]], others });
+      const at = isMember ? words[run.at[cell]] : 'in';
+      found.push({ kind: run.kind, fastening: run.fastening, at, others, fittings });
     }
     return found;
   };
@@ -203,7 +229,6 @@ function placeBoxes(model) {
       part.box.low[at % 3] = Math.min(part.box.low[at % 3], value);
       part.box.high[at % 3] = Math.max(part.box.high[at % 3], value);
     });
-    part.breadth = Math.max(part.box.high[1] - part.box.low[1], part.box.high[2] - part.box.low[2]);
   }
   pieces.low = new Float64Array(3 * pieces.count);
   pieces.high = new Float64Array(3 * pieces.count);

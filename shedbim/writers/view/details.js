@@ -1,5 +1,28 @@
 // What is known of the selected piece, or a summary of several.
 
+/** What a part is and how large, as [name, text] pairs, by the kind of its shape. */
+const SIZES = {
+  bar: ({ section, length, figures }) => [
+    ['section', section],
+    ['length', `${written(length, 1)} mm`],
+    ['holes', figures.holes ? written(figures.holes) : ''],
+  ],
+  plate: ({ section, figures }) => [
+    ['plate', section],
+    ['thickness', `${written(figures.thickness_mm, 1)} mm`],
+    ['cut from', `${figures.size_mm.map((side) => written(side, 1)).join(' × ')} mm`],
+    ['holes', written(figures.holes ?? 0)],
+  ],
+  bolts: ({ figures }) => [
+    ['fastener', figures.designation],
+    ['in this group', written(figures.count)],
+    ['length', figures.length_mm ? `${written(figures.length_mm, 1)} mm` : ''],
+    ['grip', `${written(figures.grip_mm, 1)} mm`],
+    ['nuts each', written(figures.nuts)],
+    ['washers each', written(figures.washers)],
+  ],
+};
+
 function createDetails(model, state, stage, cuts, say) {
   const box = byId('details-body');
   const MANY = 40;
@@ -63,14 +86,20 @@ function createDetails(model, state, stage, cuts, say) {
     );
   }
 
+  /** The marks of some fittings, each once with how many there are. */
+  function fittingWords(pieces) {
+    const marks = grouped(pieces, (piece) => model.parts[model.pieces.part[piece]].mark);
+    return marks.map(([mark, ofMark]) => (ofMark.length > 1 ? `${ofMark.length} × ${mark}` : mark)).join(', ');
+  }
+
   function jointList(piece) {
     const joints = model.joints.of(piece);
-    const order = { start: 0, end: 1, along: 2 };
+    const order = { start: 0, end: 1, along: 2, in: 3 };
     joints.sort((a, b) => order[a.at] - order[b.at]);
     return element(
       'ul',
       { id: 'piece-joints', class: 'lines' },
-      ...joints.map(({ kind, fastening, at, others }) =>
+      ...joints.map(({ kind, fastening, at, others, fittings }) =>
         element(
           'li',
           {},
@@ -85,6 +114,9 @@ function createDetails(model, state, stage, cuts, say) {
               element('span', { class: 'detail' }, ` ${model.parts[model.pieces.part[other]].mark}`),
             ),
           ),
+          ...(fittings.length
+            ? [element('div', {}, 'with ', link(fittingWords(fittings), fittings, 'Select these'))]
+            : []),
         ),
       ),
     );
@@ -104,15 +136,18 @@ function createDetails(model, state, stage, cuts, say) {
       actions([piece], part),
       pairs([
         ['state', state_],
-        ['section', part.section],
-        ['length', `${written(part.length, 1)} mm`],
+        ...SIZES[part.kind](part),
         ['mass', `${written(part.mass, 3)} kg`],
-        ['surface', `${written(part.surface, 4)} m²`],
+        ['surface', part.surface ? `${written(part.surface, 4)} m²` : ''],
         ['grade', part.grade],
         ['finish', part.finish],
         ['pieces of this mark', written(part.pieces.length)],
-        ['from, mm', places(carried(model, piece, [0, 0, 0]))],
-        ['to, mm', places(carried(model, piece, [part.length, 0, 0]))],
+        ...(part.kind === 'bar'
+          ? [
+              ['from, mm', places(carried(model, piece, [0, 0, 0]))],
+              ['to, mm', places(carried(model, piece, [part.length, 0, 0]))],
+            ]
+          : [['middle, mm', places(carried(model, piece, times(add(part.box.low, part.box.high), 0.5)))]]),
       ]),
       element('h4', {}, 'Assembly'),
       assemblyLine(piece),
@@ -135,8 +170,7 @@ function createDetails(model, state, stage, cuts, say) {
           ? [
               ['mark', single.mark],
               ['role', single.role],
-              ['section', single.section],
-              ['length', `${written(single.length, 1)} mm`],
+              ...SIZES[single.kind](single),
               ['mass each', `${written(single.mass, 3)} kg`],
               ['grade', single.grade],
               ['finish', single.finish],
@@ -179,7 +213,8 @@ function createDetails(model, state, stage, cuts, say) {
     if (!pieces.length) return 'Nothing selected';
     if (pieces.length > 1) return `${counted(pieces.length, 'piece')} selected`;
     const part = model.parts[model.pieces.part[pieces[0]]];
-    const sizes = `${written(part.length, 1)} mm, ${written(part.mass, 3)} kg`;
+    const length = part.kind === 'bar' ? `${written(part.length, 1)} mm, ` : '';
+    const sizes = `${length}${written(part.mass, 3)} kg`;
     return `Selected ${model.pieces.keys[pieces[0]]}: mark ${part.mark}, ${part.section}, ${sizes}`;
   }
 

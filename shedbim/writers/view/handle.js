@@ -124,6 +124,7 @@ function testHandle({ model, state, stage, cuts, measure }) {
       );
     },
     isShown: (key) => state.shown[index(key)] === 1,
+    sortOn: (sort) => state.sortOn(sort),
     isCutAway: (key) => leftOf(model, index(key), cuts.planes()) === 0,
     /** Places of a piece's axis ends in building axes, mm. */
     ends: (key) => {

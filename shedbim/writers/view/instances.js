@@ -3,6 +3,18 @@
 const INSTANCE_BYTES = 56; // three rows of four floats, a colour of four bytes, the number of the piece
 const GROUP_SIZE = 160; // pieces of a part in one draw call, at most
 
+/** Parts pieces into groups of at most GROUP_SIZE that lie close together: halved across the longest side of their box. */
+function clustered(model, pieces) {
+  if (pieces.length <= GROUP_SIZE) return [pieces];
+  const { low, high } = boxOf(model, pieces);
+  const sides = sub(high, low);
+  const axis = sides.indexOf(Math.max(...sides));
+  const middle = (piece) => model.pieces.low[3 * piece + axis] + model.pieces.high[3 * piece + axis];
+  const sorted = [...pieces].sort((a, b) => middle(a) - middle(b) || a - b);
+  const half = sorted.length >> 1;
+  return [...clustered(model, sorted.slice(0, half)), ...clustered(model, sorted.slice(half))];
+}
+
 /**
  * Some pieces, sorted by part, in a buffer of their own. Those of one part that lie near one another are a group:
  * one draw call, left out where its box is outside of the picture.
@@ -33,21 +45,19 @@ class InstanceSet {
     const p = model.pieces.placement;
     this.groups = [];
     let at = 0;
-    model.parts.forEach((part, index) => {
-      let group = null;
-      for (const piece of part.pieces) {
+    this.#eachCluster((part, cluster) => {
+      const group = {
+        ...this.solids.parts[part.index],
+        depth: part.depth,
+        breadth: part.breadth,
+        kind: part.kind,
+        selected: 0,
+        first: at,
+        count: 0,
+        pieces: [],
+      };
+      for (const piece of cluster) {
         if (!kept[piece]) continue;
-        if (!group || group.count === GROUP_SIZE) {
-          group = {
-            ...this.solids.parts[index],
-            depth: part.depth,
-            breadth: part.breadth,
-            first: at,
-            count: 0,
-            pieces: [],
-          };
-          this.groups.push(group);
-        }
         const slot = (at * INSTANCE_BYTES) / 4;
         for (let row = 0; row < 3; row++) {
           for (let axis = 0; axis < 4; axis++) floats[slot + 4 * row + axis] = p[12 * piece + 3 * axis + row];
@@ -55,10 +65,12 @@ class InstanceSet {
         small.set(colours.subarray(3 * piece, 3 * piece + 3), 4 * (slot + 12));
         small[4 * (slot + 12) + 3] = selected.has(piece) ? 128 : 255;
         whole[slot + 13] = piece;
+        if (selected.has(piece)) group.selected++;
         group.count++;
         group.pieces.push(piece);
         at++;
       }
+      if (group.count) this.groups.push(group);
     });
     gl.bindBuffer(gl.ARRAY_BUFFER, this.buffer);
     gl.bufferData(gl.ARRAY_BUFFER, bytes, gl.DYNAMIC_DRAW);
@@ -70,6 +82,14 @@ class InstanceSet {
       this.#describe(group.edges, this.buffers.edges, group.first);
     });
     this.count = total;
+  }
+
+  /** Calls `call` with each part and each cluster of its pieces, which are found when they are first asked for. */
+  #eachCluster(call) {
+    for (const part of this.model.parts) {
+      part.clusters ??= clustered(this.model, part.pieces);
+      for (const cluster of part.clusters) call(part, cluster);
+    }
   }
 
   #describe(array, indices, first) {

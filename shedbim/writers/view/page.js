@@ -109,6 +109,36 @@ function createViewStrip(state, stage) {
   byId('show-all').addEventListener('click', () => state.showAll());
 }
 
+/** The switches of fittings and bolts, which stand only where the building has any. */
+function createSortSwitches(model, state) {
+  const switches = [
+    ['fitting', byId('fittings-on'), 'Fittings'],
+    ['fastener', byId('fasteners-on'), 'Bolts, anchors and nuts'],
+  ].flatMap(([sort, box, word]) => {
+    const pieces = model.parts.flatMap((part) => (part.sort === sort ? part.pieces : []));
+    box.closest('label').hidden = !pieces.length;
+    return pieces.length ? [{ sort, box, word, pieces }] : [];
+  });
+  byId('sorts').hidden = !switches.length;
+  const set = (some, on) => {
+    for (const { sort } of some) state.setSort(sort, on);
+    say(`${some.map(({ word }) => word).join(', ')} ${on ? 'shown' : 'hidden'}`);
+  };
+  const refresh = () => {
+    for (const { box, pieces } of switches) {
+      const shown = pieces.reduce((sum, piece) => sum + state.shown[piece], 0);
+      box.checked = shown > 0;
+      box.indeterminate = shown > 0 && shown < pieces.length;
+    }
+  };
+  for (const each of switches) each.box.addEventListener('change', () => set([each], each.box.checked));
+  state.on('shown', refresh);
+  return {
+    /** Switches all of them off, or on where none is on. */
+    toggle: () => switches.length && set(switches, !switches.some(({ box }) => box.checked)),
+  };
+}
+
 /** Opens one of the panels: on a wide page beside the model, on a narrow one below it. */
 function createPanels(tabs) {
   const body = document.body;
@@ -144,7 +174,7 @@ function createPanels(tabs) {
 }
 
 /** Keys that work wherever no text is typed. */
-function listenToKeys({ model, state, stage, measure, cuts }) {
+function listenToKeys({ model, state, stage, measure, cuts, sorts }) {
   const step = (by) => {
     const { count } = model.pieces;
     // On from the piece picked last, even when that has been hidden since.
@@ -169,6 +199,7 @@ function listenToKeys({ model, state, stage, measure, cuts }) {
     h: () => state.show(chosen(), false),
     o: () => state.selected.size && state.isolate(chosen()),
     a: () => state.showAll(),
+    c: () => sorts.toggle(),
     m: () => measure.setOn(!measure.on),
     x: () => byId('cut').click(),
     s: () => byId('schedule').click(),
@@ -224,6 +255,7 @@ async function startPage() {
   createLegend(model, state);
   createCounts(model, state);
   createViewStrip(state, stage);
+  const sorts = createSortSwitches(model, state);
   byId('defaults').append(
     ...model.defaults.flatMap(([field, value]) => [element('dt', {}, field), element('dd', {}, value)]),
   );
@@ -244,7 +276,7 @@ async function startPage() {
     },
     hover: (x, y) => measure.hover(x, y),
   });
-  const everything = { model, state, stage, cuts, measure };
+  const everything = { model, state, stage, cuts, measure, sorts };
   listenToKeys(everything);
   byId('loading').hidden = true;
   Object.defineProperties(window.shedView, Object.getOwnPropertyDescriptors(testHandle(everything)));

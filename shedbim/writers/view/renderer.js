@@ -1,5 +1,6 @@
 // Draws the pieces with WebGL2: few draw calls for each part, however many pieces it has.
 
+const LEAST_HEAD = 1.5; // pixels: smaller heads of bolts are not drawn
 const PICK_SIDE = 9; // pixels, odd: the square around the pointer in which pieces are looked for
 
 /** Gives the renderer of a canvas, or null where there is no WebGL2. */
@@ -204,8 +205,7 @@ class Renderer {
     gl.uniform4f(at.ghost, 0, 0, 0, 0);
     gl.enable(gl.CULL_FACE);
     this.#cutBy(this.faces, []);
-    // Groups thinner than a pixel even where they are nearest are drawn by their axes alone.
-    this.#drawSet(this.whole, 'faces', (group) => group.breadth / this.#pixelAt(scene, group.box) > 0.9);
+    this.#drawSet(this.whole, 'faces', this.#largeEnough(scene));
     if (this.opened.count) this.#drawOpened(scene);
 
     gl.disable(gl.CULL_FACE);
@@ -219,6 +219,20 @@ class Renderer {
     gl.depthMask(true);
   }
 
+  /**
+   * Says of a group whether its faces are drawn: one thinner than a pixel even where it is nearest is drawn by its
+   * axes alone, and bolts whose heads are specks not at all.
+   */
+  #largeEnough(scene) {
+    return (group) => group.breadth / this.#pixelAt(scene, group.box) > (group.kind === 'bolts' ? LEAST_HEAD : 0.9);
+  }
+
+  /** The same for bolts alone: all else can be picked however thin it is. */
+  #boltsLargeEnough(scene) {
+    const large = this.#largeEnough(scene);
+    return (group) => group.kind !== 'bolts' || large(group);
+  }
+
   /** By how much pieces that are not selected turn grey. */
   #dimmed() {
     return this.selected.count ? 0.45 : 0;
@@ -229,11 +243,11 @@ class Renderer {
     const { gl } = this;
     this.#cutBy(this.faces, scene.cuts);
     gl.enable(gl.SAMPLE_ALPHA_TO_COVERAGE);
-    this.#drawSet(this.opened, 'faces');
+    this.#drawSet(this.opened, 'faces', this.#boltsLargeEnough(scene));
     gl.cullFace(gl.FRONT);
     gl.enable(gl.POLYGON_OFFSET_FILL);
     gl.polygonOffset(1, 2);
-    this.#drawSet(this.opened, 'faces');
+    this.#drawSet(this.opened, 'faces', this.#boltsLargeEnough(scene));
     gl.disable(gl.POLYGON_OFFSET_FILL);
     gl.cullFace(gl.BACK);
     gl.disable(gl.SAMPLE_ALPHA_TO_COVERAGE);
@@ -284,6 +298,8 @@ class Renderer {
     }
     const farthest = scene.eye[3] ? scene.mmAtOne * scene.haze[1] : scene.mmAtOne;
     const each = (group) => {
+      // Bolts too small to be seen leave no line, or every joint would be a knot of lines; but selected ones do.
+      if (group.kind === 'bolts' && !group.selected) return false;
       const depth = Math.sqrt(group.depth * group.breadth);
       if (depth / farthest > 2.4) return false;
       gl.uniform1f(program.at.depth, depth);
@@ -340,10 +356,10 @@ class Renderer {
     const calls = this.drawCalls;
     gl.enable(gl.CULL_FACE);
     this.#cutBy(this.numbers, []);
-    this.#drawSet(this.whole, 'faces');
+    this.#drawSet(this.whole, 'faces', this.#boltsLargeEnough(scene));
     gl.disable(gl.CULL_FACE);
     this.#cutBy(this.numbers, scene.cuts);
-    this.#drawSet(this.opened, 'faces');
+    this.#drawSet(this.opened, 'faces', this.#boltsLargeEnough(scene));
     this.#drawAxes(scene, this.axisNumbers, within);
     gl.disable(gl.SCISSOR_TEST);
     this.drawCalls = calls;

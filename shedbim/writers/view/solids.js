@@ -12,7 +12,7 @@ function solidBuffers(model) {
   const vertices = [];
   const triangles = [];
   const edges = [];
-  const parts = model.parts.map(({ mesh, box }) => {
+  const parts = model.parts.map(({ mesh, box, kind }) => {
     const corners = smoothCorners(mesh);
     const base = vertices.length / 6;
     const firstTriangle = triangles.length;
@@ -31,9 +31,9 @@ function solidBuffers(model) {
     for (const point of mesh.edges) edges.push(anyVertex.get(point) ?? base);
     const edgeCount = edges.length - firstEdge;
     const firstAxis = edges.length;
-    for (const x of [box.low[0], box.high[0]]) {
+    for (const end of middleLine(box, kind)) {
       edges.push(vertices.length / 6);
-      vertices.push(x, 0, 0, 0, 0, 1);
+      vertices.push(...end, 0, 0, 1);
     }
     return {
       firstTriangle,
@@ -51,8 +51,24 @@ function solidBuffers(model) {
   };
 }
 
-/** Two faces that turn by more than this meet in an edge that is drawn: 30 degrees. */
-const EDGE_COSINE = Math.cos(Math.PI / 6);
+/** The line a shape shrinks to from afar: a bar's axis, of others the middle of the box along its longest side. */
+function middleLine({ low, high }, kind) {
+  const middle = kind === 'bar' ? [0, 0, 0] : times(add(low, high), 0.5);
+  const sides = sub(high, low);
+  const longest = kind === 'bar' ? 0 : sides.indexOf(Math.max(...sides));
+  return [low, high].map((end) => middle.map((value, axis) => (axis === longest ? end[axis] : value)));
+}
+
+/**
+ * The kinds of surface, by the number they travel as: two faces that turn by more than the angle meet in an edge
+ * that is drawn. Chords along a round bar never are, nor those of holes, which turn by 30 degrees, nor those of shanks
+ * and washers, which turn by 45.
+ */
+const SURFACES = [
+  { cosine: Math.cos((32 * Math.PI) / 180), round: false },
+  { cosine: Math.cos((32 * Math.PI) / 180), round: true },
+  { cosine: Math.cos((50 * Math.PI) / 180), round: false },
+];
 
 /** The normal of a triangle, as long as twice its area, mm². */
 function areaNormal({ points, triangles }, triangle) {
@@ -63,11 +79,9 @@ function areaNormal({ points, triangles }, triangle) {
   return cross(sub(b, a), sub(c, a));
 }
 
-/**
- * Gives the drawn edges of a closed mesh as pairs of points: where the surface turns sharply. The lines along a
- * round bar are chords and are left out.
- */
-function sharpEdges(mesh, round) {
+/** Gives the drawn edges of a closed mesh as pairs of points: where the surface turns sharply for its kind. */
+function sharpEdges(mesh, surface) {
+  const { cosine, round } = SURFACES[surface];
   const { points, triangles } = mesh;
   const pointCount = points.length / 3;
   const beside = new Map();
@@ -82,7 +96,7 @@ function sharpEdges(mesh, round) {
         continue;
       }
       const across = Math.hypot(points[3 * a + 1] - points[3 * b + 1], points[3 * a + 2] - points[3 * b + 2]);
-      if (dot(beside.get(name), normal) < EDGE_COSINE && !(round && across < 0.01)) edges.push(a, b);
+      if (dot(beside.get(name), normal) < cosine && !(round && across < 0.01)) edges.push(a, b);
     }
   }
   return Uint32Array.from(edges);

@@ -1,12 +1,19 @@
 // The schedule: a row for each mark, sorted and filtered by the reader; it selects in the model and follows it.
 
+/**
+ * `of(part)` is what a column holds of a part, a number where it has decimals, or '' where the part has no such thing;
+ * a rare column stands only where some part has it.
+ */
 const TABLE_COLUMNS = [
   { name: 'mark', of: (part) => part.mark },
   { name: 'role', of: (part) => part.role },
   { name: 'quantity', of: (part) => part.pieces.length, decimals: 0 },
   { name: 'section', of: (part) => part.section },
   { name: 'grade', of: (part) => part.grade },
-  { name: 'length', unit: 'mm', of: (part) => part.length, decimals: 1 },
+  { name: 'length', unit: 'mm', of: (part) => part.length || '', decimals: 1 },
+  { name: 'thickness', unit: 'mm', of: (part) => part.figures.thickness_mm ?? '', decimals: 1, rare: true },
+  { name: 'grip', unit: 'mm', of: (part) => part.figures.grip_mm ?? '', decimals: 1, rare: true },
+  { name: 'holes', of: (part) => part.figures.holes ?? '', decimals: 0, rare: true },
   { name: 'mass each', unit: 'kg', of: (part) => part.mass, decimals: 3 },
   { name: 'mass total', unit: 'kg', of: (part) => part.mass * part.pieces.length, decimals: 3 },
   { name: 'surface each', unit: 'm²', of: (part) => part.surface, decimals: 4 },
@@ -22,15 +29,16 @@ function createTable(model, state, stage, say) {
   const filter = byId('schedule-filter');
   let sorted = { column: null, down: false };
   let listed = model.parts;
+  const columns = TABLE_COLUMNS.filter(({ rare, of }) => !rare || model.parts.some((part) => of(part) !== ''));
 
   const rows = model.parts.map((part) => {
-    const cells = TABLE_COLUMNS.map(({ of, decimals }, index) => {
+    const cells = columns.map(({ of, decimals }, index) => {
       const value = of(part);
       if (index > 0)
         return element(
           'td',
           { class: decimals === undefined ? '' : 'number' },
-          decimals === undefined ? value : written(value, decimals),
+          decimals === undefined || value === '' ? value : written(value, decimals),
         );
       return element(
         'th',
@@ -46,7 +54,7 @@ function createTable(model, state, stage, say) {
     return row;
   });
 
-  const heads = TABLE_COLUMNS.map((column, index) => {
+  const heads = columns.map((column, index) => {
     const button = element(
       'button',
       { type: 'button', class: 'plain', onclick: () => sort(index) },
@@ -72,21 +80,25 @@ function createTable(model, state, stage, say) {
       head.setAttribute('aria-sort', index !== column ? 'none' : sorted.down ? 'descending' : 'ascending'),
     );
     list();
-    say(`Sorted by ${TABLE_COLUMNS[column].name}, ${sorted.down ? 'largest' : 'smallest'} first`);
+    say(`Sorted by ${columns[column].name}, ${sorted.down ? 'largest' : 'smallest'} first`);
   }
 
   /** Lists the rows that hold all words of the filter. */
   function list() {
     const words = filter.value.toLowerCase().split(/\s+/).filter(Boolean);
     listed = model.parts.filter((part) => {
-      const text = TABLE_COLUMNS.map(({ of }) => String(of(part)))
+      const text = columns
+        .map(({ of }) => String(of(part)))
+        .concat(part.sort)
         .join(' ')
         .toLowerCase();
       return words.every((word) => text.includes(word));
     });
     if (sorted.column !== null) {
-      const { of, decimals } = TABLE_COLUMNS[sorted.column];
-      const order = decimals === undefined ? compareWords : (a, b) => a - b;
+      const { of, decimals } = columns[sorted.column];
+      // What a part does not have counts as less than any number.
+      const amount = (value) => (value === '' ? -1 : value);
+      const order = decimals === undefined ? compareWords : (a, b) => amount(a) - amount(b);
       listed = [...listed].sort((a, b) => (sorted.down ? order(of(b), of(a)) : order(of(a), of(b))));
     }
     body.replaceChildren(...listed.map((part) => rows[part.index]));

@@ -13,11 +13,15 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
+from shedbim.model.bolt_groups import BoltGroup
+from shedbim.model.plates import Plate
+from shedbim.model.shapes import Shape
 from shedbim.model.shed import Shed
+from shedbim.writers.described import described, figures, kind_word
 from shedbim.writers.imprint import CAUTIONS, Imprint
 from shedbim.writers.palette import PALETTE
 from shedbim.writers.view.columns import scaled
-from shedbim.writers.view.meshes import is_round, view_shell
+from shedbim.writers.view.meshes import sizes, surface_of, view_shell
 from shedbim.writers.view.shown import ShownChange, ShownFinding
 
 __all__ = ["columns", "texts"]
@@ -46,19 +50,21 @@ def texts(
             "numbers": shed.grid.numbers,
             "y": shed.grid.y,
         },
-        "roles": [[role.word, PALETTE[role]] for role in roles],
+        "roles": [[role.word, PALETTE[role], role.sort.value] for role in roles],
         "parts": [
             [
                 part.mark,
                 roles.index(part.role),
-                part.bar.section.designation,
+                described(part.shape),
                 part.grade,
                 part.finish,
                 ", ".join(marks),
             ]
             for part, marks in zip(shed.parts, shed.part_assembly_marks, strict=True)
         ],
-        "masses": [round(part.bar.mass, 6) for part in shed.parts],
+        "masses": [round(part.shape.mass, 6) for part in shed.parts],
+        "kinds": [kind_word(part.shape) for part in shed.parts],
+        "figures": [figures(part.shape) for part in shed.parts],
         "keys": shed.pieces.keys,
         "assemblies": [
             [
@@ -82,9 +88,9 @@ def columns(shed: Shed) -> dict[str, ArrayLike]:
     result: dict[str, ArrayLike] = {
         "part sizes": [
             [
-                int(scaled(part.bar.length, 1000.0)),
-                int(scaled(part.bar.surface, 1e-2)),
-                int(scaled(min(part.bar.section.width, part.bar.section.height))),
+                int(scaled(_length(part.shape), 1000.0)),
+                int(scaled(part.shape.surface, 1e-2)),
+                *scaled(sizes(part.body)).tolist(),
             ]
             for part in shed.parts
         ],
@@ -99,16 +105,25 @@ def columns(shed: Shed) -> dict[str, ArrayLike]:
     for number, run in enumerate(shed.joints):
         result[f"joint {number} pieces"] = run.pieces
         result[f"joint {number} at"] = run.at
+        if run.fittings.size:
+            result[f"joint {number} fittings"] = run.fittings
     return result
 
 
+def _length(shape: Shape) -> float:
+    """A length for the schedule: a bar's own, a plate's longer side, a bolt's nominal one; mm."""
+    if isinstance(shape, BoltGroup):
+        return shape.fastener.length
+    return shape.size[0] if isinstance(shape, Plate) else shape.length
+
+
 def _mesh_columns(shed: Shed) -> dict[str, ArrayLike]:
-    """The meshes of all parts, one after another: how much of each and whether it is round, points, triangles."""
-    meshes = [view_shell(part.bar) for part in shed.parts]
+    """The meshes of all parts, one after another: how much of each and its kind of surface, points, triangles."""
+    meshes = [view_shell(part.body) for part in shed.parts]
     none = np.empty((0, 3))
     return {
         "mesh counts": [
-            [len(mesh.points), len(mesh.triangles), int(is_round(part.bar))]
+            [len(mesh.points), len(mesh.triangles), int(surface_of(part.body))]
             for mesh, part in zip(meshes, shed.parts, strict=True)
         ],
         "mesh points": scaled(np.vstack([none, *(mesh.points for mesh in meshes)])),

@@ -1,6 +1,7 @@
 // The tree of the pieces, by grid, by role or by assembly, with show, hide and isolate.
 
 const TICK_WORDS = { true: 'shown', false: 'hidden', mixed: 'partly shown' };
+const SORT_WORDS = { member: 'Members', fitting: 'Fittings', fastener: 'Fasteners' };
 const ROWS_AT_ONCE = 200; // pieces of one branch that are listed before the reader asks for more
 
 /** Gives the roots of the tree for a way to group; children are made when a branch opens. */
@@ -12,7 +13,13 @@ const GROUPINGS = {
     );
   },
   role(model) {
-    return byRole(model, 'r', range(model.pieces.count), false);
+    const sort = (piece) => model.parts[model.pieces.part[piece]].sort;
+    const sorts = grouped(range(model.pieces.count), sort);
+    if (sorts.length === 1) return byRole(model, 'r', sorts[0][1], false);
+    sorts.sort(([a], [b]) => SORTS.indexOf(a) - SORTS.indexOf(b));
+    return sorts.map(([word, pieces]) =>
+      branch(`s/${word}`, SORT_WORDS[word], pieces, () => byRole(model, `s/${word}`, pieces, false)),
+    );
   },
   assembly(model) {
     const all = (index) => model.assemblies[index].pieces.concat(...model.assemblies[index].children.map(all));
@@ -27,8 +34,6 @@ const GROUPINGS = {
     return roots;
   },
 };
-
-const range = (count) => Array.from({ length: count }, (_, index) => index);
 
 /** Branches of some pieces by role, and in each by mark; short ones go straight to the pieces. */
 function byRole(model, id, pieces, shortKeys) {
@@ -177,7 +182,7 @@ function createTree(model, state, stage, say) {
   }
 
   function toggleShown(node) {
-    const on = !node.pieces.every((piece) => state.shown[piece]);
+    const on = !state.switchedOn(node.pieces).every((piece) => state.shown[piece]);
     state.show(node.pieces, on);
     say(`${node.label}: ${on ? 'shown' : 'hidden'}`);
   }
@@ -193,13 +198,13 @@ function createTree(model, state, stage, say) {
   function refresh() {
     for (const { node, element: made } of rows) {
       if (node.more) continue;
+      // What is switched off altogether does not make a branch half shown.
+      const counting = state.switchedOn(node.pieces);
       let shown = 0;
+      for (const piece of counting) shown += state.shown[piece];
       let selected = 0;
-      for (const piece of node.pieces) {
-        shown += state.shown[piece];
-        if (state.selected.size && state.selected.has(piece)) selected++;
-      }
-      const ticked = shown === 0 ? 'false' : shown === node.pieces.length ? 'true' : 'mixed';
+      if (state.selected.size) for (const piece of node.pieces) if (state.selected.has(piece)) selected++;
+      const ticked = shown === 0 ? 'false' : shown === counting.length ? 'true' : 'mixed';
       made.setAttribute('aria-checked', ticked);
       made.setAttribute('aria-selected', String(selected > 0 && selected === node.pieces.length));
       made.classList.toggle('holds', selected > 0 && selected < node.pieces.length);

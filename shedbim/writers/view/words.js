@@ -12,6 +12,8 @@ function written(value, decimals = 0) {
 /** Writes a mass: kg below ten tonnes, tonnes above. */
 const writtenMass = (kg) => (kg < 1e4 ? `${written(kg, kg < 100 ? 2 : 0)} kg` : `${written(kg / 1000, 1)} t`);
 
+const range = (count) => Array.from({ length: count }, (_, index) => index);
+
 /** Writes a count with its word, in the plural where that is due. */
 const counted = (count, word, many = `${word}s`) => `${written(count)} ${count === 1 ? word : many}`;
 

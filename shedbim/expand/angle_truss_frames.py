@@ -1,0 +1,51 @@
+"""Frames whose roof is carried by trusses of pairs of angles between the columns."""
+
+from __future__ import annotations
+
+from shedbim.description.models import Description, SameGable
+from shedbim.description.roof_systems import AngleTrussRoof
+from shedbim.expand.angle_trusses import Between, angle_truss
+from shedbim.expand.end_gaps import end_gap
+from shedbim.expand.frame import Frame, columns, frame_kit
+from shedbim.expand.impossible import impossible
+from shedbim.expand.layout import Layout
+from shedbim.expand.pairs import size_of_pair
+from shedbim.sections.profiles import IShape
+
+__all__ = ["angle_truss_frame"]
+
+
+def angle_truss_frame(description: Description, layout: Layout, roof: AngleTrussRoof) -> Frame:
+    """Columns with a truss between each pair of them.
+
+    Raises:
+        DescriptionError: for columns that are tubes, and for end walls of trusses.
+    """
+    section, grid = description.frames.columns.section, layout.grid
+    if not isinstance(section.profile, IShape):
+        raise impossible(
+            "frames.columns.section", "trusses of angles are bolted to flanges", given=section.designation,
+            allowed="an I section",
+        )  # fmt: skip
+    if isinstance(description.frames.gables, SameGable):
+        raise impossible(
+            "frames.gables.system", "no head of a gable post is made under a pair of angles", given="same",
+            allowed="rafter",
+        )  # fmt: skip
+    members, meetings = columns(description, layout)
+    back = section.height / 2 + end_gap(description, trussed=True)
+    trusses = []
+    for span, name in enumerate(layout.span_names):
+        slopes = [layout.slopes[i].slope for i in layout.span_slopes(span)]
+        between = Between(
+            (grid.x[span] + back, grid.x[span + 1] - back),
+            (f"column/{grid.letters[span]}", f"column/{grid.letters[span + 1]}"),
+        )
+        trusses.append(
+            angle_truss(
+                roof, slopes, layout.eaves, name, between, description.finish.frames, description.connections
+            )
+        )
+    kit = frame_kit(members, meetings, layout, [t.kit for t in trusses])
+    carriers = tuple(bar.name for t in trusses for bar in t.top_chords)
+    return Frame(kit, carriers, size_of_pair(roof.top_chord, roof.gusset), tuple(trusses))

@@ -1,0 +1,225 @@
+"""Cleats: upright plates on the steel that carries purlins and rails, which these are bolted to by their webs."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from math import asin, floor, sqrt, tan
+
+import numpy as np
+from numpy.typing import NDArray
+
+from shedbim.description.connections import Connections
+from shedbim.expand.impossible import impossible
+from shedbim.expand.joints.carrier_face import Ground, ground, stands_on_head
+from shedbim.expand.joints.cold_formed_web import HoleLines, Web, end_distance, field_of, hole_lines, web_of
+from shedbim.expand.joints.contract import Bolting, Connection, Fitting, Joint, Layer, Met, Welding
+from shedbim.expand.joints.shaping import frame_of, plate_at
+from shedbim.expand.joints.sleeve import Sleeve, sleeve_over
+from shedbim.fasteners.bolts import bolt
+from shedbim.fasteners.distances import least_edge
+from shedbim.fasteners.holes import hole_diameter
+from shedbim.fasteners.plate_stock import rounded_up
+from shedbim.fasteners.welds import throat_for
+from shedbim.geometry.placements import cross
+from shedbim.model.plates import Plate
+from shedbim.model.roles import Role
+
+__all__ = ["cleat"]
+
+Array = NDArray[np.float64]
+
+#: Usual distance of the bolts from the line of the frame, mm; more where the gap of butted ends asks for it.
+_FROM_LINE = 35.0
+#: Share of a round carrier's radius that a foot reaches to either side: beyond, it would be a knife's edge.
+_ROUND_FOOT = 0.7
+#: Seat plates under cleats that stand beside their carrier's face, thickest first, mm.
+_SEATS = (8.0, 6.0, 5.0)
+#: Air between a seat plate and the flange over it; room for a weld beside the cleat; depth of a seat on its
+#: carrier; the most it may stand out, mm (all common practice, values from memory).
+_SEAT_GAP, _WELD_ROOM, _SEAT_HOLD, _STANDS_OUT = 1.5, 10.0, 50.0, 75.0
+_CARRIED = (Role.PURLIN, Role.SIDE_RAIL, Role.GABLE_RAIL)
+#: Air between the shoulders of a cleat and the flanges it reaches between, mm.
+_SHOULDER = 5.0
+
+
+@dataclass(frozen=True, eq=False)
+class _Size:
+    """A cleat in its middle plane: half its width, and its foot and its top up from the purlin's axis, mm."""
+
+    half: float
+    foot: float
+    top: float
+
+
+def cleat(joint: Joint, options: Connections) -> Connection:
+    """Give the cleat of a purlin or rail, or of two that are butted, with bolts and welds.
+
+    Raises:
+        DescriptionError: where web, lift or carrier leave no room.
+    """
+    carrier = joint.members[0]
+    carried = [met for met in joint.members[1:] if met.role in _CARRIED]
+    # The angles of a pair carry together; the other one is last.
+    holding = (0, *range(1 + len(carried), len(joint.members)))
+    web, group = web_of(carried[0]), field_of(carried[0])
+    lines = hole_lines(carried[0].section, options.cleats, group)
+    on_head = stands_on_head(carrier, carried[0])
+    face = ground(carrier, web, options.cleats.thickness, on_head=on_head)
+    out = _out_from_line(carried, web, lines)
+    half = rounded_up(out + end_distance(lines), 5.0)
+    seat, lift = None, 0.0
+    if face.beyond > 0.0:
+        seat, lift = _seat(face, web, carried[0], half, options)
+    size = _size(face, web, lines, half, lift, group)
+    plate, frame = _plate(face, web, size, options.cleats.thickness, seated=seat is not None)
+    fitting = Fitting("cleat", Role.CLEAT, plate, frame)
+    sleeve = sleeve_over(carried, web, lines, options)
+    boltings = _boltings(carried, web, lines, out, options, sleeve)
+    throat = throat_for(options.cleats.thickness)
+    if seat is None:
+        length = _weld_length(face, size) / len(holding)
+        welds = tuple(Welding((number, "cleat"), throat, length) for number in holding)
+        fittings: tuple[Fitting, ...] = (fitting,)
+    else:
+        fittings = (seat, fitting)
+        held = 2.0 * min(_SEAT_HOLD, size.half) + 2.0 * min(face.half, size.half)
+        on_seat = tuple(Welding((number, "seat"), throat, held / len(holding)) for number in holding)
+        welds = (Welding(("seat", "cleat"), throat, 4.0 * size.half), *on_seat)
+    if sleeve is not None:
+        fittings = (*fittings, sleeve.fitting)
+    return Connection(fittings, boltings, welds)
+
+
+def _spans(met: Met, run: Array) -> tuple[float, float]:
+    """From where to where a member runs along the line, seen from the work point, mm."""
+    here, along = float(met.origin @ run), float(met.x @ run)
+    ends = (here - along * met.to_start, here + along * met.to_end)
+    return min(ends), max(ends)
+
+
+def _out_from_line(carried: list[Met], web: Web, lines: HoleLines) -> float:
+    """How far the bolts are from the line of the frame, mm."""
+    inner = max(_ends_off_line(*_spans(met, web.run)) for met in carried)
+    return max(_FROM_LINE, rounded_up(inner + end_distance(lines), 5.0))
+
+
+def _ends_off_line(low: float, high: float) -> float:
+    """How far from the line the end of a member is that reaches from ``low`` to ``high``; 0 where it passes it, mm."""
+    return max(low, -high, 0.0)
+
+
+def _size(face: Ground, web: Web, lines: HoleLines, half: float, lift: float, group: str) -> _Size:
+    """The size of the cleat, rounded up so that sizes repeat."""
+    foot = lift - face.depth
+    least = lines.gauge / 2 + least_edge(hole_diameter(lines.diameter))
+    wanted = min(lines.gauge / 2 + end_distance(lines), web.top)
+    if wanted < least:
+        raise impossible(
+            f"{group}.section", "the bolts of a cleat come too near to its upper edge",
+            allowed="a deeper section or smaller bolts",
+        )  # fmt: skip
+    for step in (10.0, 5.0):
+        top = foot + rounded_up(wanted - foot, step)
+        if top <= web.top:
+            return _Size(half, foot, top)
+    return _Size(half, foot, wanted)
+
+
+def _axes(web: Web) -> tuple[Array, Array]:
+    """The axes of a cleat's own plane, so that its thickness runs off the web."""
+    along = web.run if float(cross(web.run, web.up) @ web.out) > 0 else -web.run
+    return along, web.up
+
+
+def _plate(face: Ground, web: Web, size: _Size, thickness: float, *, seated: bool) -> tuple[Plate, Array]:
+    """The cleat with its foot shaped to what it stands on."""
+    w, foot, top = size.half, size.foot, size.top
+    x, y = _axes(web)
+    origin = web.out * web.face
+    if seated or not (face.radius or face.tongue):
+        return plate_at(origin, x, y, [(-w, foot), (w, foot), (w, top), (-w, top)], thickness)
+    if face.tongue:
+        n = min(w, 5.0 * floor(face.half / 5.0))
+        down, shoulder = foot - face.tongue, foot + _SHOULDER
+        corners = [(-n, down), (n, down), (n, top), (-n, top)]
+        if n < w:
+            corners = [
+                (-n, down), (n, down), (n, shoulder), (w, shoulder),
+                (w, top), (-w, top), (-w, shoulder), (-n, shoulder),
+            ]  # fmt: skip
+        return plate_at(origin, x, y, corners, thickness)
+    return _round_footed(face.radius, size, thickness, frame_of(origin, x, y))
+
+
+def _round_footed(radius: float, size: _Size, thickness: float, frame: Array) -> tuple[Plate, Array]:
+    """A cleat square to a round carrier, its foot cut to the circle."""
+    w, foot, top = size.half, size.foot, size.top
+    n = min(w, 5.0 * floor(_ROUND_FOOT * radius / 5.0))
+    low = foot - radius + sqrt(radius**2 - n**2)
+    bulge = -tan(asin(n / radius) / 2)
+    corners = [(-n, low), (n, low), (n, foot), (w, foot), (w, top), (-w, top), (-w, foot), (-n, foot)]
+    bulges = [bulge] + [0.0] * 7
+    if n == w:
+        corners, bulges = [corners[0], corners[1], corners[4], corners[5]], [bulge, 0.0, 0.0, 0.0]
+    return Plate(tuple(corners), thickness, bulges=tuple(bulges)), frame
+
+
+def _weld_length(face: Ground, size: _Size) -> float:
+    """The length of the fillets on both sides of a foot, mm."""
+    if face.radius:
+        n = min(size.half, _ROUND_FOOT * face.radius)
+        return 4.0 * face.radius * asin(n / face.radius)
+    return 4.0 * min(size.half, face.half)
+
+
+def _seat(face: Ground, web: Web, carried: Met, half: float, options: Connections) -> tuple[Fitting, float]:
+    """The plate that a cleat stands on where it would come down beside its carrier's face, and its thickness."""
+    group, thickness = field_of(carried), options.cleats.thickness
+    outer = face.beyond + _WELD_ROOM
+    if not face.square or face.radius or face.tongue or outer > _STANDS_OUT:
+        raise impossible(
+            f"{group}.eaves_offset" if face.square else f"{group}.valley_offset",
+            "the cleat of a purlin stands beside what carries it",
+            allowed=f"a distance that moves the purlin by {face.beyond:.0f} mm or more",
+        )  # fmt: skip
+    room = face.depth - carried.section.height / 2 - _SEAT_GAP
+    fitting = [t for t in _SEATS if t <= room]
+    if not fitting:
+        raise impossible(
+            f"{group}.lift", "a seat plate for the cleat finds no room under the purlin",
+            allowed=f"{_SEATS[-1] + _SEAT_GAP:g} mm or more, or another offset of the purlin",
+        )  # fmt: skip
+    # It reaches from beyond the cleat back on to the carrier, on whichever side that is.
+    depth = rounded_up(outer + _SEAT_HOLD)
+    first = web.face - _WELD_ROOM
+    if face.side > 0:
+        first = web.face + thickness + _WELD_ROOM - depth
+    low, high = first, first + depth
+    frame = frame_of(-web.up * face.depth, web.run, cross(web.up, web.run))
+    if float(frame[:, 1] @ web.out) < 0:
+        low, high = -high, -low
+    corners = ((-half, low), (half, low), (half, high), (-half, high))
+    return Fitting("seat", Role.SEAT, Plate(corners, fitting[0]), frame), fitting[0]
+
+
+def _boltings(
+    carried: list[Met], web: Web, lines: HoleLines, out: float, options: Connections, sleeve: Sleeve | None
+) -> tuple[Bolting, ...]:
+    """Two bolts on each side of the line where a member has its web there, and those of the sleeve's ends."""
+    thickness = options.cleats.thickness
+    inner = () if sleeve is None else (Layer("sleeve", sleeve.thickness),)
+    grip = thickness + web.thickness + (0.0 if sleeve is None else sleeve.thickness)
+    fastener = bolt(lines.diameter, options.bolts.secondary_grade, grip)
+    head = web.out * (web.face + thickness - grip)
+    room = end_distance(lines) - 1e-6
+    found = []
+    for number, met in enumerate(carried, start=1):
+        low, high = _spans(met, web.run)
+        places = [u for u in (-out, out) if low + room <= u <= high - room]
+        points = [head + web.run * u + web.up * v for u in places for v in lines.levels]
+        layers = (*inner, Layer(number, web.thickness), Layer("cleat", thickness))
+        name = "bolts" if len(carried) == 1 else f"bolts {number}"
+        found.append(Bolting(name, fastener, np.array(points), web.out, layers))
+        if sleeve is not None:
+            found.append(sleeve.bolting(number, met, web, lines, options))
+    return tuple(found)
