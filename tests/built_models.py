@@ -21,10 +21,10 @@ from shedbim.geometry.placements import Placements
 
 __all__ = ["Model", "model", "opened", "read", "weights"]
 
-#: How finely arcs are cut: chords leave them by 0.1 mm at most, and turn by 0.15 rad at most. A round bar or bolt
-#: is then 0.37 % too light, a building less than half of a thousandth; bars and bolts lie inside their arcs, and
-#: the walls of holes do not reach farther out than theirs by more than 0.1 mm, less than any bolt has room.
-_CHORD, _ANGLE = 1e-4, 0.15
+#: How finely arcs are cut: chords leave them by 0.1 mm at most, and turn by so many rad at most. Fine: a round bar or
+#: bolt is 0.37 % too light, a building less than half of a thousandth. Coarse: a third of the triangles; bars and
+#: bolts lie inside their arcs, and the wall of a hole reaches 3 % of its radius into it at most, half a bolt's room.
+_CHORD, _FINE, _COARSE = 1e-4, 0.15, 0.5
 
 
 @dataclass(frozen=True, eq=False)
@@ -58,20 +58,20 @@ def opened(name: str, schema: str = "IFC4") -> ifcopenshell.file:
 
 
 @cache
-def model(name: str, schema: str = "IFC4") -> Model:
+def model(name: str, schema: str = "IFC4", *, fine: bool = False) -> Model:
     """Give the bodies and pieces of a specimen's model file."""
-    return read(opened(name, schema))
+    return read(opened(name, schema), fine=fine)
 
 
-def read(file: ifcopenshell.file) -> Model:
-    """Give the bodies and pieces of a model file.
+def read(file: ifcopenshell.file, *, fine: bool = False) -> Model:
+    """Give the bodies and pieces of a model file, arcs cut coarsely or finely.
 
     A piece shows the body of its type once, or several times where it is a group of bolts.
     """
     to_mm = ifcopenshell.util.unit.calculate_unit_scale(file) * 1000
     settings = ifcopenshell.geom.settings()
     settings.set("mesher-linear-deflection", _CHORD)
-    settings.set("mesher-angular-deflection", _ANGLE)
+    settings.set("mesher-angular-deflection", _FINE if fine else _COARSE)
     drawn: dict[int, Manifold] = {}
     number: dict[tuple[int, ...], int] = {}
     tags, bodies, kinds = [], [], []

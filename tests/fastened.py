@@ -244,6 +244,10 @@ def holes_are_in_walls(shed: Shed) -> Iterator[str]:
             else:
                 square = float(np.hypot(axis[1], axis[2]))
                 walls = _walls(part.shape, centre[1:], axis[1:])
+                flat = _flat(part.shape, centre[0])
+                if flat is not None:
+                    # Both walls of a tube's end pressed flat, their faces square to the drill.
+                    walls = [(-flat - centre[1:] @ axis[1:], flat - centre[1:] @ axis[1:])]
                 low, high = min(walls, key=lambda w: abs(w[0] + w[1]), default=(0.0, 0.0))
                 middle = 0.0
                 if not 0.0 < centre[0] < part.shape.length:
@@ -252,6 +256,14 @@ def holes_are_in_walls(shed: Shed) -> Iterator[str]:
                 yield f"{part.mark}: a hole aslant"
             if abs((high - low) - hole.thickness) > 0.1 or abs((high + low) / 2 - middle) > 0.1:
                 yield f"{part.mark}: a hole through {hole.thickness:g} mm in a wall from {low:.2f} to {high:.2f}"
+
+
+def _flat(bar: Bar, x: float) -> float | None:
+    """Half the thickness of the flat that the end of a tube is pressed to at ``x``; None where it is not."""
+    from_tips = zip(bar.pressed, (x, bar.length - x), strict=True)
+    if any(end is not None and distance < end.flat for end, distance in from_tips):
+        return bar.section.profile.thickness
+    return None
 
 
 def _walls(bar: Bar, centre: np.ndarray, axis: np.ndarray) -> list[tuple[float, float]]:

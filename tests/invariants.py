@@ -25,7 +25,7 @@ from shedbim.model.roles import Role, Sort
 from shedbim.model.shapes import Shape
 from shedbim.model.shed import Shed
 from shedbim.model.solids import solid
-from shedbim.sections.profiles import IShape
+from shedbim.sections.profiles import IShape, LippedZ
 from shedbim.sections.section import STEEL_DENSITY
 from shedbim.tolerance import SAME_LENGTH, SAME_PLACE
 
@@ -173,13 +173,12 @@ def joints_are_at_ends(shed: Shed, description: Description) -> Iterator[str]:
 
 
 #: How far the ends of tubes stand back for the fin they are bolted by: two or three bolts in a row with their end
-#: distances, M20 at most 35 + 2 x 70 + 35, a cap of 10 and a gap of 10 mm before the fin's neighbour.
-_FIN = 235.0
+#: distances, M20 at most 40 + 2 x 70 + 40, a cap of 10 mm, and 10 mm of air before the cap and beyond the tip.
+_FIN = 250.0
 
 
 def _end_reach(shed: Shed, run: JointRun, bars: Bars, description: Description) -> np.ndarray:
     """How far an end may lie from the work point of each joint of a run (m,), mm."""
-    first = run.pieces[:, 0]
     columns, connections = description.frames.columns.section, description.connections
     purlins, rails = description.purlins, description.rails
     plain = {
@@ -189,9 +188,11 @@ def _end_reach(shed: Shed, run: JointRun, bars: Bars, description: Description) 
         JointKind.POST_BASE: _thickness(shed, run, Role.BASE_PLATE),
         JointKind.CHORD_COLUMN: 0.0,
         JointKind.CHORD_RIDGE: 0.0,
+        JointKind.PACKED_PAIR: 0.0,
         # A bar runs on beyond the web by a washer, a nut and a tip: no more than three diameters.
         JointKind.SAG_BAR_END: 3.0 * max(purlins.sag_bar.width, rails.sag_bar.width),
-        JointKind.FREE: 0.0,
+        JointKind.FREE: _off_line(description),
+        JointKind.PURLIN_LAP: _off_line(description),
         JointKind.FLANGE_STAY: 0.0,
         # The cap lies along the roof, a column is upright.
         JointKind.COLUMN_CAP: _thickness(shed, run, Role.CAP_PLATE) / np.cos(_steepest(description)),
@@ -199,7 +200,7 @@ def _end_reach(shed: Shed, run: JointRun, bars: Bars, description: Description) 
         JointKind.POST_HEAD: _thickness(shed, run, Role.CAP_PLATE)
         + max(columns.width, columns.height, float(np.nanmax(bars.width))) / 2,
         # Half the gap; at a gable a purlin runs on past the frame, at a corner a rail to the column's edge.
-        JointKind.PURLIN_CLEAT: purlins.gap / 2,
+        JointKind.PURLIN_CLEAT: float(np.hypot(purlins.gap / 2, _off_line(description))),
         JointKind.RAIL_CLEAT: max(rails.gap, columns.width, columns.height) / 2,
         # An end plate on either side of the work point.
         JointKind.CHORD_SPLICE: connections.splices.thickness,
@@ -207,21 +208,38 @@ def _end_reach(shed: Shed, run: JointRun, bars: Bars, description: Description) 
     if run.kind in plain:
         return np.full(len(run.points), plain[run.kind])
     last = run.pieces[:, -1]
+    if run.kind in (JointKind.ANGLE_NODE, JointKind.ANGLE_COLUMN):
+        # Past the chord's leg and that of a neighbour, along the flattest web; at a column beside its bolts.
+        bolts = 60.0 if run.kind is JointKind.ANGLE_COLUMN else 0.0
+        return 4.0 * bars.height[run.pieces[:, 1:]].max(axis=1) + bolts
     if run.kind is JointKind.RAFTER_COLUMN:  # half the column and what is between, along the slope
         return (columns.height / 2 + _end_gap(description)) / np.abs(bars.x[last, 0])
     if run.kind is JointKind.APEX:
         # An end plate, along the slope; axes of unequal slopes cross the ridge at unequal levels.
         slopes = 1 / np.abs(bars.x[run.pieces, 0])
         return connections.apex.thickness * slopes.max(axis=1) + bars.roof_steel * np.ptp(slopes, axis=1)
-    if run.kind in (JointKind.STRUT_END, JointKind.TIE_END):  # half the steel at the line, then the fin
-        return bars.width[first] / 2 + _FIN
     if run.kind in (JointKind.NODE, JointKind.WEB_SPLICE):
-        # Half the chord, and past what else lands here, all along the flattest web.
-        webs = run.pieces[:, 1:]
-        sine = np.linalg.norm(np.cross(bars.x[webs], bars.x[first][:, None]), axis=2).min(axis=1)
-        fin = _FIN if run.kind is JointKind.WEB_SPLICE else 0.0
-        return (bars.height[first] / 2 + bars.height[webs].sum(axis=1)) / sine + fin
+        return _web_reach(run, bars)
     return _brace_reach(run, bars, description)
+
+
+def _web_reach(run: JointRun, bars: Bars) -> np.ndarray:
+    """The same for the ends of webs: half the chord, and past what else lands here, all along the flattest web."""
+    first, webs = run.pieces[:, 0], run.pieces[:, 1:]
+    sine = np.linalg.norm(np.cross(bars.x[webs], bars.x[first][:, None]), axis=2).min(axis=1)
+    fin = _FIN if run.kind is JointKind.WEB_SPLICE else 0.0
+    return (bars.height[first] / 2 + bars.height[webs].sum(axis=1)) / sine + fin
+
+
+def _off_line(description: Description) -> float:
+    """How far the axis of a purlin or rail lies off the line of its course, mm.
+
+    The line runs up the middle of a web at half its depth, and between both of two that lap.
+    """
+    cleats, purlins = description.connections.cleats, description.purlins.section.profile
+    profiles = (each for each in (purlins, description.rails.section.profile) if isinstance(each, LippedZ))
+    nest = purlins.thickness / np.sqrt(2) if cleats.continuity == "lapped" else 0.0
+    return float(max((np.hypot(*each.outline.centroid) for each in profiles), default=0.0) + nest)
 
 
 def _thickness(shed: Shed, run: JointRun, role: Role) -> float:
@@ -239,7 +257,7 @@ def _steepest(description: Description) -> float:
 def _end_gap(description: Description) -> float:
     """From a column's face to the end of what is bolted to it, mm: an end plate; at tubes a bracket too."""
     connections = description.connections
-    trussed = description.frames.roof.system == "truss"
+    trussed = description.frames.roof.system != "rafter"
     plate = connections.chords.thickness if trussed else connections.rafters.thickness
     if isinstance(description.frames.columns.section.profile, IShape):
         return plate
@@ -247,9 +265,11 @@ def _end_gap(description: Description) -> float:
 
 
 def _brace_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarray:
-    """The same for the ends of braces."""
+    """The same for the ends of struts, ties and braces."""
     columns, bracing = description.frames.columns.section, description.bracing
     first, last = run.pieces[:, 0], run.pieces[:, -1]
+    if run.kind in (JointKind.STRUT_END, JointKind.TIE_END):  # half the steel at the line, then the fin
+        return bars.width[first] / 2 + _FIN
     brace = bars.x[last]
     corner = np.hypot(bars.width[last], bars.height[last])
     room = 20.0 + corner  # a set-back, and the corner of the brace itself
@@ -271,6 +291,8 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
     """What carries a joint, and what else runs through it, is at its work point."""
     bars = Bars(shed)
     purlins, rails, bracing = description.purlins, description.rails, description.bracing
+    lapped = description.connections.cleats.continuity == "lapped"
+    nest = purlins.section.profile.thickness / 2 if lapped else 0.0
     off_plane = max(bracing.roof.section.width, bracing.walls.section.width) + 5.0
     columns = description.frames.columns.section
     stub = _valley_stub(bars, description)
@@ -283,12 +305,19 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
     ) / np.cos(_steepest(description))
     # Rafters end 20 mm short of a ridge, measured level.
     ridge = 20.0
+    # The two angles of a pair are on either side of the plane of their truss, and end 5 mm short of the ridge.
+    between = getattr(description.frames.roof, "gusset", 0.0) / 2
     reach = {
+        JointKind.ANGLE_NODE: between,
+        JointKind.PACKED_PAIR: between,
+        JointKind.TIE_END: float(np.hypot(between, 5.0)) if between else 0.0,
+        # The first node stands off the end plate by its bolts, 60 mm, and half a post at most.
+        JointKind.ANGLE_COLUMN: _end_gap(description) + 60.0 + float(np.nanmax(bars.width)) / 2,
         JointKind.BRACE_GUSSET: ridge,
         JointKind.STRUT_END: ridge,
         # The work point lies on the axis of the purlin or rail, which is lifted off its carrier.
         # Over the 20 mm end plate of a rafter the cleat is on the column beside it.
-        JointKind.PURLIN_CLEAT: float(np.hypot(purlins.lift + purlins.section.height / 2, 20.0)),
+        JointKind.PURLIN_CLEAT: float(np.hypot(purlins.lift + purlins.section.height / 2 + nest, 20.0)),
         # A stay lies beside the web of its purlin.
         JointKind.FLANGE_STAY: description.connections.stays.section.width / 2,
         # Where the roof steel is wider than a corner column, rails stand off the column by as much more.

@@ -66,7 +66,8 @@ ANCHOR_PLACES = {(4000.0 + x, 700.0 + y, 20.0) for x in (-100.0, 100.0) for y in
 
 
 def fitted() -> Shed:
-    """The specimen: each column has a base plate, a cleat and a pair of bolts; one group and two nuts besides."""
+    """The specimen: each column has a base plate, a cleat and a pair of bolts; one group besides, and two nuts
+    that a frame holds."""
     keys, part, places, owner = [], [], [], []
     for number in range(COLUMNS):
         base = np.array([4000.0 * number, 700.0 * number, 0.0])
@@ -83,7 +84,7 @@ def fitted() -> Shed:
         keys.append(name)
         part.append(index)
         places.append(IDENTITY)
-        owner.append(-1)
+        owner.append(COLUMNS if name.startswith("nuts") else -1)
     rows = 5 * np.arange(COLUMNS)[:, None]
     nothing = np.zeros((COLUMNS, 3))
     joints = JointRun(
@@ -98,12 +99,12 @@ def fitted() -> Shed:
         grid=Grid(("A", "B"), (0.0, 12500.0), ("1", "2"), (0.0, 5200.0)),
         parts=PARTS,
         pieces=Pieces(tuple(keys), np.array(part), np.array(places), np.array(owner)),
-        assembly_types=(AssemblyType("AC1", "column", "shop"),),
+        assembly_types=(AssemblyType("AC1", "column", "shop"), AssemblyType("F1", "frame", "site")),
         assemblies=Assemblies(
-            tuple(f"{number + 1}/column/shop" for number in range(COLUMNS)),
-            np.zeros(COLUMNS, int),
-            np.tile(IDENTITY, (COLUMNS, 1, 1)),
-            np.full(COLUMNS, -1),
+            (*(f"{number + 1}/column/shop" for number in range(COLUMNS)), "1/frame"),
+            np.array([0] * COLUMNS + [1]),
+            np.tile(IDENTITY, (COLUMNS + 1, 1, 1)),
+            np.full(COLUMNS + 1, -1),
         ),
         joints=(joints,),
         finishes=(("painted", "two coats"), ("galvanized", "hot dip")),

@@ -8,9 +8,9 @@ from uuid import UUID, uuid4
 
 import pytest
 
-from shedbim.description.models import RafterRoof, TrussRoof
 from shedbim.description.presets import new_description, preset_names, preset_text
 from shedbim.description.reading import read_text
+from shedbim.description.roof_systems import AngleTrussRoof, RafterRoof, TrussRoof
 from shedbim.errors import DescriptionError
 from shedbim.roofs import Flat, Gable, MonoPitch
 
@@ -35,7 +35,7 @@ def test_presets_have_ids_of_their_own_made_at_random() -> None:
 def test_presets_show_every_kind_of_roof_and_unequal_bays_and_spans() -> None:
     descriptions = [read_text(preset_text(name)) for name in preset_names()]
     assert {type(one.building.roof) for one in descriptions} == {Gable, MonoPitch, Flat}
-    assert {type(one.frames.roof) for one in descriptions} == {RafterRoof, TrussRoof}
+    assert {type(one.frames.roof) for one in descriptions} == {RafterRoof, TrussRoof, AngleTrussRoof}
     trusses = [one.frames.roof for one in descriptions if isinstance(one.frames.roof, TrussRoof)]
     assert {truss.pattern for truss in trusses} == {"warren", "pratt", "howe", "warren-with-posts"}
     assert {one.frames.gables.system for one in descriptions} == {"same", "rafter"}  # type: ignore[attr-defined]

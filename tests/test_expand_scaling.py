@@ -109,7 +109,7 @@ def mirrored(name: str) -> Description:
 
 
 def undividing(before: Description) -> dict[str, str]:
-    return {"frames__roof__longest": "none"} if before.frames.roof.system == "truss" else {}
+    return {"frames__roof__longest": "none"} if hasattr(before.frames.roof, "longest") else {}
 
 
 def lengthwise_reversed(name: str) -> Description:

@@ -16,7 +16,7 @@ from shedbim.sections.section import Symmetry
 SPECIMENS = (
     *("IPE 300", "HEB 300", "UB 457x191x67", "W 310x38.7", "UPE 200", "PFC 200x75x23"),
     *("SHS 100x100x5", "RHS 200x100x8", "HF SHS 120x120x6.3", "CHS 114.3x5", "L 80x80x8", "L 120x80x10"),
-    *("C 200x75x20x2", "Z 200x75x20x2.5", "FL 100x10", "FL 40x40", "RD 12"),
+    *("C 200x75x20x2", "Z 200x75x20x2.5", "Z 200x75/66x20x2.5", "FL 100x10", "FL 40x40", "RD 12"),
 )
 #: Share of the area by which an outline must leave itself to be another: far above the chords of its arcs
 #: (1 µm), far below the least change in this list.

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from shedbim.description.models import Description, SameGable
+from shedbim.description.models import Description
 from shedbim.description.roof_systems import AngleTrussRoof
 from shedbim.expand.angle_trusses import Between, angle_truss
 from shedbim.expand.end_gaps import end_gap
@@ -19,18 +19,13 @@ def angle_truss_frame(description: Description, layout: Layout, roof: AngleTruss
     """Columns with a truss between each pair of them.
 
     Raises:
-        DescriptionError: for columns that are tubes, and for end walls of trusses.
+        DescriptionError: for columns that are tubes.
     """
     section, grid = description.frames.columns.section, layout.grid
     if not isinstance(section.profile, IShape):
         raise impossible(
             "frames.columns.section", "trusses of angles are bolted to flanges", given=section.designation,
             allowed="an I section",
-        )  # fmt: skip
-    if isinstance(description.frames.gables, SameGable):
-        raise impossible(
-            "frames.gables.system", "no head of a gable post is made under a pair of angles", given="same",
-            allowed="rafter",
         )  # fmt: skip
     members, meetings = columns(description, layout)
     back = section.height / 2 + end_gap(description, trussed=True)

@@ -224,16 +224,22 @@ class _Maker(TrussLayout):
                     Web(self._web_leg(i, which, node.point), self.topology.webs[i].kind == "post")
                     for i in node.webs
                 ]
-                for i, web, far in zip(
-                    node.webs, webs, starts(node.point, webs, self._limits(which, node)), strict=True
-                ):
+                limits = [self._limits(which, node, web) for web in webs]
+                found = starts(node.point, webs, limits)
+                for i, web, far in zip(node.webs, webs, found, strict=True):
                     begin[i, which] = web.leg.point(far, 0.0)
         return begin
 
-    def _limits(self, which: int, node: _Node) -> list[tuple[Array, Array]]:
-        """The lines that webs stay behind at a node: the toes of the chord, and the bolts of an end plate."""
+    def _limits(self, which: int, node: _Node, web: Web) -> list[tuple[Array, Array]]:
+        """The lines that a web stays behind at a node: the toes of the chord, and the bolts of an end plate.
+
+        Over a peak of the bottom chord the far slope, drawn on, would push a diagonal away for nothing.
+        """
         found = []
-        for bar in node.bars:
+        bars = node.bars
+        if which == BOTTOM and len(bars) == 2 and not web.is_post:
+            bars = [1] if web.leg.along[0] > 0 else [0]
+        for bar in bars:
             face = self.chords[which][bar]
             found.append((node.point + face.normal * (to_webs(self._section(which)) + CLEAR), face.normal))
         if node.end is not None:

@@ -17,6 +17,7 @@ from shedbim.expand.clearances import BASE_NODE, BRACE_SET_BACK, POST_HEAD_GAP, 
 from shedbim.expand.frame import Frame
 from shedbim.expand.impossible import impossible
 from shedbim.expand.joints.cap import cap_thickness
+from shedbim.expand.joints.flattened import end_reach
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
 from shedbim.expand.layout import Layout, Pitched
 from shedbim.expand.purlins import under_ridge_bars
@@ -152,7 +153,8 @@ class _Maker:
         in_plane = min(float(p.point(x, self.depth())[2]) for p in pitched)
         steepest = max(abs(float(p.direction[2] / p.direction[0])) for p in pitched)
         cap = cap_thickness(self.columns, self.description.connections.caps) * hypot(1.0, steepest)
-        under = self.layout.column_top(column) - cap - strut.height / 2 - steepest * strut.width / 2
+        half = end_reach(strut, self.description.connections.tube_ends.struts)
+        under = self.layout.column_top(column) - cap - half - steepest * strut.width / 2
         return min(in_plane, under)
 
     def eaves_struts(self) -> None:

@@ -146,16 +146,19 @@ def line_joint(
     return [Meeting(kind, (carrier, Meets(course.name, own_end), *butted, *more), point)]
 
 
-def lap_joints(course: Course, carrier: Meets, place: float, half: float) -> list[Meeting]:
+def lap_joints(
+    course: Course, carrier: Meets, place: float, half: float, beside: Meets | None = None
+) -> list[Meeting]:
     """Give the joints where a course is lapped at ``place`` along the line, ``half`` mm to either side.
 
-    The bar here and the one in the next bay run on over the carrier; each ends on the other's web.
+    The bar here and the one in the next bay run on over the carrier, and over what carries ``beside`` it; each
+    ends on the other's web.
     """
     here, beyond = Meets(course.name, At.ALONG), Meets(course.name, At.ALONG, NEXT_BAY)
     ends = Meets(course.name, _far_end(course)), next_bar(course)
     middle = course.point + course.run * place
     return [
-        Meeting(JointKind.PURLIN_CLEAT, (carrier, here, beyond), middle),
+        Meeting(JointKind.PURLIN_CLEAT, (carrier, here, beyond, *([beside] if beside else [])), middle),
         Meeting(JointKind.PURLIN_LAP, (here, ends[1]), middle - course.run * half),
         Meeting(JointKind.PURLIN_LAP, (beyond, ends[0]), middle + course.run * half),
     ]

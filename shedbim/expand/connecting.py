@@ -29,6 +29,7 @@ from shedbim.model.bolt_groups import BoltGroup
 from shedbim.model.holes import Hole, Notch, Vector
 from shedbim.model.joints import At, Clamp, JointRun
 from shedbim.model.marks import Stock
+from shedbim.model.pressed_ends import Pressed
 from shedbim.model.welds import Weld
 
 __all__ = ["Connected", "connect"]
@@ -63,7 +64,7 @@ class _Made:
     """A configuration and what was made for it.
 
     Attributes:
-        holes, notches, set_back: for each member what is done to it, x from its frame's origin.
+        holes, notches, set_back, pressed: for each member what is done to it, x from its frame's origin.
         fittings: name, stock and frame in joint axes of everything it adds, fasteners last.
     """
 
@@ -71,6 +72,7 @@ class _Made:
     holes: list[tuple[Hole, ...]]
     notches: list[tuple[Notch, ...]]
     set_back: list[float]
+    pressed: list[Pressed | None]
     fittings: list[tuple[str, Stock, Placements]]
     welds: tuple[Weld, ...]
     clamps: tuple[Clamp, ...]
@@ -115,7 +117,7 @@ def _made(seen: Seen, placed: Placed, options: Connections) -> _Made:
     count = seen.pieces.shape[1]
     row = JOINTS.get(seen.joint.kind)
     if row is None:
-        return _Made(seen, [()] * count, [()] * count, [0.0] * count, [], (), ())
+        return _Made(seen, [()] * count, [()] * count, [0.0] * count, [None] * count, [], (), ())
     try:
         return _applied(seen, row.make(seen.joint, options), options)
     except DescriptionError as error:
@@ -148,10 +150,12 @@ def _applied(seen: Seen, connection: Connection, options: Connections) -> _Made:
         holes[number].extend(vented)
     notches: list[list[Notch]] = [[] for _ in members]
     set_back = [0.0] * len(members)
+    pressed: list[Pressed | None] = [None] * len(members)
     for work in connection.works:
         holes[work.of].extend(work.holes)
         notches[work.of].extend(work.notches)
         set_back[work.of] += work.set_back
+        pressed[work.of] = work.pressed or pressed[work.of]
     added = [_fitted(fitting, members, tuple(holes[fitting.name])) for fitting in connection.fittings]
     added += [_bolted(bolting, options) for bolting in connection.boltings]
     welds = tuple(
@@ -171,6 +175,7 @@ def _applied(seen: Seen, connection: Connection, options: Connections) -> _Made:
         [tuple(holes[i]) for i in range(len(members))],
         [tuple(each) for each in notches],
         set_back,
+        pressed,
         added,
         welds,
         clamps,
@@ -264,7 +269,7 @@ def _variants(placed: Placed, made: Sequence[_Made]) -> tuple[list[Stock], Integ
     entries: list[tuple[Integers, int, int, Floats]] = []  # pieces, number in made, member, x
     for number, each in enumerate(made):
         for j in range(each.seen.pieces.shape[1]):
-            if each.holes[j] or each.notches[j] or each.set_back[j]:
+            if each.holes[j] or each.notches[j] or each.set_back[j] or each.pressed[j]:
                 pieces, x = each.seen.pieces[:, j], each.seen.along[:, j]
                 entries.append((pieces, number, j, x))
                 rows = np.column_stack([np.full(len(x), number), np.full(len(x), j), np.rint(x * 1e3)])
@@ -294,9 +299,12 @@ def _variants(placed: Placed, made: Sequence[_Made]) -> tuple[list[Stock], Integ
 def _worked(bar: Bar, done: Sequence[tuple[_Made, int, float]]) -> tuple[Bar, float]:
     """A bar after its joints have worked on it, and how far its frame has moved along its axis, mm."""
     ends = [0.0, 0.0]
+    pressed: list[Pressed | None] = [None, None]
     for made, j, _ in done:
         if made.set_back[j]:
             ends[made.seen.joint.members[j].at] += made.set_back[j]
+        if made.pressed[j]:
+            pressed[made.seen.joint.members[j].at] = made.pressed[j]
     first, last = bar.axis
     cut = bar
     if ends != [0.0, 0.0]:
@@ -311,4 +319,5 @@ def _worked(bar: Bar, done: Sequence[tuple[_Made, int, float]]) -> tuple[Bar, fl
         for made, j, x in done
         for notch in made.notches[j]
     ]
-    return replace(cut, holes=tuple(holes), notches=tuple(notches)), ends[0]
+    whole = replace(cut, holes=tuple(holes), notches=tuple(notches), pressed=(pressed[0], pressed[1]))
+    return whole, ends[0]

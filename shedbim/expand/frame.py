@@ -55,8 +55,8 @@ class Frame:
         return self._at(slope, x, [made.top_chords for made in self.trusses], far=far)
 
     def other_of(self, name: str) -> str | None:
-        """The far angle of the pair that a top chord is the near one of; None where it is no pair."""
-        bars = (bar for made in self.trusses for bar in made.top_chords)
+        """The far angle of the pair that a chord is the near one of; None where it is no pair."""
+        bars = (bar for made in self.trusses for bar in (*made.top_chords, *made.bottom_chords))
         return next((bar.far for bar in bars if bar.name == name and bar.far), None)
 
     def lowest_at(self, slope: int, x: float) -> str:

@@ -15,6 +15,7 @@ from shedbim.expand.layout import Layout
 from shedbim.expand.rafter_frames import rafter_frame
 from shedbim.expand.roof_places import post_places
 from shedbim.expand.sticks import along, stick
+from shedbim.expand.truss_chords import to_back
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 from shedbim.sections.profiles import IShape
@@ -65,9 +66,10 @@ def _post(
     member = Member(name, Role.GABLE_POST, bar, place, gables.grade, description.finish.frames)
     base = Meeting(JointKind.POST_BASE, (Meets(name, At.START),), np.array([x, y, layout.base]))
     above = frame.lowest_at(layout.slopes.index(lowest), x)
-    head = Meeting(
-        JointKind.POST_HEAD, (Meets(above, At.ALONG), Meets(name, At.END)), np.array([x, 0.0, level])
-    )
+    other = frame.other_of(above)
+    more = () if other is None else (Meets(other, At.ALONG),)
+    pieces = (Meets(above, At.ALONG), Meets(name, At.END), *more)
+    head = Meeting(JointKind.POST_HEAD, pieces, np.array([x, 0.0, level]))
     return member, [base, head]
 
 
@@ -77,5 +79,5 @@ def _underside_line(frame: Frame, slope: int, x: float) -> tuple[float, float, f
     member = next(m for m in frame.kit.all_members() if m.name == name)
     origin, direction = member.placement[:, 3], member.placement[:, 0]
     rise = float(direction[2] / direction[0])
-    low = origin[2] - member.bar.section.height / 2 / float(direction[0])
+    low = origin[2] - to_back(member.bar.section) / abs(float(direction[0]))
     return float(origin[0]), float(low), rise

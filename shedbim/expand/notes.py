@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
-from shedbim.description.models import Description, SameGable, TrussRoof
+from shedbim.description.models import Description, SameGable
+from shedbim.description.roof_systems import AngleTrussRoof, TrussedRoof
 from shedbim.expand.clearances import POST_HEAD_GAP
+from shedbim.expand.joints.flattened import FLATTENED
 
 __all__ = ["notes"]
 
@@ -23,7 +25,17 @@ def notes(description: Description) -> tuple[str, ...]:
         found.append(
             "Holes for zinc and air follow galvanizers' published guidance: agree them with the galvanizer."
         )
-    if isinstance(description.frames.roof, TrussRoof) and isinstance(description.frames.gables, SameGable):
+    if isinstance(description.frames.roof, AngleTrussRoof):
+        found.append(
+            "Trusses of angles have no site splices: whether they can go by road in one piece is not looked at."
+        )
+    tube_ends = description.connections.tube_ends
+    if FLATTENED in (tube_ends.struts, tube_ends.braces):
+        found.append(
+            "Ends of tubes pressed flat are drawn with square sides, half the middle line of the ring wide; the shop "
+            "agrees the length of their tapers."
+        )
+    if isinstance(description.frames.roof, TrussedRoof) and isinstance(description.frames.gables, SameGable):
         found.append(
             "The end walls have no posts and no rails beside the end trusses, above the bottom chord."
         )

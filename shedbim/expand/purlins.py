@@ -12,29 +12,31 @@ from shedbim.expand.bays import Bay, runs_of_bays
 from shedbim.expand.cold_formed import (
     Course,
     Stretch,
+    box_corners,
     course_bar,
+    faces_on_line,
+    lap_joints,
     line_joint,
     next_bar,
     sag_bar,
     sag_bar_places,
-    web_faces,
 )
 from shedbim.expand.end_gaps import end_gap
 from shedbim.expand.frame import Frame
 from shedbim.expand.impossible import impossible
 from shedbim.expand.kits import FIRST_LINE, SECOND_LINE, Kit, Meeting, Meets, Member, Run
+from shedbim.expand.laps import are_lapped, check_room_beside, laid, lies, line_over_steel
 from shedbim.expand.layout import Layout, Surface
 from shedbim.expand.set_out import NEAREST, even_places, places_over, sag_bar_rows
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
+from shedbim.sections.section import Section
 
 __all__ = ["carrier_of", "purlin_courses", "purlins", "under_ridge_bars"]
 
 _LENGTHWISE = np.array([0.0, 1.0, 0.0])
 #: Least distance in plan between the purlins on either side of a ridge or a valley, mm.
 _BESIDE = 5.0
-#: From the end of a sleeve to the row of sag bars beside it: their stagger, a nut and air, mm.
-_BESIDE_SLEEVE = 60.0
 
 
 def purlins(
@@ -48,20 +50,19 @@ def purlins(
         frames = (gables[0] if bay.first else inner, gables[1] if bay.last else inner)
         return _bay_kit(description, layout, frames, courses, bay, verge)
 
-    return runs_of_bays(layout, kit)
+    return runs_of_bays(layout, kit, in_turns=are_lapped(description))
 
 
 def purlin_courses(
     description: Description, layout: Layout, frame: Frame
 ) -> list[tuple[Surface, list[Course]]]:
     """Give the purlin lines of every surface, left to right, at y = 0."""
-    options = description.purlins
+    above = line_over_steel(description)
     found = []
     for surface in layout.surfaces:
         courses = []
         for number, x in enumerate(_places(description, layout, frame, surface), start=1):
             pitched = surface.at(x)
-            above = options.lift + options.section.height / 2
             courses.append(
                 Course(
                     f"purlin/{surface.name}/{number}",
@@ -77,12 +78,10 @@ def purlin_courses(
 
 def _check_clear(description: Description, courses: Sequence[tuple[Surface, list[Course]]]) -> None:
     """Refuse purlins that meet over a ridge or in a valley."""
-    low_y, low_z, high_y, high_z = description.purlins.section.outline.bounds
-    corners = [(y, z) for y in (low_y, high_y) for z in (low_z, high_z)]
+    section = description.purlins.section
     for (left, a), (right, b) in pairwise(courses):
-        last, first = a[-1], b[0]
-        end = max(float((last.point + last.open_to * y + last.outward * z)[0]) for y, z in corners)
-        start = min(float((first.point + first.open_to * y + first.outward * z)[0]) for y, z in corners)
+        end = max(float(box_corners(each, section)[:, 0].max()) for each in lies(description, a[-1]))
+        start = min(float(box_corners(each, section)[:, 0].min()) for each in lies(description, b[0]))
         if start < end + _BESIDE:
             field = "ridge_offset" if left.slopes[-1].right_column < 0 else "valley_offset"
             raise impossible(
@@ -96,14 +95,22 @@ def under_ridge_bars(description: Description, layout: Layout, frame: Frame, bay
     options = description.purlins
     if not sag_bar_rows(options.sag_bars, bay, layout.slopes[0].slope.pitch):
         return {}
-    face, levels = web_faces(options.section)[1], {}
+    levels = {}
     for (surface, left), (_, right) in pairwise(purlin_courses(description, layout, frame)):
         pitched = surface.slopes[-1]
         if pitched.right_column < 0:
-            a, b = (course.point + course.open_to * face for course in (left[-1], right[0]))
-            level = np.interp(pitched.slope.x1, [a[0], b[0]], [a[2], b[2]])
-            levels[pitched.name] = float(level) - options.sag_bar.height
+            level = min(
+                _level_between(a, b, pitched.slope.x1, options.section)
+                for a, b in zip(lies(description, left[-1]), lies(description, right[0]), strict=True)
+            )
+            levels[pitched.name] = level - options.sag_bar.height
     return levels
+
+
+def _level_between(left: Course, right: Course, x: float, section: Section) -> float:
+    """The level at ``x`` of the line from web to web over a ridge, mm."""
+    a, b = (course.point + course.open_to * faces_on_line(course, section)[1] for course in (left, right))
+    return float(np.interp(x, [a[0], b[0]], [a[2], b[2]]))
 
 
 def _places(description: Description, layout: Layout, frame: Frame, surface: Surface) -> list[float]:
@@ -138,8 +145,8 @@ def carrier_of(
 
     Over the gap for the end plates it is the nearer one.
     """
-    options, half = description.purlins, description.frames.columns.section.height / 2
-    x = float(course.point[0] - course.outward[0] * (options.lift + options.section.height / 2))
+    half = description.frames.columns.section.height / 2
+    x = float(course.point[0] - course.outward[0] * line_over_steel(description))
     pitched = surface.at(x)
     gap = end_gap(description, trussed=bool(frame.trusses))
     for column in (pitched.left_column, pitched.right_column):
@@ -156,12 +163,13 @@ def _bay_kit(
     bay: Bay,
     verge: float,
 ) -> Kit:
-    options = description.purlins
-    finish = description.finish.secondary
-    stretch = Stretch(
-        -verge if bay.first else options.gap / 2,
-        bay.length + verge if bay.last else bay.length - options.gap / 2,
-    )
+    options, finish = description.purlins, description.finish.secondary
+    half = description.connections.cleats.lap / 2 if are_lapped(description) else 0.0
+    beyond = half or -options.gap / 2
+    stretch = Stretch(-verge if bay.first else -beyond, bay.length + (verge if bay.last else beyond))
+    courses = [
+        (surface, [laid(description, course, odd=bay.odd) for course in lines]) for surface, lines in courses
+    ]
     members: list[Member] = []
     meetings: list[Meeting] = []
     for surface, lines in courses:
@@ -171,11 +179,11 @@ def _bay_kit(
                 _carriers(frame, carrier_of(description, layout, frame, surface, course), line)
                 for frame, line in zip(frames, (FIRST_LINE, SECOND_LINE), strict=True)
             ]
-            meetings.extend(_held(course, carriers[0], carriers[1], bay, verge))
+            meetings.extend(_held(course, carriers[0], carriers[1], bay, verge, half))
     places = sag_bar_places(
         bay.length, sag_bar_rows(options.sag_bars, bay.length, layout.slopes[0].slope.pitch)
     )
-    _check_sleeves(description, bay, places)
+    check_room_beside(description, bay, places)
     for name, lower, upper, number in _neighbours(layout, courses):
         for row, place in enumerate(places, start=1):
             member, joints = sag_bar(
@@ -185,23 +193,6 @@ def _bay_kit(
             members.append(member)
             meetings.extend(joints)
     return Kit(tuple(members), tuple(meetings))
-
-
-def _check_sleeves(description: Description, bay: Bay, places: Sequence[float]) -> None:
-    """Refuse sleeves that reach the sag bars of a bay, or each other."""
-    cleats = description.connections.cleats
-    if cleats.continuity != "sleeved":
-        return
-    room = [bay.length] if bay.first or bay.last else [bay.length / 2]
-    room += [place for place in places if not bay.first] + [
-        bay.length - place for place in places if not bay.last
-    ]
-    most = 2 * (min(room) - _BESIDE_SLEEVE)
-    if cleats.sleeve > most:
-        raise impossible(
-            "connections.cleats.sleeve", "the sleeves reach the sag bars of a bay, or each other",
-            given=f"{cleats.sleeve:.0f} mm", allowed=f"{most:.0f} mm at most, or fewer rows of sag bars",
-        )  # fmt: skip
 
 
 def _carriers(frame: Frame, name: str, line: int) -> tuple[Meets, Meets | None]:
@@ -216,12 +207,18 @@ def _held(
     second: tuple[Meets, Meets | None],
     bay: Bay,
     verge: float,
+    half: float,
 ) -> list[Meeting]:
-    """The joints of a purlin on the bay's two lines: butted inside, running through at an end frame."""
+    """The joints of a purlin on the bay's two lines: running through at an end frame, inside butted or lapped.
+
+    ``half`` is half the lap, 0 where there is none.
+    """
     kind = JointKind.PURLIN_CLEAT
     found: list[Meeting] = []
     if bay.first:
         found += line_joint(kind, course, first[0], 0.0, near=True, overhang=verge, beside=first[1])
+    if half and not bay.last:
+        return found + lap_joints(course, second[0], bay.length, half, beside=second[1])
     found += line_joint(
         kind, course, second[0], bay.length, near=False, overhang=verge if bay.last else 0.0,
         following=None if bay.last else next_bar(course), beside=second[1],

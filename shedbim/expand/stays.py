@@ -10,12 +10,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from shedbim.description.models import Description
-from shedbim.expand.bays import braced_bays
-from shedbim.expand.cold_formed import STAGGER, Course, sag_bar_places, web_faces
+from shedbim.expand.bays import braced_bays, is_odd
+from shedbim.expand.cold_formed import STAGGER, Course, faces_on_line, sag_bar_places
 from shedbim.expand.frame import Frame
 from shedbim.expand.impossible import impossible
 from shedbim.expand.joints.cold_formed_web import end_distance, hole_lines
 from shedbim.expand.kits import FIRST_LINE, NEXT_BAY, Kit, Meeting, Meets, Member, Run
+from shedbim.expand.laps import are_lapped, laid, line_over_steel, overlap
 from shedbim.expand.layout import Layout, Surface
 from shedbim.expand.purlins import carrier_of, purlin_courses
 from shedbim.expand.set_out import sag_bar_rows
@@ -92,12 +93,13 @@ def stays(description: Description, layout: Layout, inner: Frame) -> list[Run]:
         return []
     runs = []
     for side, numbers in _chosen_lines(description, layout).items():
-        for length in sorted({round(layout.bay_lengths[_bay(line, side)], 6) for line in numbers}):
-            lines = [n for n in numbers if round(layout.bay_lengths[_bay(n, side)], 6) == length]
+        kinds = {line: _kind_of_bay(description, layout, _bay(line, side)) for line in numbers}
+        for length, odd in sorted(set(kinds.values())):
+            lines = [line for line, kind in kinds.items() if kind == (length, odd)]
             bays = [layout.bay_labels[_bay(line, side)] for line in lines]
             runs.append(
                 Run(
-                    _kit(description, layout, inner, side, length, every),
+                    _kit(description, layout, inner, side, length, every, odd=odd),
                     bays,
                     np.array([layout.grid.y[line] for line in lines]),
                     first_lines=[layout.grid.numbers[line] for line in lines],
@@ -105,6 +107,11 @@ def stays(description: Description, layout: Layout, inner: Frame) -> list[Run]:
                 )
             )
     return runs
+
+
+def _kind_of_bay(description: Description, layout: Layout, bay: int) -> tuple[float, bool]:
+    """What the stays in a bay depend on: its length, and whether it is odd where purlins lie in turns."""
+    return round(layout.bay_lengths[bay], 6), not are_lapped(description) or is_odd(bay)
 
 
 def _bay(line: int, side: int) -> int:
@@ -123,14 +130,16 @@ def _chosen_lines(description: Description, layout: Layout) -> dict[int, list[in
     return chosen
 
 
-def _kit(description: Description, layout: Layout, frame: Frame, side: int, length: float, every: int) -> Kit:
-    """The stays of a frame on one side of it, in a bay of ``length`` mm."""
+def _kit(
+    description: Description, layout: Layout, frame: Frame, side: int, length: float, every: int, *, odd: bool
+) -> Kit:
+    """The stays of a frame on one side of it, in an odd or even bay of ``length`` mm."""
     stay = _laid_out(description, frame, length, layout)
     members: list[Member] = []
     meetings: list[Meeting] = []
     for course, carrier in _stayed(description, layout, frame, stay, every):
         name = course.name.replace("purlin/", "stay/", 1) + ("/near" if side > 0 else "/far")
-        member, ends = _placed(description, course, stay, side, name)
+        member, ends = _placed(description, laid(description, course, odd=odd), stay, side, name)
         members.append(member)
         meetings += [
             Meeting(
@@ -184,10 +193,7 @@ def _laid_out(description: Description, frame: Frame, length: float, layout: Lay
     Raises:
         DescriptionError: where the stay would hit a flange, a cleat or a sag bar.
     """
-    purlins, rafter = (
-        description.purlins,
-        frame.carrier.profile if isinstance(frame.carrier, Section) else None,
-    )
+    rafter = frame.carrier.profile if isinstance(frame.carrier, Section) else None
     if not isinstance(rafter, IShape):
         raise impossible("connections.stays.every", "only rafters of I section can be stayed", allowed="0")
     mark = back_mark(description.connections.stays.section)
@@ -195,24 +201,30 @@ def _laid_out(description: Description, frame: Frame, length: float, layout: Lay
     corner = (STAY_END + widest) / 2**0.5  # at 45 degrees, of the lower end
     foot_u = max(rafter.b / 2 - _INSIDE, rafter.tw / 2 + corner + _AIR)
     over = rounded_up(max(corner, rafter.r) + _AIR, 5.0)
-    foot_v = -(purlins.section.height / 2 + purlins.lift + rafter.h - rafter.tf - over)
-    stay = _past_sleeve(description, _Stay((foot_u, foot_v), (foot_u - foot_v, 0.0)), widest)
+    foot_v = -(line_over_steel(description) + rafter.h - rafter.tf - over)
+    stay = _past_overlap(description, _Stay((foot_u, foot_v), (foot_u - foot_v, 0.0)), widest)
     _check_clear(description, stay, rafter, widest, length, layout)
     return stay
 
 
-def _past_sleeve(description: Description, stay: _Stay, widest: float) -> _Stay:
-    """The stay with its head beyond the sleeve where there is one, and clear of the bolts at the sleeve's end."""
-    cleats = description.connections.cleats
-    if cleats.continuity != "sleeved":
+def _past_overlap(description: Description, stay: _Stay, widest: float) -> _Stay:
+    """The stay with its head beyond the sleeve or lap where there is one.
+
+    It is clear of the bolts at the end of a sleeve, and passes below the end of a purlin that laps.
+    """
+    _, length = overlap(description)
+    if not length:
         return stay
-    lines = hole_lines(description.purlins.section, cleats, "purlins")
-    bolt_u, bolt_v = cleats.sleeve / 2 - end_distance(lines), lines.levels[0]
+    lines = hole_lines(description.purlins.section, description.connections.cleats, "purlins")
     room = widest + lines.diameter + _AIR  # a washer is less than twice its bolt
-    head = max(stay.head[0], cleats.sleeve / 2 + _CLEAR)
+    beside = (length / 2 - end_distance(lines), lines.levels[0])
+    if are_lapped(description):
+        lowest = description.purlins.lift - line_over_steel(description)
+        room, beside = widest + _AIR, (length / 2, lowest)
+    head = max(stay.head[0], length / 2 + _CLEAR)
     while True:
         found = _Stay(stay.foot, (head, 0.0))
-        if (bolt_u - head) * -sin(found.angle) + bolt_v * cos(found.angle) >= room:
+        if (beside[0] - head) * -sin(found.angle) + beside[1] * cos(found.angle) >= room:
             return found
         head += _STEP
 
@@ -221,7 +233,7 @@ def _check_clear(
     description: Description, stay: _Stay, rafter: IShape, widest: float, length: float, layout: Layout
 ) -> None:
     """Refuse a stay that touches the rafter's upper flange, or a sag bar at its head."""
-    top = -(description.purlins.section.height / 2 + description.purlins.lift) - rafter.tf
+    top = -line_over_steel(description) - rafter.tf
     u = stay.foot[0] + (top - stay.foot[1]) * cos(stay.angle) / sin(stay.angle) - widest / sin(stay.angle)
     if u < rafter.b / 2 + _AIR:
         raise impossible(
@@ -248,7 +260,7 @@ def _placed(
     """The stay of a course and where its axis begins and ends: one leg flat on the free side of the web."""
     options = description.connections.stays
     section = options.section
-    low, high = web_faces(description.purlins.section)
+    low, high = faces_on_line(course, description.purlins.section)
     is_c = isinstance(description.purlins.section.profile, LippedC)
     out, face = (-course.open_to, -low) if is_c else (course.open_to, high)
     along = course.run * (side * cos(stay.angle)) + course.outward * sin(stay.angle)

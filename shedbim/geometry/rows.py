@@ -11,6 +11,7 @@ __all__ = ["distinct_rows"]
 
 Integers = NDArray[np.int64]
 
+
 def distinct_rows(rows: Integers) -> tuple[Integers, Integers]:
     """Find equal rows of (n, k) integers: the first row of each kind, in order, and each row's kind (n,)."""
     _, first, kind = np.unique(mixed(rows), return_index=True, return_inverse=True)

@@ -68,7 +68,8 @@ class Bar:
     def volume(self) -> float:
         """Volume, mm³, exact: a plane cut through the axis of centroids takes as much as it leaves.
 
-        An end that is pressed flat keeps its steel. Holes and notches are off; no hole may reach into a notch, a fillet or an end.
+        An end that is pressed flat keeps its steel. Holes and notches are off; no hole may reach into a notch, a
+        fillet, a taper or an end.
         """
         first, last = self.axis
         outline = self.section.outline

@@ -47,9 +47,7 @@ def bar_likeness(bars: Sequence[Bar], classes: Sequence[int]) -> Likeness:
     back = inverse(plain.motion)
     seen = [
         Pattern(apply(motion, each.points), each.labels)
-        for motion, each in zip(
-            back, patterns([_markers(bar) for bar in bars]), strict=True
-        )
+        for motion, each in zip(back, patterns([_markers(bar) for bar in bars]), strict=True)
     ]
     groups: dict[tuple[int, ...], list[int]] = defaultdict(list)
     for i, each in enumerate(seen):
@@ -169,8 +167,8 @@ def _featured(shape: Bar, bar: Bar, back: Placements) -> Bar:
 
 def _either_way(axis: Vector) -> Vector:
     """The one of an axis and its opposite whose greater component is positive."""
-    x, y, z = axis
-    return axis if max((y, z), key=abs) > 0 else (-x, -y, -z)
+    _, y, z = axis
+    return axis if max((y, z), key=abs) > 0 else (0.0, 0.0 - y, 0.0 - z)
 
 
 def _vector(values: Array) -> Vector:

@@ -26,8 +26,8 @@ from shedbim.sections.profiles import Pipe
 from shedbim.sections.section import Profile
 
 __all__ = [
-    "PressedEnds",
     "Pressed",
+    "PressedEnds",
     "bored",
     "check_pressed",
     "flat_corners",

@@ -42,7 +42,9 @@ def lipped_z(dimensions: Size) -> LippedZ:
         h, b, b2, c, t = _counted(dimensions, "depth x wide flange x narrow flange x lip x wall")
         _check_folds(t, (("depth", h, 2), ("wide flange", b, 2), ("narrow flange", b2, 2), ("lip", c, 1)))
     if b2 > b:
-        raise ValueError(f"the flange of {b:g} mm is narrower than that of {b2:g} mm; the wide one comes first")
+        raise ValueError(
+            f"the flange of {b:g} mm is narrower than that of {b2:g} mm; the wide one comes first"
+        )
     if c >= h:
         raise ValueError(f"a lip of {c:g} mm is as deep as the section of {h:g} mm")
     return LippedZ(h, b, c, t, BEND * t, b2 if b2 < b else None)

@@ -11,7 +11,7 @@ __all__ = ["StrutOptions", "TubeEndOptions"]
 
 _Count = Literal["2", "3"]
 _Size = Literal["M12", "M16", "M20", "M24"]
-_Form = Literal["capped", "slotted"]
+_Form = Literal["capped", "slotted", "flattened"]
 
 
 class StrutOptions(Options):
@@ -27,11 +27,13 @@ class StrutOptions(Options):
 
 
 class TubeEndOptions(Options):
-    """How tubes end: either way a fin plate stands out of the tube and is bolted beside another plate."""
+    """How tubes end: a fin plate stands out of the tube and is bolted beside another plate, or the tube itself is."""
 
     struts: Annotated[_Form, Choice(*get_args(_Form))] = default(
-        "capped", "struts and ties: a fin on a cap plate, or in a slot of the tube"
+        "capped",
+        "struts and ties: a fin on a cap plate, or in a slot of the tube, or a round tube pressed flat",
     )
     braces: Annotated[_Form, Choice(*get_args(_Form))] = default(
-        "slotted", "tubular braces: a fin in a slot of the tube, or on a cap plate"
+        "slotted",
+        "tubular braces: a fin in a slot of the tube, or on a cap plate, or a round tube pressed flat",
     )

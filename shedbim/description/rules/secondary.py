@@ -18,6 +18,7 @@ __all__ = ["RULES"]
 _NEAREST = 300.0
 #: Air between the lips of two lapped purlins, mm.
 _LAP_PLAY = 1.0
+_NANOMETRE = 1e-6
 
 #: Room that a brace in a column line needs beside the middle of the column: half a gusset plate and the way
 #: to the flange (common practice), mm.
@@ -59,9 +60,12 @@ def lapped_purlins_nest(description: Description) -> Iterator[Broken]:
     profile = description.purlins.section.profile
     if description.connections.cleats.continuity != "lapped":
         return
-    if not isinstance(profile, LippedZ) or profile.b - profile.narrow < 2 * profile.t + _LAP_PLAY:
-        more = f" by {2 * profile.thickness + _LAP_PLAY:g} mm or more"
-        allowed = f"a Z with one flange wider than the other{more}, or another connections.cleats.continuity"
+    least = 2 * profile.thickness + _LAP_PLAY
+    if not isinstance(profile, LippedZ) or profile.b - profile.narrow < least - _NANOMETRE:
+        allowed = (
+            f"a Z with one flange wider than the other by {least:g} mm or more, such as Z 200x75/68x20x2.5, "
+            "or another connections.cleats.continuity"
+        )
         yield Broken("purlins.section", "lapped purlins do not nest in each other", allowed)
 
 

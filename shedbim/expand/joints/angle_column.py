@@ -78,6 +78,10 @@ def _room(side: Side, own: ChordOptions, half_gusset: float, weld: float, name: 
         aside = spread(room, least, side.half_width, least, side.half_width)
         if aside is not None:
             return room, aside
+    if own.bolt is not None:
+        raise impossible(
+            "connections.chords.bolt", "no room for these bolts beside the gusset of a truss", given=own.bolt
+        )
     raise impossible(
         "frames.columns.section", "no room for bolts between a truss and its column",
         given=f"{name} on {side.column.section.designation}", allowed="wider columns",

@@ -10,7 +10,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
-from manifold3d import CrossSection
+from manifold3d import CrossSection, JoinType
 from numpy.typing import NDArray
 
 from shedbim.description.connections import Connections
@@ -42,7 +42,7 @@ __all__ = [
 Array = NDArray[np.float64]
 _X, _Y, _Z = np.eye(3)
 _CHORDS = (Role.TOP_CHORD, Role.BOTTOM_CHORD)
-_FAR = 3000.0
+_FAR, _HAIR = 3000.0, 0.1
 
 
 @dataclass(frozen=True, eq=False)
@@ -163,7 +163,8 @@ def gusset(
     taken = beyond_backs(chords)
     if behind is not None:
         taken = taken + behind
-    needed = [patch - taken for patch in wanted]
+    # Less the hair that an outline loses where corners nearly in line are left out.
+    needed = [(patch - taken).offset(-_HAIR, JoinType.Miter) for patch in wanted]
     corners = outline(CrossSection.batch_hull(list(wanted)), taken, needed)
     if corners is None:
         raise impossible(

@@ -1,8 +1,9 @@
 """Gussets of braces: a plate in the plane of the braces, welded to the web or face of what carries it.
 
 An angle lies on one face of the gusset and is bolted on its back mark; a tube ends in a fin that lies beside the
-gusset. Along a carrier the outline hangs on the bolts alone, so that gussets of equal braces are equal plates
-whichever way the leg of the angle points; at a column's head it is led between strut and flange.
+gusset, or is pressed flat itself. Along a carrier the outline hangs on the bolts alone, so that gussets of equal
+braces are equal plates whichever way the leg of the angle points; at a column's head it is led between strut and
+flange.
 
 Nothing is designed: sizes follow from bolts, edges and room.
 """
@@ -25,6 +26,7 @@ from shedbim.expand.joints.angle_carrier import flat_of_leg, half_of_pair, leg_f
 from shedbim.expand.joints.bolt_lines import BoltLine, leg_line, tube_line
 from shedbim.expand.joints.cap import cap_thickness
 from shedbim.expand.joints.contract import FAR, Bolting, Connection, Fitting, Joint, Layer, Met, Welding, Work
+from shedbim.expand.joints.flattened import flattened
 from shedbim.expand.joints.gusset_outline import (
     CHORD_ERROR,
     Plane,
@@ -67,6 +69,8 @@ _BACK, _TRIES = 10.0, 25
 _FLAT = 0.2
 #: Stops nearer than this are one.
 _SAME = 0.5
+#: Air around the flat of a tube, mm: it is wider than the tube was.
+_FLAT_AIR = 5.0
 #: What is left of a brace between its ends, least.
 _LEAST_BRACE = 100.0
 
@@ -116,9 +120,11 @@ class _Gusset:
         self.carrier, self.brace = joint.members
         self.neighbours, self.options = joint.neighbours, options
         self.line = brace_line(self.brace, options)
-        self.fin = options.struts.thickness
-        profile = self.brace.section.profile
+        profile, form = self.brace.section.profile, options.tube_ends.braces
         self.angle = profile if isinstance(profile, Angle) else None
+        option = "connections.tube_ends.braces"
+        self.flat = None if self.angle else flattened(self.brace, self.line, form, option)
+        self.fin = options.struts.thickness if self.flat is None else self.flat.thickness
         self.plane = self._plane()
         self.direction = self.plane.along(self.brace.into)
         self.body = self._body()
@@ -130,7 +136,7 @@ class _Gusset:
         end = self._tube_end(lap)
         work = Work(1, shape.set_back) if end is None else end.work
         room = self.brace.to_start + self.brace.to_end
-        if room < FAR and room - 2 * work.set_back < _LEAST_BRACE:
+        if room < FAR and room - 2 * work.taken < _LEAST_BRACE:
             raise impossible(
                 _field(self.brace), f"no room for a {self.brace.role.word} between its two ends",
                 given=self.brace.section.designation, allowed="fewer and larger panels, or a smaller section",
@@ -241,6 +247,8 @@ class _Gusset:
         for k in range(_TRIES):
             set_back = first + k * _BACK
             start = self._lap_start(set_back)
+            if not (self._flat_lap(start) ^ (taken + self.body)).is_empty():
+                continue
             lap = rectangle_at(start, self.direction, self.line.lap, self.line.side)
             found = root(self.carrier, self.plane, self.body, lap, taken, self.line.lap)
             if found is None:
@@ -255,6 +263,14 @@ class _Gusset:
             given=f"{self.brace.section.designation} at {self.carrier.section.designation}",
             allowed="larger panels, smaller braces or struts, or a larger column",
         )  # fmt: skip
+
+    def _flat_lap(self, start: Array) -> CrossSection:
+        """What the flat of a tube takes, and its taper, with air around; nothing where it has none."""
+        if self.flat is None:
+            return CrossSection()
+        begin = start - self.direction * _FLAT_AIR
+        length = self.flat.length + self.flat.taper + _FLAT_AIR
+        return rectangle_at(begin, self.direction, length, self.flat.half + _FLAT_AIR)
 
     def _face(self) -> float:
         """v of the web or face, mm."""
@@ -277,10 +293,11 @@ class _Gusset:
                 if self._along and self._passes(end, first):
                     continue
                 made = end.connection()
-                bodies = [*made_solids(made), member_solid(met, made.works[0].set_back)]
+                bodies = [*made_solids(made), member_solid(met, made.works[0])]
             elif met.role in _BARS and met.role is not self.brace.role and not self._along:
                 bodies = [member_solid(met)]
-            shadows = [shadow(body, self.plane, GUSSET / 2, AIR) for body in bodies]
+            half = GUSSET / 2 + (0.0 if self.flat is None else self.flat.thickness)
+            shadows = [shadow(body, self.plane, half, AIR) for body in bodies]
             if self._along and shadows:
                 yield lane(shadows)
             else:
@@ -288,7 +305,8 @@ class _Gusset:
 
     def _passes(self, end: FinOnCarrier, first: float) -> bool:
         """Whether the end of a strut lies wholly beside the lap, on the side of the work point."""
-        lap = rectangle_at(self._lap_start(first), self.direction, self.line.lap, self.line.side)
+        half = self.line.side if self.flat is None else self.flat.half
+        lap = rectangle_at(self._lap_start(first), self.direction, self.line.lap, half)
         return float(lap.bounds()[0]) >= float(self.plane.seen(end.strut.origin)[0]) + end.reach + AIR
 
     # What is made
@@ -314,12 +332,14 @@ class _Gusset:
         if self.angle is not None:
             return None
         cap = cap_thickness(self.brace.section, self.options.caps)
-        return tube_end(self.brace, 1, lap, self.fin, self.options.tube_ends.braces, cap)
+        form = self.options.tube_ends.braces
+        return tube_end(self.brace, 1, lap, self.fin, form, cap, flat=self.flat)
 
     def _bolts(self, lap: Lap) -> Bolting:
         """Heads on the leg or the fin, nuts on the free face of the gusset."""
         if self.angle is None:
-            layer, top = Layer("fin", self.fin), self.fin / 2
+            layer = Layer("fin" if self.flat is None else 1, self.fin)
+            top = self.fin / 2
         else:
             layer, top = Layer(1, self.angle.t), self.brace.section.outline.bounds[1] + self.angle.t
         layers = (layer, Layer("gusset", GUSSET))

@@ -11,7 +11,15 @@ from numpy.typing import NDArray
 from shedbim.description.connections import Connections
 from shedbim.expand.impossible import impossible
 from shedbim.expand.joints.carrier_face import Ground, ground, stands_on_head
-from shedbim.expand.joints.cold_formed_web import HoleLines, Web, end_distance, field_of, hole_lines, web_of
+from shedbim.expand.joints.cold_formed_web import (
+    HoleLines,
+    Web,
+    end_distance,
+    field_of,
+    hole_lines,
+    in_layers,
+    web_of,
+)
 from shedbim.expand.joints.contract import Bolting, Connection, Fitting, Joint, Layer, Met, Welding
 from shedbim.expand.joints.shaping import frame_of, plate_at
 from shedbim.expand.joints.sleeve import Sleeve, sleeve_over
@@ -21,6 +29,7 @@ from shedbim.fasteners.holes import hole_diameter
 from shedbim.fasteners.plate_stock import rounded_up
 from shedbim.fasteners.welds import throat_for
 from shedbim.geometry.placements import cross
+from shedbim.model.joints import At
 from shedbim.model.plates import Plate
 from shedbim.model.roles import Role
 
@@ -52,7 +61,7 @@ class _Size:
 
 
 def cleat(joint: Joint, options: Connections) -> Connection:
-    """Give the cleat of a purlin or rail, or of two that are butted, with bolts and welds.
+    """Give the cleat of a purlin or rail, or of two that are butted or lap, with bolts and welds.
 
     Raises:
         DescriptionError: where web, lift or carrier leave no room.
@@ -61,7 +70,7 @@ def cleat(joint: Joint, options: Connections) -> Connection:
     carried = [met for met in joint.members[1:] if met.role in _CARRIED]
     # The angles of a pair carry together; the other one is last.
     holding = (0, *range(1 + len(carried), len(joint.members)))
-    web, group = web_of(carried[0]), field_of(carried[0])
+    web, group = web_of(*carried), field_of(carried[0])
     lines = hole_lines(carried[0].section, options.cleats, group)
     on_head = stands_on_head(carrier, carried[0])
     face = ground(carrier, web, options.cleats.thickness, on_head=on_head)
@@ -69,12 +78,15 @@ def cleat(joint: Joint, options: Connections) -> Connection:
     half = rounded_up(out + end_distance(lines), 5.0)
     seat, lift = None, 0.0
     if face.beyond > 0.0:
-        seat, lift = _seat(face, web, carried[0], half, options)
+        seat, lift = _seat(face, web, group, half, options)
     size = _size(face, web, lines, half, lift, group)
     plate, frame = _plate(face, web, size, options.cleats.thickness, seated=seat is not None)
     fitting = Fitting("cleat", Role.CLEAT, plate, frame)
     sleeve = sleeve_over(carried, web, lines, options)
-    boltings = _boltings(carried, web, lines, out, options, sleeve)
+    if len(carried) > 1 and all(met.at == At.ALONG for met in carried):
+        boltings: tuple[Bolting, ...] = (_through_both(carried, web, lines, out, options),)
+    else:
+        boltings = _boltings(carried, web, lines, out, options, sleeve)
     throat = throat_for(options.cleats.thickness)
     if seat is None:
         length = _weld_length(face, size) / len(holding)
@@ -172,9 +184,9 @@ def _weld_length(face: Ground, size: _Size) -> float:
     return 4.0 * min(size.half, face.half)
 
 
-def _seat(face: Ground, web: Web, carried: Met, half: float, options: Connections) -> tuple[Fitting, float]:
+def _seat(face: Ground, web: Web, group: str, half: float, options: Connections) -> tuple[Fitting, float]:
     """The plate that a cleat stands on where it would come down beside its carrier's face, and its thickness."""
-    group, thickness = field_of(carried), options.cleats.thickness
+    thickness = options.cleats.thickness
     outer = face.beyond + _WELD_ROOM
     if not face.square or face.radius or face.tongue or outer > _STANDS_OUT:
         raise impossible(
@@ -182,7 +194,7 @@ def _seat(face: Ground, web: Web, carried: Met, half: float, options: Connection
             "the cleat of a purlin stands beside what carries it",
             allowed=f"a distance that moves the purlin by {face.beyond:.0f} mm or more",
         )  # fmt: skip
-    room = face.depth - carried.section.height / 2 - _SEAT_GAP
+    room = face.depth - web.bottom - _SEAT_GAP
     fitting = [t for t in _SEATS if t <= room]
     if not fitting:
         raise impossible(
@@ -200,6 +212,20 @@ def _seat(face: Ground, web: Web, carried: Met, half: float, options: Connection
         low, high = -high, -low
     corners = ((-half, low), (half, low), (half, high), (-half, high))
     return Fitting("seat", Role.SEAT, Plate(corners, fitting[0]), frame), fitting[0]
+
+
+def _through_both(
+    carried: list[Met], web: Web, lines: HoleLines, out: float, options: Connections
+) -> Bolting:
+    """Two bolts on each side of the line through the webs of two purlins that lap."""
+    thickness = options.cleats.thickness
+    layers = (*in_layers(dict(enumerate(carried, start=1)), web), Layer("cleat", thickness))
+    grip = sum(layer.thickness for layer in layers)
+    head = web.out * (web.face + thickness - grip)
+    points = np.array([head + web.run * u + web.up * v for u in (-out, out) for v in lines.levels])
+    return Bolting(
+        "bolts", bolt(lines.diameter, options.bolts.secondary_grade, grip), points, web.out, layers
+    )
 
 
 def _boltings(

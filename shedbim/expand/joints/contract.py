@@ -25,6 +25,7 @@ from shedbim.model.bars import Bar, EndCut
 from shedbim.model.holes import Hole, Notch
 from shedbim.model.joints import At, JointKind
 from shedbim.model.plates import Plate
+from shedbim.model.pressed_ends import Pressed
 from shedbim.model.roles import Role
 from shedbim.sections.section import Section
 
@@ -198,12 +199,19 @@ class Work:
         of: number of the member.
         set_back: how far its end that meets here is moved back along its axis, mm; negative: moved on.
         holes, notches: in the member's ``frame``, x from its origin.
+        pressed: what its end that meets here is pressed to, seen in its ``frame``; None for nothing.
     """
 
     of: int
     set_back: float = 0.0
     holes: tuple[Hole, ...] = ()
     notches: tuple[Notch, ...] = ()
+    pressed: Pressed | None = None
+
+    @property
+    def taken(self) -> float:
+        """How far from where the end was the member is not yet its own section, mm."""
+        return self.set_back + (0.0 if self.pressed is None else self.pressed.length)
 
 
 @dataclass(frozen=True, eq=False)

@@ -73,7 +73,8 @@ class Leg:
         return float((area ^ self.patch(-_FAR, _FAR, up - 0.5, up + 0.5)).area())
 
 
-_FAR = 3000.0
+#: Longer than any chord, mm.
+_FAR = 100_000.0
 
 
 @dataclass(frozen=True, eq=False)
@@ -97,14 +98,14 @@ def toe_length(leg: Leg, heel: float) -> float:
     return max(rounded_up(heel * leg.back / leg.toe), _LEAST_WELD)
 
 
-def starts(node: Array, webs: Sequence[Web], planes: Sequence[tuple[Array, Array]]) -> list[float]:
+def starts(node: Array, webs: Sequence[Web], planes: Sequence[Sequence[tuple[Array, Array]]]) -> list[float]:
     """Give how far from their node webs begin, so that their square ends are clear of chord and each other.
 
     Args:
         webs: left to right.
-        planes: (point, unit normal towards the webs) of lines that no corner may lie behind.
+        planes: for each web (point, unit normal towards the web) of the lines that no corner of it may lie behind.
     """
-    limits: list[list[tuple[Array, Array]]] = [list(planes) for _ in webs]
+    limits = [list(own) for own in planes]
     for i in range(len(webs) - 1):
         for number, plane in _between(node, webs, i):
             limits[number].append(plane)

@@ -6,13 +6,13 @@ Plane of a gusset: ``u`` along the carrier, ``v`` off its web or face, ``n`` = u
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from manifold3d import CrossSection, JoinType, Manifold
 from numpy.typing import NDArray
 
-from shedbim.expand.joints.contract import FAR, Connection, Met
+from shedbim.expand.joints.contract import FAR, Connection, Met, Work
 from shedbim.geometry.placements import Placements, cross
 from shedbim.model.bars import bar_on_axis
 from shedbim.model.joints import At
@@ -110,14 +110,17 @@ def _rectangle(low_u: float, low_v: float, high_u: float, high_v: float) -> Cros
     return CrossSection([np.array([[low_u, low_v], [high_u, low_v], [high_u, high_v], [low_u, high_v]])])
 
 
-def member_solid(met: Met, set_back: float = 0.0) -> Manifold:
-    """Give the solid of a member as far as it is seen, the end that meets moved back, in joint axes."""
+def member_solid(met: Met, work: Work | None = None) -> Manifold:
+    """Give the solid of a member as far as it is seen, the end that meets moved back and pressed, in joint axes."""
+    set_back = 0.0 if work is None else work.set_back
     start, end = -met.to_start, met.to_end
     if met.at == At.START:
         start += set_back
     elif met.at == At.END:
         end -= set_back
     bar = bar_on_axis(met.section, max(end - start, 1.0), met.start, met.end)
+    if work is not None and work.pressed is not None and work.taken < end - start:
+        bar = replace(bar, pressed=(work.pressed, None) if met.at == At.START else (None, work.pressed))
     place = met.frame.copy()
     place[:, 3] += place[:, 0] * (start - bar.axis[0])
     return solid(bar, CHORD_ERROR).transform(place)

@@ -17,6 +17,7 @@ from numpy.typing import NDArray
 from shedbim.description.connections import Connections
 from shedbim.expand.clearances import POST_HEAD_GAP
 from shedbim.expand.impossible import impossible
+from shedbim.expand.joints.angle_carrier import block_of_pair
 from shedbim.expand.joints.cap import cap_on, cap_thickness
 from shedbim.expand.joints.contract import FAR, Bolting, Connection, Fitting, Joint, Layer, Welding
 from shedbim.expand.joints.shaping import plate_at
@@ -30,7 +31,7 @@ from shedbim.fasteners.welds import throat_for
 from shedbim.model.plates import rectangle
 from shedbim.model.roles import Role
 from shedbim.sections import catalogue
-from shedbim.sections.profiles import Hollow, IShape
+from shedbim.sections.profiles import Angle, Hollow, IShape
 from shedbim.sections.section import Section
 
 __all__ = ["head_room", "post_head"]
@@ -114,7 +115,9 @@ class _Head:
     """The steps of one head; every step reads what the steps before it set."""
 
     def __init__(self, joint: Joint, options: Connections) -> None:
-        self.above, self.post = joint.members
+        self.post, self.others = joint.members[1], range(2, len(joint.members))
+        above = joint.members[0]
+        self.above = block_of_pair(above) if isinstance(above.section.profile, Angle) else above
         self.options = options
         self.drill = _drill(options.post_heads.size)
         self.is_tube = isinstance(self.post.section.profile, Hollow)
@@ -127,7 +130,7 @@ class _Head:
 
     def connection(self) -> Connection:
         """Everything the head adds to the post and the steel above."""
-        fittings, welds, works = [self._hanger()], [self._hanger_weld()], []
+        fittings, welds, works = [self._hanger()], self._hanger_welds(), []
         layers = [Layer("hanger", self.thickness, Fit.LONG_SLOT, self.post.x)]
         if self.is_tube:
             cap, weld, work = cap_on(self.post, 1, cap_thickness(self.post.section, self.options.caps))
@@ -289,13 +292,15 @@ class _Head:
         )  # fmt: skip
         return Fitting("hanger", Role.FIN_PLATE, bar, frame)
 
-    def _hanger_weld(self) -> Welding:
-        """Both sides of the hanger, as far as it lies on the flat of the steel above."""
+    def _hanger_welds(self) -> list[Welding]:
+        """Both sides of the hanger, as far as it lies on the flat of the steel above, or of both angles of a pair."""
         profile = self.above.section.profile
         wall = profile.tf if isinstance(profile, IShape) else profile.thickness
         middle = float((self.above.origin - self.post.origin) @ self.post.z)
         throat = throat_for(min(wall, self.thickness), self.above.grade)
-        return Welding(("hanger", 0), throat, 2 * self._overlap(self.v, middle))
+        holding = (0, *self.others)
+        length = 2 * self._overlap(self.v, middle) / len(holding)
+        return [Welding(("hanger", number), throat, length) for number in holding]
 
     def _flat(
         self, name: str, role: Role, levels: tuple[float, float], inner: float, thickness: float

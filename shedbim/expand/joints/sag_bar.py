@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from shedbim.description.connections import Connections
 from shedbim.expand.cold_formed import STAGGER, web_faces
 from shedbim.expand.impossible import impossible
-from shedbim.expand.joints.cold_formed_web import field_of, flat_half
+from shedbim.expand.joints.cold_formed_web import field_of, flat_half, off_middle
 from shedbim.expand.joints.contract import Bolting, Connection, Fitting, Joint, Layer, Met, Welding, Work
 from shedbim.expand.joints.shaping import plate_at
 from shedbim.fasteners.bolts import bolt
@@ -114,7 +114,7 @@ def _on_plate(course: Met, bar: Met, arrival: _Arrival, options: Connections) ->
     aside = d / 2 / cos(arrival.slant) + head * tan(arrival.slant) + widest + _BESIDE
     place = rounded_up(max(aside, wrench_pitch(_PLATE_BOLT) / 2), 5.0)
     reach = edge(_PLATE_BOLT)
-    flat = flat_half(course.section)
+    flat = flat_half(course.section) - off_middle(course, arrival.point)
     if place + max(reach, wrench_wall(_PLATE_BOLT)) > flat:
         raise impossible(
             f"{field_of(course)}.section", "the end plate of a sag bar over the ridge finds no room on the web",

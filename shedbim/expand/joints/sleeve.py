@@ -19,6 +19,7 @@ from shedbim.geometry.placements import cross
 from shedbim.model.bars import Bar
 from shedbim.model.roles import Role
 from shedbim.sections import catalogue
+from shedbim.sections.profiles import LippedC
 from shedbim.sections.section import Section
 
 __all__ = ["Sleeve", "sleeve_over", "sleeve_section"]
@@ -57,7 +58,8 @@ def sleeve_section(section: Section) -> Section:
     """
     profile = folded(section)
     depth = _STEP * floor((profile.h - 2 * profile.t - 2 * _PLAY) / _STEP)
-    flange = _STEP * floor((profile.b - 2 * profile.t - profile.ri - _PLAY) / _STEP)
+    narrow = profile.b if isinstance(profile, LippedC) else profile.narrow
+    flange = _STEP * floor((narrow - 2 * profile.t - profile.ri - _PLAY) / _STEP)
     return catalogue.section(f"U {depth:g}x{flange:g}x{profile.t:g}")
 
 

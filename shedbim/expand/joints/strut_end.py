@@ -1,7 +1,8 @@
 """Ends of struts: a fin plate on the web or face of the carrier, and the strut's own fin bolted beside it.
 
-Both fins stand upright and within the height of the strut, so that the gussets of braces pass above and below,
-and to the left and right.
+In the place of that fin may be the end of the tube itself, pressed flat; beside the end of a rafter, where the fins
+do not lie in the middle of the strut, it has a cap and a fin all the same. Fins stand upright and within the height
+of the strut, so that the gussets of braces pass above and below, and to the left and right.
 
 Axes of an end: ``out`` along the strut, away from the carrier, 0 where the strut ended before; ``up``; ``aside``,
 square to both, towards the side that the carrier's fin is on. mm.
@@ -20,6 +21,7 @@ from shedbim.expand.joints.angle_carrier import flat_of_leg, leg_face
 from shedbim.expand.joints.bolt_lines import BoltLine, tube_line
 from shedbim.expand.joints.cap import cap_thickness
 from shedbim.expand.joints.contract import FAR, Bolting, Connection, Fitting, Joint, Layer, Met, Welding
+from shedbim.expand.joints.flattened import flattened
 from shedbim.expand.joints.shaping import plate_at
 from shedbim.expand.joints.tube_ends import Lap, TubeEnd, tube_end
 from shedbim.fasteners.bolts import bolt
@@ -61,23 +63,27 @@ class FinOnCarrier:
         self.out = strut.into
         self.up = strut.z
         self.line = self._line()
+        form, option = options.tube_ends.struts, "connections.tube_ends.struts"
+        self.flat = flattened(strut, self.line, form, option)
         self.side = self._side()
         self.aside = cross(self.up, self.out) * self.side
         self.gap = self._gap()
+        if self.gap != self._usual_gap:
+            self.flat = None
         self.start = self._start()
 
     def connection(self) -> Connection:
         """Everything the end adds, and how far the strut moves back."""
         end = self._tube_end()
         room = self.strut.to_start + self.strut.to_end
-        if room < FAR and room - 2 * end.work.set_back < _LEAST_STRUT:
+        if room < FAR and room - 2 * end.work.taken < _LEAST_STRUT:
             raise impossible(
                 "building.bays", f"no room for a {self.strut.role.word} between its two ends",
                 given=self.strut.section.designation, allowed="a longer bay, or fewer or smaller bolts",
             )  # fmt: skip
         fin, weld = self._carrier_fin()
-        layers = (Layer("carrier fin", self.thickness), Layer("fin", self.thickness))
-        fastener = bolt(self.line.diameter, self.options.bolts.grade, 2 * self.thickness)
+        layers = (Layer("carrier fin", self.thickness), self._layer)
+        fastener = bolt(self.line.diameter, self.options.bolts.grade, self._grip)
         outer = self.gap + self.thickness
         points = np.array([self._point(self.start + x, 0.0, outer) for x in self.line.places])
         bolts = Bolting("bolts", fastener, points, -self.aside, layers)
@@ -86,8 +92,23 @@ class FinOnCarrier:
     @property
     def reach(self) -> float:
         """How far plates, bolts and strut reach from the strut's axis to the sides, mm: a diameter covers a head."""
-        section = self.strut.section
-        return max(max(section.width, section.height) / 2, self.gap + self.thickness + self.line.diameter)
+        section, flat = self.strut.section, 0.0 if self.flat is None else self.flat.half
+        steel = max(section.width / 2, section.height / 2, flat)
+        return max(steel, self.gap + self.thickness + self.line.diameter)
+
+    @property
+    def _layer(self) -> Layer:
+        """What of the strut is bolted: its fin, or the tube itself."""
+        return Layer("fin", self.thickness) if self.flat is None else Layer(1, self.flat.thickness)
+
+    @property
+    def _grip(self) -> float:
+        return self.thickness + self._layer.thickness
+
+    @property
+    def _usual_gap(self) -> float:
+        """From the strut's axis to the face of the carrier's fin where the other lies in the middle of the strut."""
+        return self._layer.thickness / 2
 
     @property
     def _field(self) -> str:
@@ -146,7 +167,7 @@ class FinOnCarrier:
 
     def _gap(self) -> float:
         """From the strut's axis to the face where the fins lie on each other: more beside the end of a rafter."""
-        usual = self.thickness / 2
+        usual = self._usual_gap
         if self._upright:
             return usual
         nearest = min(self._ends(self.aside))
@@ -162,7 +183,7 @@ class FinOnCarrier:
         tips = profile.b / 2 - self._from_axis() + STRUT_END_GAP
         if tips <= _STEP:
             return 0.0
-        fastener = bolt(self.line.diameter, self.options.bolts.grade, 2 * self.thickness)
+        fastener = bolt(self.line.diameter, self.options.bolts.grade, self._grip)
         room = profile.h / 2 - profile.tf - self.gap - self.thickness
         if room >= fastener.length + _FINGERS:
             return 0.0
@@ -177,10 +198,11 @@ class FinOnCarrier:
     def _tube_end(self) -> TubeEnd:
         lap = Lap(
             self._point(self.start, 0.0, 0.0), self.out, self.up * self.side, self.line,
-            shift=self.thickness / 2 - self.gap,
+            shift=self._usual_gap - self.gap,
         )  # fmt: skip
         cap = cap_thickness(self.strut.section, self.options.caps)
-        return tube_end(self.strut, 1, lap, self.thickness, self.options.tube_ends.struts, cap)
+        form = self.options.tube_ends.struts
+        return tube_end(self.strut, 1, lap, self.thickness, form, cap, flat=self.flat)
 
     def _face(self) -> float:
         """``out`` of the carrier's web or face."""
@@ -241,7 +263,11 @@ class FinOnCarrier:
         inner = max(face, self.start - STRUT_END_GAP / 2)
         wanted = [(face, bottom), (face, top), (inner, bottom), (inner, top)]
         wanted += [(self.start, -half), (self.start, half), (end, -half), (end, half)]
-        (corners,) = CrossSection.hull_points(wanted).simplify(1e-3).to_polygons()
+        # Straight lines to the lap would run through a flange that ends the flat.
+        beside = [((face - 1.0, -FAR), (inner, bottom)), ((face - 1.0, top), (inner, FAR))]
+        flanges = [CrossSection([np.array([(a, c), (b, c), (b, d), (a, d)])]) for (a, c), (b, d) in beside]
+        outline = CrossSection.hull_points(wanted) - flanges[0] - flanges[1]
+        (corners,) = outline.simplify(1e-3).to_polygons()
         # The plate's own z axis, out x up, is against ``aside`` on one side and along it on the other.
         foot = self.gap + (self.thickness if self.side > 0 else 0.0)
         plate, frame = plate_at(self._point(0.0, 0.0, foot), self.out, self.up, corners, self.thickness)

@@ -1,12 +1,9 @@
-"""The ways a tube ends in a fin plate that is bolted beside another plate.
+"""The ways a tube ends to be bolted beside a plate.
 
-    capped    a cap plate closes the tube, a fin is welded to the middle of the cap
-    slotted   the fin sits in a slot of the tube's end, welded along all four edges of the slot
-
-A flattened end, the tube pressed flat and drilled, is not among them: its section changes along its length,
-from round to a flat of two walls, and a bar here has one section throughout. It would need a shape of its own:
-a bar, a transition (the hull of a ring and a rounded slab) and a flat with holes as one part, with volume,
-surface, box, symmetries, solid, and its body in the model file.
+Forms:
+    capped     a cap plate closes the tube, a fin is welded to the middle of the cap
+    slotted    the fin sits in a slot of the tube's end, welded along all four edges of the slot
+    flattened  the tube itself is pressed flat and drilled (see ``flattened``)
 """
 
 from __future__ import annotations
@@ -19,6 +16,7 @@ from numpy.typing import NDArray
 
 from shedbim.expand.joints.bolt_lines import BoltLine
 from shedbim.expand.joints.contract import Fitting, Met, Welding, Work
+from shedbim.expand.joints.flattened import Flat
 from shedbim.expand.joints.shaping import frame_of, plate_at
 from shedbim.fasteners.welds import throat_for
 from shedbim.geometry.placements import cross
@@ -74,7 +72,10 @@ class Lap:
 
 @dataclass(frozen=True, eq=False)
 class TubeEnd:
-    """An end of a tube: its plates and welds, and what is done to the tube. The fin is named ``fin``."""
+    """An end of a tube: its plates and welds, and what is done to the tube. The fin is named ``fin``.
+
+    An end that is pressed flat has neither.
+    """
 
     fittings: tuple[Fitting, ...]
     welds: tuple[Welding, ...]
@@ -82,17 +83,29 @@ class TubeEnd:
 
 
 def tube_end(
-    tube: Met, number: int, lap: Lap, thickness: float, form: str, cap: float, suffix: str = ""
+    tube: Met,
+    number: int,
+    lap: Lap,
+    thickness: float,
+    form: str,
+    cap: float,
+    suffix: str = "",
+    flat: Flat | None = None,
 ) -> TubeEnd:
     """Give the end of a tube that is member ``number`` of its joint.
 
     Args:
         thickness: of the fin, mm.
         form: ``capped`` or ``slotted``; a fin beside the middle of its tube stands on a cap in any case.
+            ``flattened`` counts as ``slotted`` where the joint gives no flat: in the crossing of two tubes.
         cap: thickness of the cap plate, mm.
         suffix: of the names of its plates, where a joint has several ends.
+        flat: what the end is pressed to, where it is.
     """
-    make = _slotted if form == "slotted" and lap.shift == 0.0 else _capped
+    if flat is not None:
+        work = Work(number, _set_back(tube, lap, 0.0), pressed=flat.pressed(tube, lap.normal))
+        return TubeEnd((), (), work)
+    make = _capped if form == "capped" or lap.shift != 0.0 else _slotted
     return make(tube, number, lap, thickness, cap, suffix)
 
 

@@ -20,7 +20,7 @@ _FROM_END = 10.0
 def vent_holes(joint: Joint, connection: Connection) -> dict[int, tuple[Hole, ...]]:
     """Give for each member, by its number, the holes that let the zinc in and out, in its frame.
 
-    An end is closed by a fillet weld on it, unless a notch opens it again.
+    An end is closed by a fillet weld on it, unless a notch opens it again, or by being pressed flat.
 
     Raises:
         DescriptionError: when no holes fit the member.
@@ -33,10 +33,12 @@ def vent_holes(joint: Joint, connection: Connection) -> dict[int, tuple[Hole, ..
         if isinstance(ref, int) and _may_be_closed(joint.members[ref])
     }
     closed -= {work.of for work in connection.works if work.notches}
+    pressed = {work.of for work in connection.works if work.pressed is not None}
+    closed |= {number for number in pressed if _may_be_closed(joint.members[number])}
     back = dict.fromkeys(closed, 0.0)
     for work in connection.works:
         if work.of in closed:
-            back[work.of] += work.set_back
+            back[work.of] += work.taken
     return {number: _holes(joint.members[number], back[number]) for number in sorted(closed)}
 
 

@@ -5,7 +5,7 @@ half space; a pointed end is two of them; a notched end, of which what lies insi
 loses the wedge outside both: a prism. Holes and notches are taken away one after another: the library meshes
 such a chain at once, and 40 holes of it fifteen times as fast as their union taken away.
 
-Of a tube with ends pressed flat the sweep is what is round of it; each end is a shell of triangles beside it.
+Of a tube with ends pressed flat the sweep is what is round of it; each end is a shell of flat faces beside it.
 """
 
 from __future__ import annotations
@@ -33,7 +33,7 @@ Vector = NDArray[np.float64]
 #: A wedge is this many times as large as the steel it may meet.
 _BEYOND = 1.5
 #: Arcs of pressed ends become chords this far off, mm: of a whole bar that is less than 0.1 % of its volume.
-_CHORD_ERROR = 0.05
+_CHORD_ERROR = 0.1
 
 #: A reference, and the RepresentationType of a representation that holds it.
 Item = tuple[str, str]

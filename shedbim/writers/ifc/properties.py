@@ -99,6 +99,8 @@ def _part_set(step: StepFile, part: Part) -> str:
     values |= {"Grade": word(part.grade), "Finish": word(part.finish)}
     if not isinstance(shape, BoltGroup) and shape.holes:
         values["Holes"] = count(len(shape.holes))
+    if isinstance(shape, Bar) and shape.pressed != (None, None):
+        values["PressedEnds"] = count(sum(end is not None for end in shape.pressed))
     return property_set(step, "Shedbim_Part", part.mark, values)
 
 
