@@ -491,6 +491,9 @@ def test_sections_shows_one_section_whole(shell):
     out = shell.ok("sections", "z200x75x20x2.5")
     assert out.startswith("Z 200x75x20x2.5 (Z)\n")
     assert "-0.00" not in out
+    unequal = json.loads(shell.ok("sections", "Z 200x75/68x20x2.5", "--json"))["dimensions_mm"]
+    equal = json.loads(shell.ok("sections", "Z 200x75x20x2.5", "--json"))["dimensions_mm"]
+    assert unequal == {**equal, "b2": 68}
     told = json.loads(shell.ok("sections", "IPE", "300", "--json"))
     assert told["designation"] == "IPE 300"
     assert told["dimensions_mm"] == {"h": 300, "b": 150, "tw": 7.1, "tf": 10.7, "r": 15}  # EN 10365

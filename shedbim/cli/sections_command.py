@@ -136,8 +136,9 @@ def _show_family(family: Family, *, as_json: bool) -> None:
 
 
 def _dimensions(found: Section) -> dict[str, float]:
-    """The dimensions of its profile by their symbols, mm."""
-    return asdict(found.profile)  # type: ignore[call-overload, no-any-return]
+    """The dimensions of its profile by their symbols, mm; without those that it leaves to another."""
+    dimensions: dict[str, float | None] = asdict(found.profile)  # type: ignore[call-overload]
+    return {name: value for name, value in dimensions.items() if value is not None}
 
 
 def _section_data(found: Section) -> dict[str, Any]:

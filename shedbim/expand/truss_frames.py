@@ -10,7 +10,7 @@ from shedbim.expand.end_gaps import end_gap
 from shedbim.expand.frame import Frame, columns, frame_kit
 from shedbim.expand.kits import Meeting, Meets
 from shedbim.expand.layout import Layout
-from shedbim.expand.roof_places import brace_places
+from shedbim.expand.roof_places import brace_lengths
 from shedbim.expand.truss_site_joints import Shipping
 from shedbim.expand.trusses import truss, truss_lifts
 from shedbim.model.joints import At, JointKind
@@ -35,7 +35,9 @@ def truss_frame(description: Description, layout: Layout, roof: TrussRoof) -> Fr
         slopes = [layout.slopes[i].slope for i in layout.span_slopes(span)]
         ends = (grid.x[span] + back, grid.x[span + 1] - back)
         busy = [
-            x for i in layout.span_slopes(span) for x in brace_places(description, layout, layout.slopes[i])
+            length
+            for i in layout.span_slopes(span)
+            for length in brace_lengths(description, layout, layout.slopes[i], roof.top_chord)
         ]
         shipping = Shipping(description.connections.splices, busy)
         made = truss(roof, slopes, layout.eaves, name, ends, description.finish.frames, shipping)

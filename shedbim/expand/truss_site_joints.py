@@ -23,7 +23,7 @@ class Shipping:
     """How a truss is divided for the road: the options of its splices, and x of the roof bracing's nodes."""
 
     splices: SpliceOptions
-    busy: Sequence[float] = ()
+    busy: Sequence[tuple[float, float]] = ()
 
 
 def lap_length(

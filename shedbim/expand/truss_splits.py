@@ -2,7 +2,7 @@
 
 A cut goes through one panel of each chord and across one web. That web leaves the shop with the piece that it is
 welded to; at its other end it is bolted. Each chord is cut about a third of its panel away from the node that this
-web stands at (common practice), clear of the webs, of the ridge and, where it can be, of the roof bracing's nodes.
+web stands at (common practice), clear of the webs and of the ridge, the top chord of roof braces too.
 """
 
 from __future__ import annotations
@@ -20,8 +20,6 @@ __all__ = ["Cut", "Outline", "cuts"]
 _SHARES = (1 / 3, 0.4, 0.28, 0.46, 0.23, 0.52, 0.6)
 #: From the middle of a splice to the toe of a web, and to the ridge: plates, bolts and a wrench, mm.
 _FROM_TOES, _FROM_RIDGE = 160.0, 260.0
-#: From the middle of a splice to a node of the roof bracing: its gussets, mm.
-_FROM_BRACING = 500.0
 #: Pieces more than this many times as many as would do help nothing.
 _MOST = 3
 
@@ -38,7 +36,7 @@ class Outline:
         ends: x of the sawn ends.
         stretch: length of a chord over its plan length.
         ridge: its x, if there is one.
-        busy: x of the roof bracing's nodes.
+        busy: (low, high) x of the lengths of the top chord beside which roof braces and their gussets lie.
     """
 
     webs: Sequence[tuple[int, int]]
@@ -48,7 +46,7 @@ class Outline:
     ends: tuple[float, float]
     stretch: float
     ridge: float | None
-    busy: Sequence[float]
+    busy: Sequence[tuple[float, float]]
 
 
 @dataclass(frozen=True)
@@ -141,5 +139,6 @@ def _place(outline: Outline, chord: int, node: float, other: float) -> float | N
         if all(x < low - _FROM_TOES or x > high + _FROM_TOES for low, high in outline.toes[chord])
         and (outline.ridge is None or abs(x - outline.ridge) > _FROM_RIDGE)
     ]
-    quiet = [x for x in clear if all(abs(x - busy) > _FROM_BRACING for busy in outline.busy)]
-    return next(iter(quiet or clear), None)
+    if chord == TOP:
+        clear = [x for x in clear if not any(low < x < high for low, high in outline.busy)]
+    return next(iter(clear), None)
