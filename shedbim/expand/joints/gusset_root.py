@@ -26,8 +26,8 @@ _STEP = 10.0
 _AIR = 10.0
 #: Heads of an end plate's bolts stand out of the inside of a column's flange: up to M30, with a little air.
 _HEADS = 20.0
-#: Least width of a neck, mm; one that would be narrower beside the heads runs up to the flange.
-_LEAST_NECK = 40.0
+#: Least width of a neck, mm, and of one beside the heads of an end plate's bolts (values from memory).
+_LEAST_NECK, _LEAST_BESIDE = 40.0, 25.0
 #: Beside the root fillet, and a rounded corner.
 _FILLET_ROOM = 3.0
 _FAR_OUT = 5000.0
@@ -89,16 +89,15 @@ def column_head(
             break
     else:
         return None
-    flush, snip = False, 0.0
+    snip = 0.0
     if isinstance(profile, IShape):
-        flush = high - _HEADS - low < _LEAST_NECK
-        high -= 0.0 if flush else _HEADS
-        snip = max(profile.r + _FILLET_ROOM - (0.0 if flush else _HEADS), 0.0)
+        high -= _HEADS
+        if high - low < _LEAST_BESIDE:
+            return None
+        snip = max(profile.r + _FILLET_ROOM - _HEADS, 0.0)
     corners = [(low, face), (high - snip, face), (high, face + snip), (high, out), (low, out)]
     area = CrossSection([np.array(corners)])
     length = high - snip - low
-    if flush:
-        length += max(out - _AIR - face - snip, 0.0)
     end = _box(low, out - 1.0, high, out)
     core = end if isinstance(profile, Pipe) else area
     return Root(area, core, end, length)
