@@ -20,10 +20,16 @@ pytestmark = pytest.mark.filterwarnings(
 )
 
 BIG = "distribution-hall"
+#: Every preset in the schema of the default; in the others one with rafters, one with tubes, one with angles.
+FILES = [
+    (name, schema)
+    for name in cast.PRESETS
+    for schema in SCHEMAS
+    if name != BIG and (schema == SCHEMAS[0] or name in {"joinery-workshop", "seed-store", "goods-shed"})
+]
 
 
-@pytest.mark.parametrize("schema", SCHEMAS)
-@pytest.mark.parametrize("name", [n for n in cast.PRESETS if n != BIG])
+@pytest.mark.parametrize(("name", "schema"), FILES)
 def test_presets_satisfy_the_schemas_and_their_rules(name, schema):
     file = built_models.opened(name, schema)
     assert file.schema_identifier == schema

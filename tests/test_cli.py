@@ -54,7 +54,7 @@ building:
   eaves: 5 m
   roof: {form: gable, pitch: 8 deg, pitch_right: 11 deg}
 frames:
-  columns: {section: HEB 240}
+  columns: {section: HEB 260}
   roof: {system: rafter, section: IPE 330}
   gables: {system: rafter, rafter: IPE 240, posts: IPE 200}
 purlins: {section: Z 200x75x20x2.5, spacing: 1.7 m}

@@ -114,7 +114,7 @@ def test_every_web_pattern_and_no_other_can_be_named() -> None:
 
 def test_defaults_taken_are_what_the_user_left_open() -> None:
     taken = dict(defaults_taken(warren_gable()))
-    assert taken["purlins.eaves_offset"] == "150 mm"
+    assert taken["purlins.eaves_offset"] == "150 mm, or over the head of a tubular column"
     assert taken["bracing.struts.section"] == "CHS 88.9x4"
     assert taken["building.roof.pitch_right"] == "as pitch"
     assert taken["finish.secondary"] == "galvanized"
