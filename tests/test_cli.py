@@ -378,7 +378,7 @@ def refused(shell: Shell, code: int, *arguments: str) -> str:
 
 
 def test_a_refused_description_names_every_fault_with_its_place_and_writes_nothing(shell):
-    text = BARN.replace("HEB 240", "HEB 24O").replace("spacing: 1.7 m", "spaceing: 1.7 m")
+    text = BARN.replace("HEB 260", "HEB 26O").replace("spacing: 1.7 m", "spaceing: 1.7 m")
     (shell.folder / "barn.yaml").write_text(text, encoding="utf-8")
     err = refused(shell, 2, "build", "barn.yaml")
     assert "barn.yaml:10:22: frames.columns.section" in err

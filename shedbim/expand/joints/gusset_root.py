@@ -24,8 +24,9 @@ _STRIP_HEIGHT = 25.0
 _STEP = 10.0
 #: Air between a gusset and what it passes, mm (common practice).
 _AIR = 10.0
-#: Heads of an end plate's bolts stand out of the inside of a column's flange: up to M30, with a little air.
-_HEADS = 20.0
+#: Heads of an end plate's bolts, each with a washer, stand out of the inside of a column's flange by so much, mm:
+#: those of M20; larger ones come that much nearer, well under the steel that may be shared.
+_HEADS = 16.0
 #: Least width of a neck, mm, and of one beside the heads of an end plate's bolts (values from memory).
 _LEAST_NECK, _LEAST_BESIDE = 40.0, 25.0
 #: Beside the root fillet, and a rounded corner.
@@ -82,19 +83,17 @@ def column_head(
     up = float((plane.origin - column.origin) @ plane.n) / float(column.x @ plane.n)
     axis = float((column.origin + column.x * up - plane.origin) @ plane.u)
     high = (edge - 5.0 * tilt[1]) / tilt[0] + axis
+    least, snip = _LEAST_NECK, 0.0
+    if isinstance(profile, IShape):
+        high -= _HEADS
+        least, snip = _LEAST_BESIDE, max(profile.r + _FILLET_ROOM - _HEADS, 0.0)
     beyond = taken ^ _box(-_FAR_OUT, 0.0, high, _FAR_OUT)
     for lane in (beyond, beyond ^ _box(-_FAR_OUT, 0.0, high, out)):
         low = max(lane.bounds()[2], 0.0) if not lane.is_empty() else 0.0
-        if high - low >= _LEAST_NECK:
+        if high - low >= least:
             break
     else:
         return None
-    snip = 0.0
-    if isinstance(profile, IShape):
-        high -= _HEADS
-        if high - low < _LEAST_BESIDE:
-            return None
-        snip = max(profile.r + _FILLET_ROOM - _HEADS, 0.0)
     corners = [(low, face), (high - snip, face), (high, face + snip), (high, out), (low, out)]
     area = CrossSection([np.array(corners)])
     length = high - snip - low
