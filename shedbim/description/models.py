@@ -166,7 +166,7 @@ class Finish(Options):
         """Each finish that steel of this building may have, and what it stands for."""
         return (
             ("painted", self.paint),
-            ("galvanized", self.zinc),
+            ("galvanized", f"{self.zinc}; cold-formed strip as its grade says"),
             ("primed", "shop primer only"),
             ("plated", "zinc plated fasteners"),
             ("none", "bare steel, or weathering steel where the grade says so"),

@@ -11,7 +11,8 @@ from shedbim.fields import (
     Options,
     Quantity,
     SectionOf,
-    WholeOr,
+    Whole,
+    WordOr,
     default,
     left_out,
     required,
@@ -27,12 +28,12 @@ _SPACING = Quantity(units.LENGTH, "300 mm", "4 m")
 _OFFSET = Quantity(units.LENGTH, "0 mm", "2 m")
 _GAP = Quantity(units.LENGTH, "1 mm", "50 mm")
 _LIFT = Quantity(units.LENGTH, "2 mm", "100 mm")
-_ROWS = WholeOr("by span", 0, 5)
+_ROWS = WordOr("by span", Whole(0, 5))
 _BAR = SectionOf(Round)
 
 
 class Purlins(Options):
-    """Cold-formed sections on the roof, butted over the frames."""
+    """Cold-formed sections on the roof; how they meet over the frames is chosen under connections.cleats."""
 
     section: Annotated[Section, _SECONDARY] = required("section of the purlins")
     grade: Annotated[str, COLD_FORMED] = default("S350GD", "steel grade of the purlins")

@@ -21,7 +21,7 @@ def notes(description: Description) -> tuple[str, ...]:
         "that the roof can deflect.",
         "Bolts are counted as modelled; the list to order adds a surplus of 5 %.",
     ]
-    if "galvanized" in (description.finish.frames, description.finish.secondary):
+    if description.finish.frames == "galvanized":
         found.append(
             "Holes for zinc and air follow galvanizers' published guidance: agree them with the galvanizer."
         )

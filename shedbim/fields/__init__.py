@@ -8,10 +8,9 @@ from shedbim.fields.scalars import (
     Choice,
     Grade,
     Quantity,
-    QuantityOr,
     Text,
     Whole,
-    WholeOr,
+    WordOr,
 )
 from shedbim.fields.sections import SHAPES, SectionOf
 from shedbim.fields.unions import OneOf, table
@@ -29,12 +28,11 @@ __all__ = [
     "OneOf",
     "Options",
     "Quantity",
-    "QuantityOr",
     "Repeats",
     "SectionOf",
     "Text",
     "Whole",
-    "WholeOr",
+    "WordOr",
     "default",
     "left_out",
     "nearest",

@@ -9,7 +9,7 @@ from typing import Any
 from shedbim import units
 from shedbim.fields.kind import FieldError, Kind, as_text, nearest
 
-__all__ = ["COLD_FORMED", "ROLLED", "Choice", "Grade", "Quantity", "QuantityOr", "Text", "Whole", "WholeOr"]
+__all__ = ["COLD_FORMED", "ROLLED", "Choice", "Grade", "Quantity", "Text", "Whole", "WordOr"]
 
 #: Room for rounding when a value is compared with a bound that was written in another unit.
 _BOUND_ROOM = 1e-9
@@ -112,56 +112,29 @@ class Whole(Kind):
 
 
 @dataclass(frozen=True)
-class WholeOr(Kind):
-    """A whole number between two bounds, or a word that stands for a rule."""
+class WordOr(Kind):
+    """A word that stands for a rule or for none, or a value of another kind."""
 
     word: str
-    low: int
-    high: int
+    other: Kind
 
     @property
     def allowed(self) -> str:
-        """The word and the bounds."""
-        return f"{self.word!r} or {Whole(self.low, self.high).allowed}"
+        """The word, and what else is allowed."""
+        return f"{self.word!r} or {self.other.allowed}"
 
-    def read(self, value: object) -> int | str:
-        """The number or the word."""
+    def read(self, value: object) -> object:
+        """The word, or the value as the other kind reads it."""
         if as_text(value, self.allowed) == self.word:
             return self.word
         try:
-            return Whole(self.low, self.high).read(value)
+            return self.other.read(value)
         except FieldError as error:
             raise FieldError(error.message, self.allowed, nearest(str(value), [self.word])) from None
 
     def schema(self) -> dict[str, Any]:
-        """The word, or an integer with bounds."""
-        return {"anyOf": [{"const": self.word}, Whole(self.low, self.high).schema()]}
-
-
-@dataclass(frozen=True)
-class QuantityOr(Kind):
-    """A quantity between two bounds, or a word."""
-
-    word: str
-    quantity: Quantity
-
-    @property
-    def allowed(self) -> str:
-        """The word and the bounds."""
-        return f"{self.word!r} or {self.quantity.allowed}"
-
-    def read(self, value: object) -> float | str:
-        """The quantity in the unit used inside, or the word."""
-        if as_text(value, self.allowed) == self.word:
-            return self.word
-        try:
-            return self.quantity.read(value)
-        except FieldError as error:
-            raise FieldError(error.message, self.allowed, nearest(str(value), [self.word])) from None
-
-    def schema(self) -> dict[str, Any]:
-        """The word, or a string with the pattern of number and unit."""
-        return {"anyOf": [{"const": self.word}, self.quantity.schema()]}
+        """The word, or what the other kind takes."""
+        return {"anyOf": [{"const": self.word}, self.other.schema()]}
 
 
 class Choice(Kind):

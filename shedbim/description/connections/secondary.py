@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Annotated, Literal, get_args
 
 from shedbim import units
-from shedbim.fields import ROLLED, Choice, Options, Quantity, SectionOf, WholeOr, default
+from shedbim.fields import ROLLED, Choice, Options, Quantity, SectionOf, Whole, WordOr, default
 from shedbim.sections.profiles import Angle
 from shedbim.sections.section import Section
 
@@ -49,7 +49,7 @@ class SagBarOptions(Options):
 class StayOptions(Options):
     """The stays between the lower flanges of rafters and the purlins."""
 
-    every: Annotated[int | Literal["by rule"], WholeOr("by rule", 0, 20)] = default(
+    every: Annotated[int | Literal["by rule"], WordOr("by rule", Whole(0, 20))] = default(
         "by rule",
         "a stay at every so many purlins, 0: none; by rule: every second one over rafters of inner frames",
     )

@@ -6,7 +6,7 @@ from typing import Annotated, Literal
 
 from shedbim import units
 from shedbim.description.roof_systems.trussed import TrussedRoof
-from shedbim.fields import Quantity, QuantityOr, SectionOf, default, left_out, required
+from shedbim.fields import Quantity, SectionOf, WordOr, default, left_out, required
 from shedbim.sections.profiles import Hollow, Pipe
 from shedbim.sections.section import Section
 
@@ -15,7 +15,7 @@ __all__ = ["TrussRoof"]
 _CHORD = SectionOf(Hollow, why="webs are welded to a flat chord face")
 _WEB = SectionOf(Hollow, Pipe)
 #: The default: a rigid load of 18.65 m is the longest on British roads without notice (published guidance).
-_LONGEST = QuantityOr("none", Quantity(units.LENGTH, "6 m", "60 m"))
+_LONGEST = WordOr("none", Quantity(units.LENGTH, "6 m", "60 m"))
 
 
 class TrussRoof(TrussedRoof):

@@ -14,7 +14,7 @@ from shedbim.fasteners.bolts import bolt
 from shedbim.fasteners.distances import edge, least_edge, pitch, wrench_pitch, wrench_wall
 from shedbim.fasteners.holes import hole_diameter
 
-__all__ = ["Room", "Zone", "rows", "sizes", "spread"]
+__all__ = ["PlateLayout", "Room", "Zone", "rows", "sizes", "spread"]
 
 _SERIES = (36.0, 30.0, 27.0, 24.0, 20.0, 16.0, 12.0)
 #: Greatest distance of rows (EN 1993-1-8 Table 3.3: the lesser of 14 t and 200 mm, for plates of 15 mm up).
@@ -96,6 +96,18 @@ def spread(room: Room, least: float, steel: float, wanted: float, most: float) -
         if far >= least:
             return min(max(least, floor(wanted / STEP) * STEP), far)
     return None
+
+
+@dataclass(frozen=True, eq=False)
+class PlateLayout:
+    """An end plate and its bolts: half its width, its lowest and highest level, bolts aside and rows, mm."""
+
+    room: Room
+    half: float
+    low: float
+    high: float
+    aside: float
+    rows: list[float]
 
 
 @dataclass(frozen=True)

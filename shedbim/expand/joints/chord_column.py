@@ -7,13 +7,11 @@ above and below at a bottom chord. No resistance is computed.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 from shedbim.description.connections import Connections
 from shedbim.description.connections.end_plates import ChordOptions
 from shedbim.errors import DescriptionError
 from shedbim.expand.impossible import impossible
-from shedbim.expand.joints.bolt_room import Room, Zone, rows, sizes, spread
+from shedbim.expand.joints.bolt_room import PlateLayout, Room, Zone, rows, sizes, spread
 from shedbim.expand.joints.column_side import Side, bolted, bracket, column_side, gap_left
 from shedbim.expand.joints.contract import Connection, Fitting, Joint, Met, Welding
 from shedbim.expand.joints.standing import Line, line_of
@@ -30,18 +28,6 @@ _EXTENSION = 15.0
 #: practice, values from memory).
 _CUSTOM, _SEAT, _SEAT_OUT = 20.0, 15.0, 40.0
 _WEBS = (Role.DIAGONAL, Role.POST)
-
-
-@dataclass(frozen=True, eq=False)
-class _Layout:
-    """Where the plate and its bolts are: half its width, its lowest and highest level, bolts aside and rows."""
-
-    room: Room
-    half: float
-    low: float
-    high: float
-    aside: float
-    rows: list[float]
 
 
 def chord_column(joint: Joint, options: Connections) -> Connection:
@@ -73,7 +59,7 @@ def chord_column(joint: Joint, options: Connections) -> Connection:
     return Connection(tuple(fittings), (bolts,), tuple(welds), () if work is None else (work,))
 
 
-def _seat(side: Side, own: ChordOptions, layout: _Layout) -> tuple[list[Fitting], list[Welding]]:
+def _seat(side: Side, own: ChordOptions, layout: PlateLayout) -> tuple[list[Fitting], list[Welding]]:
     """A plate on the column's face that the end plate is set down on."""
     far = side.face + own.thickness + _SEAT_OUT
     half = min(layout.half, side.half_width)
@@ -83,7 +69,7 @@ def _seat(side: Side, own: ChordOptions, layout: _Layout) -> tuple[list[Fitting]
     return [seat], [Welding((0, "seat"), throat, 4 * half)]
 
 
-def _layout(own: ChordOptions, joint: Joint, line: Line, side: Side) -> _Layout:
+def _layout(own: ChordOptions, joint: Joint, line: Line, side: Side) -> PlateLayout:
     """Plate and bolts: the largest of the allowed bolts that fits beside the chord, else one above and below it."""
     chord = joint.members[1]
     for diameter in sizes(own.bolt, _CUSTOM):
@@ -102,7 +88,7 @@ def _highest(line: Line, start: float, near: float) -> float:
     return min(line.top(near), line.top(start))
 
 
-def _beside(room: Room, own: ChordOptions, chord: Met, line: Line, side: Side) -> _Layout | None:
+def _beside(room: Room, own: ChordOptions, chord: Met, line: Line, side: Side) -> PlateLayout | None:
     """Two rows beside the chord."""
     start = side.face + own.thickness
     half_chord = chord.section.width / 2
@@ -119,10 +105,12 @@ def _beside(room: Room, own: ChordOptions, chord: Met, line: Line, side: Side) -
     if len(levels) < 2:
         return None
     half = min(rounded_up(2 * (aside + room.edge)) / 2, side.half_width)
-    return _Layout(room, half, low, high, aside, levels)
+    return PlateLayout(room, half, low, high, aside, levels)
 
 
-def _above_and_below(room: Room, own: ChordOptions, joint: Joint, line: Line, side: Side) -> _Layout | None:
+def _above_and_below(
+    room: Room, own: ChordOptions, joint: Joint, line: Line, side: Side
+) -> PlateLayout | None:
     """A row above and a row below a bottom chord, two rows below a top chord; beside the webs."""
     chord = joint.members[1]
     start = side.face + own.thickness
@@ -145,7 +133,7 @@ def _above_and_below(room: Room, own: ChordOptions, joint: Joint, line: Line, si
     if side.is_flange and levels[0] > side.head() - room.edge - _EXTENSION:
         return None
     half = min(rounded_up(2 * max(aside + room.edge, chord.section.width / 2)) / 2, side.half_width)
-    return _Layout(room, half, low, high, aside, levels)
+    return PlateLayout(room, half, low, high, aside, levels)
 
 
 def _on_steel(zone: Zone, room: Room, side: Side) -> Zone:

@@ -8,14 +8,13 @@ flanges and stiffeners. No resistance is computed.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
 from math import floor
 
 from shedbim.description.connections import Connections
 from shedbim.description.connections.end_plates import RafterOptions
 from shedbim.errors import DescriptionError
 from shedbim.expand.impossible import impossible
-from shedbim.expand.joints.bolt_room import Room, Zone, rows, sizes, spread
+from shedbim.expand.joints.bolt_room import PlateLayout, Room, Zone, rows, sizes, spread
 from shedbim.expand.joints.column_side import Side, bolted, bracket, column_side, gap_left
 from shedbim.expand.joints.contract import Connection, Fitting, Joint, Met, Welding
 from shedbim.expand.joints.haunch import Haunch, clear_of_posts, haunch_plates, plan
@@ -38,18 +37,6 @@ _STEP = 50.0
 _FARTHEST = 1400.0
 #: Share of a flange's width that bolts are apart by custom (usual gauges of IPE and HE; common practice).
 GAUGE = 0.55
-
-
-@dataclass(frozen=True, eq=False)
-class _Layout:
-    """Where the plate and its bolts are: half its width, its lowest and highest level, bolts aside and rows."""
-
-    room: Room
-    half: float
-    low: float
-    high: float
-    aside: float
-    rows: list[float]
 
 
 def rafter_column(joint: Joint, options: Connections) -> Connection:
@@ -141,7 +128,7 @@ def _layout(
     start: float,
     haunch: Haunch | None,
     stiff: Zone | None,
-) -> _Layout:
+) -> PlateLayout:
     """Plate and bolts, with the largest of the allowed bolts that fits."""
     high = min(line.top(side.back), line.top(start))
     lowest = line.bottom(start) if haunch is None else min(line.bottom(start), haunch.lowest)
@@ -164,7 +151,7 @@ def _layout(
         ]
         levels = rows(zones, room)
         if len(levels) >= 2:
-            return _Layout(room, half, low, high, aside, levels)
+            return PlateLayout(room, half, low, high, aside, levels)
     raise _no_place(own, rafter, side)
 
 

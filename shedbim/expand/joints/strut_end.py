@@ -78,7 +78,7 @@ class FinOnCarrier:
         room = self.strut.to_start + self.strut.to_end
         if room < FAR and room - 2 * end.work.taken < _LEAST_STRUT:
             raise impossible(
-                "building.bays", f"no room for a {self.strut.role.word} between its two ends",
+                "building.bays", f"no room for the {self.strut.role.word} between its two ends",
                 given=self.strut.section.designation, allowed="a longer bay, or fewer or smaller bolts",
             )  # fmt: skip
         fin, weld = self._carrier_fin()
@@ -126,7 +126,7 @@ class FinOnCarrier:
         line = tube_line(self.strut.section, int(chosen.bolts), chosen.size)
         if line is None:
             raise impossible(
-                f"{self._field}.section", f"the end of a {self.strut.role.word} is too small for bolts",
+                f"{self._field}.section", f"the end of the {self.strut.role.word} is too small for bolts",
                 given=f"{self.strut.section.designation}, {chosen.size or 'M12'}", allowed="a larger tube",
             )  # fmt: skip
         return line
@@ -255,7 +255,7 @@ class FinOnCarrier:
         if top - bottom < least - 1e-6 or bottom > half or top < -half:
             raise impossible(
                 f"{self._field}.section",
-                f"the fin of a {self.strut.role.word} finds too little of {self.carrier.section.designation}",
+                f"the fin of the {self.strut.role.word} finds too little of {self.carrier.section.designation}",
                 given=self.strut.section.designation, allowed="smaller struts, or deeper steel to carry them",
             )  # fmt: skip
         end = self.start + self.line.lap
