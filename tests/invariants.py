@@ -33,6 +33,7 @@ __all__ = [
     "RULES",
     "Bars",
     "bars_end_in_joints",
+    "bars_of",
     "bodies",
     "broken",
     "carriers_are_near",
@@ -81,6 +82,8 @@ class Bars:
         self.high = np.column_stack([length, bounds[:, 2], bounds[:, 3]])
         self.height, self.width = sizes[:, 7], sizes[:, 8]
         self.role = [shed.parts[i].role for i in part.tolist()]
+        #: Of the widest bar, mm.
+        self.widest = float(np.nanmax(self.width))
         #: Greatest height of what purlins stand on, besides columns, mm.
         self.roof_steel = max(
             h for h, r in zip(self.height.tolist(), self.role, strict=True) if r in _ROOF_STEEL
@@ -93,6 +96,12 @@ class Bars:
         local = np.einsum("mji,mj->mi", placement[:, :, :3], points - placement[:, :, 3])
         beyond = np.maximum(np.maximum(self.low[pieces] - local, local - self.high[pieces]), 0.0)
         return np.linalg.norm(beyond, axis=1)
+
+
+@lru_cache(maxsize=2)
+def bars_of(shed: Shed) -> Bars:
+    """Give the pieces of a shed as columns."""
+    return Bars(shed)
 
 
 @lru_cache(maxsize=2)
@@ -160,7 +169,7 @@ def bars_end_in_joints(shed: Shed, _: Description) -> Iterator[str]:
 
 def joints_are_at_ends(shed: Shed, description: Description) -> Iterator[str]:
     """The work point of a joint at an end of a piece lies near that end of it."""
-    bars = Bars(shed)
+    bars = bars_of(shed)
     for run in shed.joints:
         reach = _end_reach(shed, run, bars, description)
         for column in range(run.pieces.shape[1]):
@@ -198,7 +207,7 @@ def _end_reach(shed: Shed, run: JointRun, bars: Bars, description: Description) 
         JointKind.COLUMN_CAP: _thickness(shed, run, Role.CAP_PLATE) / np.cos(_steepest(description)),
         # A post stands off the frame's plane by half the frame at most; a tube has a cap.
         JointKind.POST_HEAD: _thickness(shed, run, Role.CAP_PLATE)
-        + max(columns.width, columns.height, float(np.nanmax(bars.width))) / 2,
+        + max(columns.width, columns.height, bars.widest) / 2,
         # Half the gap; at a gable a purlin runs on past the frame, at a corner a rail to the column's edge.
         JointKind.PURLIN_CLEAT: float(np.hypot(purlins.gap / 2, _off_line(description))),
         JointKind.RAIL_CLEAT: max(rails.gap, columns.width, columns.height) / 2,
@@ -207,11 +216,9 @@ def _end_reach(shed: Shed, run: JointRun, bars: Bars, description: Description) 
     }
     if run.kind in plain:
         return np.full(len(run.points), plain[run.kind])
+    if run.kind in _ANGLE_KINDS:
+        return _angle_reach(run, bars, description)
     last = run.pieces[:, -1]
-    if run.kind in (JointKind.ANGLE_NODE, JointKind.ANGLE_COLUMN):
-        # Past the chord's leg and that of a neighbour, along the flattest web; at a column beside its bolts.
-        bolts = 60.0 if run.kind is JointKind.ANGLE_COLUMN else 0.0
-        return 4.0 * bars.height[run.pieces[:, 1:]].max(axis=1) + bolts
     if run.kind is JointKind.RAFTER_COLUMN:  # half the column and what is between, along the slope
         return (columns.height / 2 + _end_gap(description)) / np.abs(bars.x[last, 0])
     if run.kind is JointKind.APEX:
@@ -221,6 +228,24 @@ def _end_reach(shed: Shed, run: JointRun, bars: Bars, description: Description) 
     if run.kind in (JointKind.NODE, JointKind.WEB_SPLICE):
         return _web_reach(run, bars)
     return _brace_reach(run, bars, description)
+
+
+_ANGLE_KINDS = (
+    JointKind.ANGLE_NODE,
+    JointKind.ANGLE_SITE_NODE,
+    JointKind.ANGLE_COLUMN,
+    JointKind.ANGLE_SPLICE,
+)
+
+
+def _angle_reach(run: JointRun, bars: Bars, description: Description) -> np.ndarray:
+    """The same in trusses of angles."""
+    if run.kind is JointKind.ANGLE_SPLICE:
+        # Half the gap between the ends (3 to 10 mm), beside a plate as thick as the gussets.
+        return np.hypot(5.0, description.frames.roof.gusset / 2 + bars.width[run.pieces[:, -1]] / 2)
+    # Past the chord's leg and that of a neighbour, along the flattest web; at a column beside its bolts.
+    bolts = 60.0 if run.kind is JointKind.ANGLE_COLUMN else 0.0
+    return 4.0 * bars.height[run.pieces[:, 1:]].max(axis=1) + bolts
 
 
 def _web_reach(run: JointRun, bars: Bars) -> np.ndarray:
@@ -289,7 +314,7 @@ def _brace_reach(run: JointRun, bars: Bars, description: Description) -> np.ndar
 
 def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
     """What carries a joint, and what else runs through it, is at its work point."""
-    bars = Bars(shed)
+    bars = bars_of(shed)
     purlins, rails, bracing = description.purlins, description.rails, description.bracing
     lapped = description.connections.cleats.continuity == "lapped"
     nest = purlins.section.profile.thickness / 2 if lapped else 0.0
@@ -309,10 +334,11 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
     between = getattr(description.frames.roof, "gusset", 0.0) / 2
     reach = {
         JointKind.ANGLE_NODE: between,
+        JointKind.ANGLE_SITE_NODE: between,
         JointKind.PACKED_PAIR: between,
         JointKind.TIE_END: float(np.hypot(between, 5.0)) if between else 0.0,
         # The first node stands off the end plate by its bolts, 60 mm, and half a post at most.
-        JointKind.ANGLE_COLUMN: _end_gap(description) + 60.0 + float(np.nanmax(bars.width)) / 2,
+        JointKind.ANGLE_COLUMN: _end_gap(description) + 60.0 + bars.widest / 2,
         JointKind.BRACE_GUSSET: ridge,
         JointKind.STRUT_END: ridge,
         # The work point lies on the axis of the purlin or rail, which is lifted off its carrier.
@@ -437,7 +463,7 @@ def _corners(shape: Shape) -> np.ndarray:
 
 def eccentricities_are_true(shed: Shed, _: Description) -> Iterator[str]:
     """The eccentricity of a truss node is how far, measured upright, its webs' axes cross off the chord's."""
-    bars = Bars(shed)
+    bars = bars_of(shed)
     continues: dict[int, int] = {}
     for run in shed.joints:
         if run.kind is JointKind.CHORD_RIDGE:

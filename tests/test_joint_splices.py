@@ -148,7 +148,7 @@ def warren(
         for i, nodes in enumerate((bottom, top))
     )
     return Outline(
-        webs, [True] * len(webs), (bottom, top), toes, (-30.0, panel * panels + 30.0), 1.0, ridge, busy
+        webs, [True] * len(webs), (bottom, top), toes, (-30.0, panel * panels + 30.0), 1.0, ridge, ((), busy)
     )
 
 

@@ -1,51 +1,36 @@
-"""One truss of pairs of angles over one span: system lines are the axes of centroids, and meet at every node.
+"""One truss of pairs of angles over one span: its members, and the joints between them.
 
-Chords have their outstanding legs outside, on top of the top chord and under the bottom chord. Diagonals have their
-heels on the upper side, posts towards the nearer column; the ends of webs are square and stop clear of the chords'
-legs and of each other on the gussets.
+See ``angle_truss_lines`` for where they run, ``angle_truss_cuts`` for where it is divided for the road.
 """
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
-from itertools import pairwise
-from math import ceil
 
 import numpy as np
-from manifold3d import CrossSection
 from numpy.typing import NDArray
 
 from shedbim.description.connections import Connections
 from shedbim.description.roof_systems import AngleTrussRoof
+from shedbim.expand.angle_truss_cuts import Busy, divided
+from shedbim.expand.angle_truss_lines import AngleLines, AngleNode, on_axis
+from shedbim.expand.angle_truss_packs import packs
 from shedbim.expand.impossible import impossible
-from shedbim.expand.joints.angle_column import BEFORE_CHORD, web_room
-from shedbim.expand.joints.angle_gusset import chord_patch, web_patch
-from shedbim.expand.joints.gusset_legs import CLEAR, Leg, Web, starts
-from shedbim.expand.joints.packed_pair import PACK
+from shedbim.expand.joints.angle_splice import END_GAP, cover_splice
 from shedbim.expand.kits import Kit, Meeting, Meets
 from shedbim.expand.pairs import Pair, pair_of, size_of_pair
 from shedbim.expand.sticks import along
-from shedbim.expand.truss_chords import BOTTOM, TOP, ChordBar, chord_bars, to_back, to_webs
-from shedbim.expand.truss_layout import TrussLayout, has_end_posts
+from shedbim.expand.truss_chords import BOTTOM, CHORD_ROLES, TOP, ChordBar, bar_over, chord_bars
 from shedbim.expand.trusses import Truss
-from shedbim.expand.web_ends import ChordFace
 from shedbim.geometry.placements import translation
 from shedbim.model.joints import At, JointKind
-from shedbim.model.roles import Role
 from shedbim.roofs.slope import Slope
-from shedbim.sections.section import Section
 
 __all__ = ["Between", "angle_truss"]
 
 Array = NDArray[np.float64]
-_ROLES = (Role.BOTTOM_CHORD, Role.TOP_CHORD)
 _ACROSS = (1.0, 0.0, 0.0)
-_SAME = 1e-6
-#: From the ridge to the end of each length of chord that the gusset joins there, mm (common practice).
-_RIDGE_GAP = 5.0
-#: Air between a pack and a gusset, mm; packs in a web, at least: at its third points (common practice).
-_BESIDE_PACK, _IN_WEB = 40.0, 2
 
 
 @dataclass(frozen=True)
@@ -56,16 +41,6 @@ class Between:
     columns: tuple[str, str]
 
 
-@dataclass(frozen=True, eq=False)
-class _Node:
-    """A node of a chord: its point in x and z, the webs there, left to right, and the chord bars."""
-
-    point: Array
-    webs: list[int]
-    bars: list[int]
-    end: At | None
-
-
 def angle_truss(
     options: AngleTrussRoof,
     slopes: Sequence[Slope],
@@ -74,55 +49,47 @@ def angle_truss(
     between: Between,
     finish: str,
     connections: Connections,
+    busy: Busy | None = None,
 ) -> Truss:
     """Give the truss under the slopes of one span, with its joints to the columns.
 
-    ``eaves`` is the level of the underside where the slopes' own z is 0, mm.
+    Args:
+        eaves: the level of the underside where the slopes' own z is 0, mm.
+        busy: what splices keep off; None for a truss that is not divided, however long.
 
     Raises:
-        DescriptionError: when webs find no room between the chords.
+        DescriptionError: when webs find no room between the chords, or splices none along them.
     """
-    return _Maker(options, slopes, eaves, span, between, finish, connections).truss()
+    lines = AngleLines(options, slopes, eaves, span, between.faces, connections)
+    return _Maker(lines, between, finish, busy).truss()
 
 
-class _Maker(TrussLayout):
+class _Maker:
     """The steps of one truss; every step reads what the steps before it set."""
 
-    options: AngleTrussRoof
-
-    def __init__(
-        self,
-        options: AngleTrussRoof,
-        slopes: Sequence[Slope],
-        eaves: float,
-        span: str,
-        between: Between,
-        finish: str,
-        connections: Connections,
-    ) -> None:
-        self.between, self.finish, self.connections = between, finish, connections
-        inset = web_room(connections.chords)
-        if has_end_posts(options.pattern):
-            inset += to_back(options.post_section)
-        first, last = between.faces
-        super().__init__(options, slopes, eaves, span, (first + inset, last - inset))
-        self.gap = options.gusset
+    def __init__(self, lines: AngleLines, between: Between, finish: str, busy: Busy | None) -> None:
+        self.lines, self.between, self.finish = lines, between, finish
+        self.options, self.gap = lines.options, lines.options.gusset
+        self.cuts = [] if busy is None else divided(lines, busy)
+        #: (web, chord) of the webs that are bolted there on site.
+        self.on_site = {(cut.web, cut.bolted) for cut in self.cuts}
         self.bars = (self._bars(BOTTOM), self._bars(TOP))
         self.chord_pairs = (self._chord_pairs(BOTTOM), self._chord_pairs(TOP))
-        self.nodes_of = (self._nodes(BOTTOM), self._nodes(TOP))
-        self.begin = self._begin()
         self.web_pairs = self._web_pairs()
 
     def truss(self) -> Truss:
         """All bars, then their joints."""
+        lines = self.lines
         pairs = [*self.chord_pairs[BOTTOM], *self.chord_pairs[TOP], *self.web_pairs]
         members = tuple(member for pair in pairs for member in (pair.near, pair.far))
-        meetings = [self._joint(which, node) for which in (BOTTOM, TOP) for node in self.nodes_of[which]]
-        meetings += self._packs()
-        start = self.line_ends[0]
-        origin = translation([start, 0.0, self.over(BOTTOM, start).axis(start)])
-        kit = Kit(members, tuple(meetings), (f"truss/{self.span}", "truss", "shop"), origin)
-        bottom = tuple(self.x(c) for c in self.topology.bottom)
+        meetings = [self._joint(which, node) for which in (BOTTOM, TOP) for node in lines.nodes_of[which]]
+        meetings += [self._splice(which, cut.x[which]) for cut in self.cuts for which in (BOTTOM, TOP)]
+        plates = (self._plates(BOTTOM), self._plates(TOP))
+        meetings += packs(lines, self.bars, self.chord_pairs, self.web_pairs, self.on_site, plates)
+        start = lines.line_ends[0]
+        origin = translation([start, 0.0, lines.over(BOTTOM, start).axis(start)])
+        kit = Kit(members, tuple(meetings), (f"truss/{lines.span}", "truss", "shop"), origin)
+        bottom = tuple(lines.x(c) for c in lines.topology.bottom)
         named = tuple(
             tuple(replace(bar, name=f"{bar.name}/near", far=f"{bar.name}/far") for bar in bars)
             for bars in self.bars
@@ -131,210 +98,108 @@ class _Maker(TrussLayout):
             kit,
             named[TOP],
             named[BOTTOM],
-            tuple(self.x(c) for c in self.topology.top),
+            tuple(lines.x(c) for c in lines.topology.top),
             bottom,
-            tuple(self.over(BOTTOM, x).axis(x) for x in bottom),
+            tuple(lines.over(BOTTOM, x).axis(x) for x in bottom),
             size_of_pair(self.options.bottom_chord, self.gap),
         )
 
-    # Chords
+    # Members
 
     def _bars(self, which: int) -> list[ChordBar]:
-        """The bars of a chord: one under each slope, short of the end plates and of the ridge."""
-        first, last = self.between.faces
+        """The bars of a chord: under each slope, short of the end plates and of the ridge, between the splices."""
+        lengths = self.lines.lengths[which]
         bars = chord_bars(
-            self.chords[which], (first + BEFORE_CHORD, last - BEFORE_CHORD), [], _ROLES[which], self.span
-        )
-        if len(bars) == 2:
-            ridge = bars[0].x_to
-            bars = [replace(bars[0], x_to=ridge - _RIDGE_GAP), replace(bars[1], x_from=ridge + _RIDGE_GAP)]
-        return bars
-
-    def _section(self, which: int) -> Section:
-        return self.options.bottom_chord if which == BOTTOM else self.options.top_chord
+            self.lines.chords[which], (lengths[0][0], lengths[-1][1]), [cut.x[which] for cut in self.cuts],
+            CHORD_ROLES[which], self.lines.span,
+        )  # fmt: skip
+        within = [lengths[bar.slope] for bar in bars]
+        return [
+            replace(bar, x_from=max(bar.x_from, low), x_to=min(bar.x_to, high))
+            for bar, (low, high) in zip(bars, within, strict=True)
+        ]
 
     def _chord_pairs(self, which: int) -> list[Pair]:
+        """Ends are sawn upright, or square before the middle of a splice."""
         made = []
+        upright = along(_ACROSS)
         for bar in self.bars[which]:
-            face = self.chords[which][bar.slope]
-            line = (_on(face, bar.x_from), _on(face, bar.x_to))
+            face = self.lines.chords[which][bar.slope]
+            back = END_GAP / 2 * face.run
+            x0, x1 = bar.x_from + back * bar.spliced[0], bar.x_to - back * bar.spliced[1]
+            planes = (None if bar.spliced[0] else upright, None if bar.spliced[1] else upright)
             made.append(
                 pair_of(
-                    bar.name, _ROLES[which], self._section(which), line, -face.normal, self.gap,
-                    along(_ACROSS), self.options.grade, self.finish,
+                    bar.name, CHORD_ROLES[which], self.lines.section_of(which),
+                    (on_axis(face, x0), on_axis(face, x1)), -face.normal, self.gap, planes,
+                    self.options.grade, self.finish,
                 )
             )  # fmt: skip
         return made
 
-    def _chord_leg(self, which: int, bar: int, x: float) -> Leg:
-        """A chord bar's leg from x on, or back from there where it ends."""
-        section, face = self._section(which), self.chords[which][bar]
-        run = np.array([1.0, face.slope]) * face.run
-        if abs(x - self.bars[which][bar].x_to) < _SAME:
-            run = -run
-        return Leg(_on(face, x), run, -face.normal, to_back(section), to_webs(section))
-
-    # Nodes
-
-    def _nodes(self, which: int) -> list[_Node]:
-        """The nodes of a chord, left to right: at both columns, at a ridge, and wherever webs meet."""
-        found = []
-        groups = self.groups(which)
-        at = {round(self.nodes(self.topology.webs[group[0]])[which], 6): group for group in groups}
-        first, last = (round(x, 6) for x in self.line_ends)
-        bars = self.bars[which]
-        places = {first, last, *at}
-        if len(bars) == 2 and self.ridge_x is not None:
-            places.add(round(self.ridge_x, 6))
-        for x in sorted(places):
-            end = At.START if x == first else At.END if x == last else None
-            ridge = len(bars) == 2 and self.ridge_x is not None and abs(x - self.ridge_x) < 1e-3
-            over = [0, 1] if ridge else [0 if len(bars) == 1 or x < bars[1].x_from else 1]
-            point = _on(self.over(which, x), x)
-            found.append(_Node(point, at.get(x, []), over, end))
-        return found
-
-    def _web_leg(self, web: int, which: int, point: Array) -> Leg:
-        """A web's leg from a point of its axis, away from a chord."""
-        here = self.topology.webs[web]
-        bottom, top = self.nodes(here)
-        a, b = _on(self.over(BOTTOM, bottom), bottom), _on(self.over(TOP, top), top)
-        run = (b - a) / float(np.linalg.norm(b - a))
-        heel = np.array([-run[1], run[0]])
-        if here.kind == "post":
-            middle = sum(self.line_ends) / 2
-            upward = -heel[0] * (bottom - middle - _SAME) < 0
-        else:
-            upward = heel[1] > 0
-        section = self.section(here)
-        return Leg(
-            point,
-            run if which == BOTTOM else -run,
-            heel if upward else -heel,
-            to_back(section),
-            to_webs(section),
-        )
-
-    def _begin(self) -> dict[tuple[int, int], Array]:
-        """Where the axis of each web begins at each chord, by (web, chord)."""
-        begin = {}
-        for which in (BOTTOM, TOP):
-            for node in self.nodes_of[which]:
-                webs = [
-                    Web(self._web_leg(i, which, node.point), self.topology.webs[i].kind == "post")
-                    for i in node.webs
-                ]
-                limits = [self._limits(which, node, web) for web in webs]
-                found = starts(node.point, webs, limits)
-                for i, web, far in zip(node.webs, webs, found, strict=True):
-                    begin[i, which] = web.leg.point(far, 0.0)
-        return begin
-
-    def _limits(self, which: int, node: _Node, web: Web) -> list[tuple[Array, Array]]:
-        """The lines that a web stays behind at a node: the toes of the chord, and the bolts of an end plate.
-
-        Over a peak of the bottom chord the far slope, drawn on, would push a diagonal away for nothing.
-        """
-        found = []
-        bars = node.bars
-        if which == BOTTOM and len(bars) == 2 and not web.is_post:
-            bars = [1] if web.leg.along[0] > 0 else [0]
-        for bar in bars:
-            face = self.chords[which][bar]
-            found.append((node.point + face.normal * (to_webs(self._section(which)) + CLEAR), face.normal))
-        if node.end is not None:
-            room = web_room(self.connections.chords)
-            wall, out = self.between.faces[node.end], 1.0 if node.end == At.START else -1.0
-            found.append((np.array([wall + out * room, 0.0]), np.array([out, 0.0])))
-        return found
-
     def _web_pairs(self) -> list[Pair]:
         made = []
-        for i, (role, name) in enumerate(self.web_names()):
-            a, b = self.begin[i, BOTTOM], self.begin[i, TOP]
-            leg = self._web_leg(i, BOTTOM, a)
+        lines = self.lines
+        for i, (role, name) in enumerate(lines.web_names()):
+            a, b = lines.begin[i, BOTTOM], lines.begin[i, TOP]
+            leg = lines.web_leg(i, BOTTOM, a)
             if float((b - a) @ leg.along) < 4 * leg.width:
                 raise impossible(
                     "frames.roof.depth", "no room for a web of the truss between its gussets",
                     given=name, allowed="more depth, fewer panels or slimmer angles",
                 )  # fmt: skip
-            section = self.section(self.topology.webs[i])
+            section = lines.section(lines.topology.webs[i])
             made.append(
                 pair_of(
-                    name, role, section, (a, b), leg.heel, self.gap, None, self.options.grade, self.finish
+                    name, role, section, (a, b), leg.heel, self.gap, (None, None),
+                    self.options.grade, self.finish,
                 )
-            )
+            )  # fmt: skip
         return made
 
     # Joints
 
-    def _joint(self, which: int, node: _Node) -> Meeting:
-        """The joint at a node; the near chord is first, webs follow it, and the far angles of chords are last."""
+    def _joint(self, which: int, node: AngleNode) -> Meeting:
+        """The joint at a node.
+
+        The near chord is first, webs follow it, and the far angles of chords are last; but webs joined on site alone
+        stand between the near chord and what else there is of chords, and welded ones follow.
+        """
+        pairs, bars = self.chord_pairs[which], self.bars[which]
         if node.end is not None:
-            chords = [self.chord_pairs[which][node.bars[0]].meets(node.end)]
-        elif len(node.bars) == 2:
-            left, right = self.chord_pairs[which]
-            chords = [left.meets(At.END), right.meets(At.START)]
+            chords = [pairs[0 if node.end == At.START else -1].meets(node.end)]
+        elif len(node.slopes) == 2:
+            right = next(i for i, bar in enumerate(bars) if bar.slope == 1)
+            chords = [pairs[right - 1].meets(At.END), pairs[right].meets(At.START)]
         else:
-            chords = [self.chord_pairs[which][node.bars[0]].meets(At.ALONG)]
+            chords = [pairs[bars.index(bar_over(bars, node.x))].meets(At.ALONG)]
         at = At.START if which == BOTTOM else At.END
-        webs = [meets for i in node.webs for meets in self.web_pairs[i].meets(at)]
+        webs = {i: self.web_pairs[i].meets(at) for i in node.webs}
+        on_site = [meets for i in node.webs if (i, which) in self.on_site for meets in webs[i]]
+        welded = [meets for i in node.webs if (i, which) not in self.on_site for meets in webs[i]]
         near, far = [near for near, _ in chords], [far for _, far in chords]
-        point = np.array([node.point[0], 0.0, node.point[1]])
-        if node.end is None:
-            return Meeting(JointKind.ANGLE_NODE, (near[0], *webs, *near[1:], *far), point)
-        column = Meets(self.between.columns[node.end], At.ALONG)
-        return Meeting(JointKind.ANGLE_COLUMN, (column, *near, *far, *webs), point)
+        point = np.array([node.x, 0.0, node.point[1]])
+        if node.end is not None:
+            column = Meets(self.between.columns[node.end], At.ALONG)
+            return Meeting(JointKind.ANGLE_COLUMN, (column, *near, *far, *welded), point)
+        if on_site:
+            pieces = (near[0], *on_site, *near[1:], *far, *welded)
+            return Meeting(JointKind.ANGLE_SITE_NODE, pieces, point)
+        return Meeting(JointKind.ANGLE_NODE, (near[0], *welded, *near[1:], *far), point)
 
-    # Packs
+    def _splice(self, which: int, x: float) -> Meeting:
+        """The splice of a chord: the near angles, left and right, then the far ones."""
+        bars, pairs = self.bars[which], self.chord_pairs[which]
+        right = next(i for i, bar in enumerate(bars) if bar.x_from == x)
+        left, follows = pairs[right - 1].meets(At.END), pairs[right].meets(At.START)
+        face = self.lines.chords[which][bars[right].slope]
+        pieces = (left[0], follows[0], left[1], follows[1])
+        return Meeting(JointKind.ANGLE_SPLICE, pieces, np.array([x, 0.0, face.axis(x)]))
 
-    def _areas(self, which: int) -> Iterator[tuple[_Node, CrossSection]]:
-        """The gussets of a chord, about: the hull of what each must reach."""
-        for node in self.nodes_of[which]:
-            patches = []
-            for bar in node.bars:
-                ends = node.end is not None or len(node.bars) == 2
-                x = float(node.point[0])
-                if ends:
-                    own = self.bars[which][bar]
-                    x = own.x_from if node.end == At.START or (bar == 1 and node.end is None) else own.x_to
-                leg = self._chord_leg(which, bar, x)
-                patches.append(chord_patch(leg, self.connections, ends=ends, before=BEFORE_CHORD))
-            for i in node.webs:
-                leg = self._web_leg(i, which, self.begin[i, which])
-                patches.append(web_patch(leg, self.section(self.topology.webs[i]), self.connections))
-            yield node, CrossSection.batch_hull(patches)
-
-    def _packs(self) -> list[Meeting]:
-        """The packs of all pairs, in what is free of gussets."""
-        areas = (list(self._areas(BOTTOM)), list(self._areas(TOP)))
-        made = []
-        for which in (BOTTOM, TOP):
-            for number, (bar, pair) in enumerate(zip(self.bars[which], self.chord_pairs[which], strict=True)):
-                leg = self._chord_leg(which, number, bar.x_from)
-                covered = [leg.covered(area) for node, area in areas[which] if number in node.bars]
-                for (_, low), (high, _) in pairwise(sorted(covered)):
-                    made += self._packs_in(pair, leg, low, high, 0)
-        for i, pair in enumerate(self.web_pairs):
-            leg = self._web_leg(i, BOTTOM, self.begin[i, BOTTOM])
-            at_low, at_high = (
-                next(leg.covered(area) for node, area in areas[which] if i in node.webs)
-                for which in (BOTTOM, TOP)
-            )
-            made += self._packs_in(pair, leg, at_low[1], at_high[0], _IN_WEB)
-        return made
-
-    def _packs_in(self, pair: Pair, leg: Leg, low: float, high: float, least: int) -> list[Meeting]:
-        """Packs in equal parts of a free length of a pair, fewer where they would stand too close."""
-        free = high - low
-        count = max(ceil(free / self.connections.truss_gussets.packs - 1e-9) - 1, least)
-        count = min(count, max(int(free / (PACK + _BESIDE_PACK)) - 1, 0))
-        points = [leg.point(low + free * k / (count + 1), 0.0) for k in range(1, count + 1)]
-        return [
-            Meeting(JointKind.PACKED_PAIR, pair.meets(At.ALONG), np.array([x, 0.0, z])) for x, z in points
-        ]
-
-
-def _on(face: ChordFace, x: float) -> Array:
-    """The point (2,) of a chord's axis at x."""
-    return np.array([x, face.axis(x)])
+    def _plates(self, which: int) -> list[tuple[float, float]]:
+        """(low, high) x of the plates of the splices of a chord."""
+        if not self.cuts:
+            return []
+        own = self.lines.connections.splices
+        half = cover_splice(self.lines.section_of(which), CHORD_ROLES[which], own).half_plate
+        return [(cut.x[which] - half, cut.x[which] + half) for cut in self.cuts]

@@ -25,9 +25,11 @@ def notes(description: Description) -> tuple[str, ...]:
         found.append(
             "Holes for zinc and air follow galvanizers' published guidance: agree them with the galvanizer."
         )
-    if isinstance(description.frames.roof, AngleTrussRoof):
+    roof = description.frames.roof
+    if isinstance(roof, AngleTrussRoof) and roof.longest != "none":
         found.append(
-            "Trusses of angles have no site splices: whether they can go by road in one piece is not looked at."
+            f"Trusses of angles over {roof.longest / 1000:g} m are divided for the road: the covers of their splices, "
+            "and bolt heads on these, stand out above the top chords and below the bottom chords."
         )
     tube_ends = description.connections.tube_ends
     if FLATTENED in (tube_ends.struts, tube_ends.braces):

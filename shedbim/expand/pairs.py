@@ -70,7 +70,7 @@ def pair_of(
     line: tuple[Array, Array],
     heel: Array,
     gap: float,
-    planes: Planes | None,
+    planes: tuple[Planes | None, Planes | None],
     grade: str,
     finish: str,
 ) -> Pair:
@@ -79,7 +79,7 @@ def pair_of(
     Args:
         heel: unit vector (2,) in x and z to the side of the heels, square to the axis.
         gap: between the two angles, mm.
-        planes: that cut both ends; square where None.
+        planes: that cut its start and its end; square where None.
     """
     (ax, az), (bx, bz) = line
     out = np.array([heel[0], 0.0, heel[1]])
@@ -90,8 +90,9 @@ def pair_of(
         start, end = (np.array([x, side * off, z]) for x, z in ((ax, az), (bx, bz)))
         # One leg on the gusset from the heel along -out, the other away from it: x follows from y and z.
         ahead = float(cross(_SIDE * side, -out) @ run) > 0
+        first, last = planes if ahead else planes[::-1]
         bar, place = stick(
-            section, *((start, end) if ahead else (end, start)), -out, start_planes=planes, end_planes=planes
+            section, *((start, end) if ahead else (end, start)), -out, start_planes=first, end_planes=last
         )
         members.append(Member(f"{name}/{word}", role, bar, place, grade, finish))
         forward.append(ahead)

@@ -7,7 +7,7 @@ from math import ceil
 
 from shedbim.description.models import Description
 from shedbim.expand.layout import Layout, Pitched
-from shedbim.sections.section import Section
+from shedbim.expand.pairs import Steel
 
 __all__ = ["brace_lengths", "brace_places", "post_places"]
 
@@ -41,7 +41,7 @@ def brace_places(description: Description, layout: Layout, pitched: Pitched) -> 
 
 
 def brace_lengths(
-    description: Description, layout: Layout, pitched: Pitched, chord: Section
+    description: Description, layout: Layout, pitched: Pitched, chord: Steel
 ) -> list[tuple[float, float]]:
     """Give the lengths (low, high) in x of a chord under a slope beside which roof braces and gussets lie.
 

@@ -17,6 +17,7 @@ from shedbim.sections.section import Section
 
 __all__ = [
     "BOTTOM",
+    "CHORD_ROLES",
     "TOP",
     "ChordBar",
     "bar_over",
@@ -29,6 +30,8 @@ __all__ = [
 ]
 
 BOTTOM, TOP = 0, 1
+#: The role of each.
+CHORD_ROLES = (Role.BOTTOM_CHORD, Role.TOP_CHORD)
 _UP = (0.0, 0.0, 1.0)
 _ACROSS = (1.0, 0.0, 0.0)
 _SAME = 1e-6  # mm: two computed positions of one thing

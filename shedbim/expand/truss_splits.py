@@ -2,7 +2,7 @@
 
 A cut goes through one panel of each chord and across one web. That web leaves the shop with the piece that it is
 welded to; at its other end it is bolted. Each chord is cut about a third of its panel away from the node that this
-web stands at (common practice), clear of the webs and of the ridge, the top chord of roof braces too.
+web stands at (common practice), clear of the webs, of the ridge, and of what else is fastened to it.
 """
 
 from __future__ import annotations
@@ -17,7 +17,7 @@ from shedbim.expand.truss_chords import BOTTOM, TOP
 __all__ = ["Cut", "Outline", "cuts"]
 
 #: Shares of a panel, the first that is clear is taken.
-_SHARES = (1 / 3, 0.4, 0.28, 0.46, 0.23, 0.52, 0.6)
+_SHARES = (1 / 3, 0.4, 0.28, 0.46, 0.23, 0.52, 0.6, 0.31, 0.37, 0.43, 0.49, 0.55, 0.57, 0.63, 0.66, 0.7, 0.75)
 #: From the middle of a splice to the toe of a web, and to the ridge: plates, bolts and a wrench, mm.
 _FROM_TOES, _FROM_RIDGE = 160.0, 260.0
 #: Pieces more than this many times as many as would do help nothing.
@@ -32,11 +32,14 @@ class Outline:
         webs: (bottom, top) node of each web.
         diagonal: whether each web is one; posts are not cut across.
         nodes: x of the nodes of each chord, ascending.
-        toes: for each chord (low, high) x of each web's footprint.
+        toes: for each chord (low, high) x of each web's footprint, or of each gusset.
         ends: x of the sawn ends.
         stretch: length of a chord over its plan length.
-        ridge: its x, if there is one.
-        busy: (low, high) x of the lengths of the top chord beside which roof braces and their gussets lie.
+        ridge: its x, if no splice may be near it.
+        busy: for each chord (low, high) x where the middle of a splice may not be: beside roof braces and their
+            gussets, and so on.
+        room: for each chord from the middle of a splice to the toe of a web.
+        welded: the nodes of each chord where no web may be bolted on site.
     """
 
     webs: Sequence[tuple[int, int]]
@@ -46,7 +49,9 @@ class Outline:
     ends: tuple[float, float]
     stretch: float
     ridge: float | None
-    busy: Sequence[tuple[float, float]]
+    busy: tuple[Sequence[tuple[float, float]], Sequence[tuple[float, float]]]
+    room: tuple[float, float] = (_FROM_TOES, _FROM_TOES)
+    welded: tuple[frozenset[int], frozenset[int]] = (frozenset(), frozenset())
 
 
 @dataclass(frozen=True)
@@ -102,7 +107,8 @@ def _lengths(outline: Outline, chosen: Sequence[Cut]) -> Iterator[float]:
 def _candidates(outline: Outline) -> Iterator[Cut]:
     """Every cut across a single web, a diagonal."""
     for number, (bottom, top) in enumerate(outline.webs):
-        if not outline.diagonal[number]:
+        bolted = _bolted(outline, number)
+        if bolted is None or not outline.diagonal[number]:
             continue
         for gaps in ((bottom, top - 1), (bottom - 1, top)):
             crossing = [w for w, (b, t) in enumerate(outline.webs) if (b <= gaps[0]) != (t <= gaps[1])]
@@ -120,25 +126,28 @@ def _candidates(outline: Outline) -> Iterator[Cut]:
                     break
                 places.append(place)
             if len(places) == 2:
-                yield Cut(number, _bolted(outline, number), (places[BOTTOM], places[TOP]))
+                yield Cut(number, bolted, (places[BOTTOM], places[TOP]))
 
 
-def _bolted(outline: Outline, number: int) -> int:
-    """The chord that a web is bolted to: where fewer webs meet, else the bottom chord."""
-    counts = [
-        sum(web[chord] == outline.webs[number][chord] for web in outline.webs) for chord in (BOTTOM, TOP)
-    ]
-    return TOP if counts[TOP] < counts[BOTTOM] else BOTTOM
+def _bolted(outline: Outline, number: int) -> int | None:
+    """The chord that a web is bolted to: where fewer webs meet, else the bottom chord; None where it may be neither."""
+    own = outline.webs[number]
+    counts = {
+        chord: sum(web[chord] == own[chord] for web in outline.webs)
+        for chord in (BOTTOM, TOP)
+        if own[chord] not in outline.welded[chord]
+    }
+    return min(counts, key=lambda chord: counts[chord], default=None)
 
 
 def _place(outline: Outline, chord: int, node: float, other: float) -> float | None:
     """x of the splice of a chord between a node and another; None where there is no room."""
+    room = outline.room[chord]
     clear = [
         x
         for x in (node + (other - node) * share for share in _SHARES)
-        if all(x < low - _FROM_TOES or x > high + _FROM_TOES for low, high in outline.toes[chord])
+        if all(x < low - room or x > high + room for low, high in outline.toes[chord])
         and (outline.ridge is None or abs(x - outline.ridge) > _FROM_RIDGE)
+        and not any(low < x < high for low, high in outline.busy[chord])
     ]
-    if chord == TOP:
-        clear = [x for x in clear if not any(low < x < high for low, high in outline.busy)]
     return next(iter(clear), None)

@@ -17,6 +17,7 @@ from shedbim.expand.pairs import Steel
 from shedbim.expand.sticks import Planes, along, stick
 from shedbim.expand.truss_chords import (
     BOTTOM,
+    CHORD_ROLES,
     TOP,
     ChordBar,
     bar_over,
@@ -38,7 +39,6 @@ from shedbim.webs.topology import Web
 __all__ = ["Truss", "truss", "truss_lifts"]
 
 Array = NDArray[np.float64]
-_ROLES = (Role.BOTTOM_CHORD, Role.TOP_CHORD)
 
 
 @dataclass(frozen=True, eq=False)
@@ -199,7 +199,7 @@ class _Maker(TrussLayout):
         outline = Outline(
             [(web.bottom, web.top) for web in self.topology.webs],
             [web.kind == "diagonal" for web in self.topology.webs],
-            (nodes[0], nodes[1]), (toes[0], toes[1]), self.ends, stretch, self.ridge_x, self.shipping.busy,
+            (nodes[0], nodes[1]), (toes[0], toes[1]), self.ends, stretch, self.ridge_x, ((), self.shipping.busy),
         )  # fmt: skip
         found = cuts(outline, longest)
         if found is None:
@@ -212,12 +212,12 @@ class _Maker(TrussLayout):
     def _bars(self, which: int, divided: Sequence[Cut]) -> list[ChordBar]:
         """The bars of a chord."""
         places = [cut.x[which] for cut in divided]
-        return chord_bars(self.chords[which], self.ends, places, _ROLES[which], self.span)
+        return chord_bars(self.chords[which], self.ends, places, CHORD_ROLES[which], self.span)
 
     def _chord_member(self, which: int, bar: ChordBar) -> Member:
         face = self.chords[which][bar.slope]
         back = self.shipping.splices.thickness
-        return chord_member(bar, face, self.options, _ROLES[which], self.finish, back)
+        return chord_member(bar, face, self.options, CHORD_ROLES[which], self.finish, back)
 
     def _web_member(
         self, aim: WebAim, at: LandedWeb, role: Role, name: str, laps: tuple[float, float]

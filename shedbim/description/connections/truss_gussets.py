@@ -18,7 +18,8 @@ class TrussGussetOptions(Options):
     """The gussets at the nodes of trusses of angles."""
 
     fastening: Annotated[_Fastening, Choice(*get_args(_Fastening))] = default(
-        "welded", "how webs are fastened to the gussets; chords are welded to them either way"
+        "welded",
+        "how webs are fastened to the gussets; one joined on site is always bolted, chords are always welded",
     )
     lap: Annotated[float, Quantity(units.LENGTH, "60 mm", "600 mm")] | None = left_out(
         "twice the leg", "length of the weld along the heel of an angle that ends at a gusset"

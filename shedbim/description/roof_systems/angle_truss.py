@@ -16,7 +16,7 @@ _PAIR = SectionOf(Angle, why="with equal legs; bars are pairs of angles on eithe
 
 
 class AngleTrussRoof(TrussedRoof):
-    """Trusses of pairs of angles, one in each span, never divided for the road."""
+    """Trusses of pairs of angles, one in each span."""
 
     system: Literal["angle-truss"] = required("trusses of pairs of angles with gussets, one in each span")
     top_chord: Annotated[Section, _PAIR] = required("one angle of the pair that is the top chord")

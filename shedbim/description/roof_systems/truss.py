@@ -4,9 +4,8 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from shedbim import units
 from shedbim.description.roof_systems.trussed import TrussedRoof
-from shedbim.fields import Quantity, SectionOf, WordOr, default, left_out, required
+from shedbim.fields import SectionOf, left_out, required
 from shedbim.sections.profiles import Hollow, Pipe
 from shedbim.sections.section import Section
 
@@ -14,8 +13,6 @@ __all__ = ["TrussRoof"]
 
 _CHORD = SectionOf(Hollow, why="webs are welded to a flat chord face")
 _WEB = SectionOf(Hollow, Pipe)
-#: The default: a rigid load of 18.65 m is the longest on British roads without notice (published guidance).
-_LONGEST = WordOr("none", Quantity(units.LENGTH, "6 m", "60 m"))
 
 
 class TrussRoof(TrussedRoof):
@@ -29,6 +26,3 @@ class TrussRoof(TrussedRoof):
         "as diagonals", "section of the diagonals next to the columns"
     )
     posts: Annotated[Section, _WEB] | None = left_out("as diagonals", "section of the upright webs")
-    longest: Annotated[float | Literal["none"], _LONGEST] = default(
-        "18 m", "greatest length of a truss or a part of one as it leaves the shop; none: never divided"
-    )

@@ -6,7 +6,7 @@ from typing import Annotated, Literal, get_args
 
 from shedbim import units
 from shedbim.description.roof_systems.system import RoofSystem
-from shedbim.fields import ROLLED, Choice, Quantity, SectionOf, Whole, default, left_out, required
+from shedbim.fields import ROLLED, Choice, Quantity, SectionOf, Whole, WordOr, default, left_out, required
 from shedbim.sections.profiles import Angle, Hollow, Pipe
 from shedbim.sections.section import Section
 from shedbim.webs import PATTERNS
@@ -15,6 +15,8 @@ __all__ = ["TrussedRoof"]
 
 _Shape = Literal["parallel", "pitched"]
 _BAR = SectionOf(Hollow, Pipe, Angle)
+#: The default: a rigid load of 18.65 m is the longest on British roads without notice (published guidance).
+_LONGEST = WordOr("none", Quantity(units.LENGTH, "6 m", "60 m"))
 
 
 class TrussedRoof(RoofSystem):
@@ -41,6 +43,9 @@ class TrussedRoof(RoofSystem):
     )
     posts: Annotated[Section, _BAR] | None = left_out("as diagonals", "section of the upright webs")
     grade: Annotated[str, ROLLED] = default("S355", "steel grade of chords and webs")
+    longest: Annotated[float | Literal["none"], _LONGEST] = default(
+        "18 m", "greatest length of a truss or a part of one as it leaves the shop; none: never divided"
+    )
 
     @property
     def end_section(self) -> Section:

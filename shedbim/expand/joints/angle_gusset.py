@@ -47,11 +47,15 @@ _FAR, _HAIR = 3000.0, 0.1
 
 @dataclass(frozen=True, eq=False)
 class AnglePair:
-    """Two members of a joint that are one pair: their numbers, near one first, and the near one's leg."""
+    """Two members of a joint that are one pair: their numbers, near one first, and the near one's leg.
+
+    ``on_site`` is a web that is bolted there, whatever fastens the others.
+    """
 
     numbers: tuple[int, int]
     near: Met
     leg: Leg
+    on_site: bool = False
 
     @property
     def is_chord(self) -> bool:
@@ -94,21 +98,23 @@ def leg_of(met: Met) -> Leg:
     return Leg(met.origin[flat], met.into[flat], -met.z[flat], -low, high)
 
 
-def web_line(section: Section, options: Connections) -> BoltLine | None:
-    """Give the bolts in an end of a web; None where webs are welded.
+def web_line(section: Section, options: Connections, *, on_site: bool = False) -> BoltLine | None:
+    """Give the bolts in an end of a web; None where webs are welded and this one is not joined on site.
 
     Raises:
         DescriptionError: when the leg is too small for them.
     """
     own, profile = options.truss_gussets, section.profile
-    if own.fastening == "welded":
+    if own.fastening == "welded" and not on_site:
         return None
     assert isinstance(profile, Angle)
     line = leg_line(profile, int(own.bolts), own.size)
     if line is None:
         raise impossible(
             "connections.truss_gussets.size", "the leg of a web is too small for these bolts",
-            given=f"{section.designation}, {own.size or 'M12'}", allowed="larger angles, smaller bolts, or welds",
+            given=f"{section.designation}, {own.size or 'M12'}",
+            allowed="larger angles, smaller bolts, or "
+            + ("frames.roof.longest: none" if own.fastening == "welded" else "welds"),
         )  # fmt: skip
     return line
 
@@ -118,9 +124,9 @@ def _off_axis(section: Section) -> float:
     return -section.outline.bounds[0] - back_mark(section.width)[0]
 
 
-def web_patch(leg: Leg, section: Section, options: Connections) -> CrossSection:
+def web_patch(leg: Leg, section: Section, options: Connections, *, on_site: bool = False) -> CrossSection:
     """Give what a gusset must reach of a web: along its welds with a ledge beside them, or round its bolts."""
-    line = web_line(section, options)
+    line = web_line(section, options, on_site=on_site)
     if line is None:
         lap = lap_of(leg.width, options.truss_gussets.lap)
         return leg.patch(0.0, lap, -leg.toe - LEDGE, leg.back + LEDGE)
@@ -176,7 +182,7 @@ def gusset(
     boltings: list[Bolting] = []
     welds: list[Welding] = []
     for pair in pairs:
-        line = None if pair.is_chord else web_line(pair.near.section, options)
+        line = None if pair.is_chord else web_line(pair.near.section, options, on_site=pair.on_site)
         if line is None:
             welds += _welds(pair, area, thickness, options)
         else:

@@ -7,7 +7,8 @@ from dataclasses import dataclass
 
 from shedbim.description.connections import Connections
 from shedbim.expand.joints.angle_column import angle_column
-from shedbim.expand.joints.angle_node import angle_node
+from shedbim.expand.joints.angle_node import angle_node, angle_site_node
+from shedbim.expand.joints.angle_splice import angle_splice
 from shedbim.expand.joints.apex import apex
 from shedbim.expand.joints.base import fixed_base, pinned_base, post_base
 from shedbim.expand.joints.brace_crossing import brace_crossing
@@ -62,7 +63,9 @@ JOINTS: Mapping[JointKind, JointRow] = {
     JointKind.CHORD_SPLICE: JointRow(chord_splice),
     JointKind.WEB_SPLICE: JointRow(web_splice),
     JointKind.ANGLE_NODE: JointRow(angle_node),
+    JointKind.ANGLE_SITE_NODE: JointRow(angle_site_node),
     JointKind.ANGLE_COLUMN: JointRow(angle_column),
+    JointKind.ANGLE_SPLICE: JointRow(angle_splice),
     JointKind.PACKED_PAIR: JointRow(packed_pair),
     JointKind.PURLIN_CLEAT: JointRow(cleat),
     JointKind.PURLIN_LAP: JointRow(purlin_lap),
