@@ -6,6 +6,7 @@ All distances are measured on the corners of the placed solids; the numbers want
 
 from __future__ import annotations
 
+import re
 from collections import defaultdict
 from functools import cache
 from itertools import pairwise
@@ -17,10 +18,11 @@ import pytest
 from invariants import Bars, bodies
 
 from shedbim.geometry.placements import apply, inverse
+from shedbim.model.bars import Bar
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 from shedbim.model.shed import Shed
-from shedbim.sections.profiles import Angle, Hollow, IShape, LippedC
+from shedbim.sections.profiles import Angle, FoldedChannel, Hollow, IShape, LippedC, LippedZ
 from shedbim.tolerance import SAME_LENGTH
 
 ALL = pytest.mark.parametrize("name", cast.CAST)
@@ -437,6 +439,26 @@ def test_sag_bars_run_from_web_to_web(name):
             assert 5.0 - SLACK <= -past - half <= 10.0
         assert abs(here[2]) < section.height / 4
     assert through
+
+
+def test_sag_bars_have_a_grade_of_their_own():
+    """They took the grade of the purlins' strip; round bar is no strip (EN 10025-2, not EN 10346)."""
+    grades = {"purlins__sag_bar_grade": "S235", "rails__sag_bar_grade": "S355J2"}
+    shed = cast.members(cast.changed("flat", rails__sag_bars=1, purlins__sag_bars=2, **grades))
+    found = defaultdict(set)
+    for key, part in zip(shed.pieces.keys, shed.pieces.part.tolist(), strict=True):
+        if shed.parts[part].role is Role.SAG_BAR:
+            found["rail" if "/rail sag bar/" in key else "roof"].add(shed.parts[part].grade)
+    assert found == {"roof": {"S235"}, "rail": {"S355J2"}}
+
+
+@ALL
+def test_only_strip_has_a_grade_of_strip(name):
+    """Plates and bars of other shapes are of hot-rolled steel: EN 10346 and ASTM A653 are for strip."""
+    of_strip = (LippedC, LippedZ, FoldedChannel)
+    for part in cast.shed_of(name).parts:
+        strip = isinstance(part.shape, Bar) and isinstance(part.shape.section.profile, of_strip)
+        assert (re.search(r"GD|A653", part.grade) is not None) == strip, part.mark
 
 
 @ALL

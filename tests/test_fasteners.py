@@ -287,6 +287,13 @@ def test_oversize_and_slotted_holes() -> None:
         assert [slot_travel(d, fit) for fit in (Fit.NORMAL, Fit.OVERSIZE, Fit.CAST_IN)] == [0, 0, 0]
 
 
+def test_holes_for_threaded_bars() -> None:
+    # Common practice: sag bars of 12 and 16 mm in holes of 14 and 18 mm; larger bars as bolts.
+    assert {d: hole_diameter(d, Fit.BAR) for d in (12, 16)} == {12: 14, 16: 18}
+    assert all(hole_diameter(d, Fit.BAR) == hole_diameter(d) for d in DIAMETERS if d > 16)
+    assert slot_travel(12, Fit.BAR) == 0
+
+
 def test_holes_over_anchors() -> None:
     # Common practice: 6 mm more up to M24, 10 mm above.
     expected = {12: 18, 16: 22, 20: 26, 22: 28, 24: 30, 27: 37, 30: 40, 36: 46}

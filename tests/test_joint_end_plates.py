@@ -6,15 +6,17 @@ from math import cos, radians, tan
 
 import numpy as np
 import pytest
-from joint_checks import faults, shape_of
+from joint_checks import faults, shape_of, wrenches
 from joint_solids import met, scene
 
 from shedbim.description.connections import Connections
 from shedbim.errors import DescriptionError
 from shedbim.expand.joints.apex import apex
+from shedbim.expand.joints.brace_gusset import brace_gusset
 from shedbim.expand.joints.chord_column import chord_column
 from shedbim.expand.joints.contract import Connection, Joint, Met
 from shedbim.expand.joints.rafter_column import rafter_column
+from shedbim.expand.joints.strut_end import strut_end
 from shedbim.expand.sticks import along, stick
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
@@ -273,12 +275,58 @@ def test_rafters_at_the_apex_hold(case, options):
                 assert low_z > -rafter.height / 2 - 20.0 * steepest - 1e-6
 
 
-def test_a_haunch_at_the_apex_over_a_post_is_refused():
-    joint = at_apex("IPE 330", 5.0, 5.0, Role.RAFTER)
-    bar = stick(section("IPE 200"), (0, 0, -5000), (0, 0, -30), LENGTHWISE)
-    post = met(Role.GABLE_POST, *bar, At.END, np.array([0.0, 0.0, 165.0]))
-    with pytest.raises(DescriptionError, match="comes over a gable post"):
-        apex(Joint(joint.kind, joint.members, (post,)), APEX_HAUNCH)
+def post_below(x: float) -> Met:
+    """A gable post 200 mm wide at ``x`` from the ridge."""
+    bar = stick(section("IPE 200"), (x, 0, -5000), (x, 0, -120), LENGTHWISE)
+    return met(Role.GABLE_POST, *bar, At.END, np.array([0.0, 0.0, 165.0]))
+
+
+@pytest.mark.parametrize(("x", "haunched"), [(0.0, False), (-300.0, False), (500.0, False), (1000.0, True)])
+def test_an_apex_over_a_post_has_no_haunch(x, haunched):
+    """The post carries the apex: both sides go without. Beyond 2 x 330 mm and the post's half there is room."""
+    joint = at_apex("IPE 330", 5.0, 7.0, Role.RAFTER)
+    made = apex(Joint(joint.kind, joint.members, (post_below(x),)), APEX_HAUNCH)
+    assert [each.role for each in made.fittings].count(Role.HAUNCH) == (4 if haunched else 0)
+    assert faults(joint, made) == []
+
+
+def strut_at_ridge(joint: Joint, name: str, level: float) -> Met:
+    """A strut from the ridge along the building, its axis ``level`` above the middle of the rafters."""
+    stop = joint.members[0].section.width / 2 + 10.0
+    bar = stick(section(name), (0, stop, level), (0, stop + 5000, level), UP)
+    return met(Role.STRUT, *bar, At.START, np.zeros(3))
+
+
+@pytest.mark.parametrize(
+    ("rafter", "strut", "level"),
+    [
+        ("IPE 240", "CHS 88.9x4", 46.0),
+        ("IPE 270", "CHS 88.9x4", 66.0),
+        ("IPE 400", "CHS 88.9x4", 0.0),
+        ("IPE 400", "CHS 114.3x5", -60.0),
+        ("IPE 330", "SHS 60x60x4", 20.0),
+    ],
+)
+def test_bolts_at_the_apex_keep_clear_of_the_fin_of_a_strut(rafter, strut, level):
+    """The room that a wrench needs is from a data handbook: fasteners/data/distances.csv."""
+    bare = at_apex(rafter, 5.0, 5.0, Role.GABLE_RAFTER)
+    beside = strut_at_ridge(bare, strut, level)
+    ends = Joint(JointKind.STRUT_END, (bare.members[0], beside))
+    steel = {name: body for name, body in scene(ends, strut_end(ends, OPTIONS)).items() if name != 0}
+    joint = Joint(bare.kind, bare.members, (beside,))
+    made = apex(joint, OPTIONS)
+    assert faults(bare, made) == []
+    assert list(wrenches(made.boltings[0], steel)) == []
+    levels = np.unique(np.round(made.boltings[0].points[:, 2], 3))
+    assert len(levels) >= 2
+    assert np.diff(levels).max() <= 200.0  # EN 1993-1-8 Table 3.3
+
+
+def test_where_a_fin_leaves_no_room_the_apex_has_bolts_all_the_same():
+    """The check of bolts says so then; see ``checks.clash.bolt_access``."""
+    bare = at_apex("IPE 160", 5.0, 5.0, Role.GABLE_RAFTER)
+    joint = Joint(bare.kind, bare.members, (strut_at_ridge(bare, "CHS 114.3x5", 0.0),))
+    assert len(apex(joint, OPTIONS).boltings[0].points) >= 4
 
 
 # Chords
@@ -348,3 +396,43 @@ def test_a_chord_too_wide_for_its_column_is_refused():
     joint = Joint(joint.kind, joint.members, webs_at(joint, "SHS 100x100x5"))
     with pytest.raises(DescriptionError, match="no room for bolts between a chord and its column"):
         chord_column(joint, OPTIONS)
+
+
+# Beside the gussets of roof braces
+
+
+def roof_brace(joint: Joint, depth: float, degrees: float) -> Met:
+    """A roof brace from the column's head, its gusset ``depth`` under the top line over the column's axis."""
+    column = joint.members[0]
+    top = float(column.point(column.to_end, 0, 0)[2])
+    u = np.array([cos(radians(degrees)), 0.0, np.sin(radians(degrees))])
+    up = np.array([-u[2], 0.0, u[0]])
+    into = (u * 0.6 + LENGTHWISE * 0.8) / np.hypot(0.6, 0.8)
+    at = np.array([0.0, 0.0, top - depth]) + into * (column.section.width / 2 + 90.0)
+    bar = stick(section("L 70x70x7"), at, at + into * 5000.0, up)
+    return met(Role.ROOF_BRACE, *bar, At.START, np.zeros(3))
+
+
+BESIDE_GUSSETS = [
+    (JointKind.RAFTER_COLUMN, "IPE 450", "IPE 400", Role.RAFTER, 5.0),
+    (JointKind.RAFTER_COLUMN, "HEB 280", "IPE 270", Role.GABLE_RAFTER, 4.0),
+    (JointKind.RAFTER_COLUMN, "W 310x60", "W 310x38.7", Role.RAFTER, 18.4),
+    (JointKind.CHORD_COLUMN, "HEB 280", "SHS 140x140x6", Role.TOP_CHORD, 4.0),
+    (JointKind.CHORD_COLUMN, "HEA 320", "SHS 140x140x8", Role.TOP_CHORD, 6.0),
+]
+
+
+@pytest.mark.parametrize("case", BESIDE_GUSSETS, ids=lambda case: f"{case[1]}+{case[2]}")
+@pytest.mark.parametrize("share", [0.3, 0.5, 0.7])
+def test_bolts_in_a_column_keep_clear_of_the_gusset_of_a_roof_brace(case, share):
+    """The room that a wrench needs is from a data handbook: fasteners/data/distances.csv."""
+    kind, *rest = case
+    make = rafter_column if kind is JointKind.RAFTER_COLUMN else chord_column
+    bare = on_column(kind, *rest, OPTIONS)
+    brace = roof_brace(bare, share * section(case[2]).height, case[4])
+    place = Joint(JointKind.BRACE_GUSSET, (bare.members[0], brace))
+    gusset = {"gusset": scene(place, brace_gusset(place, OPTIONS))["gusset"]}
+    made = make(Joint(bare.kind, bare.members, (brace,)), OPTIONS)
+    assert faults(bare, made) == []
+    assert list(wrenches(made.boltings[0], gusset)) == []
+    assert len(made.boltings[0].points) >= 4

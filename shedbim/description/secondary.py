@@ -7,6 +7,7 @@ from typing import Annotated, Literal, get_args
 from shedbim import units
 from shedbim.fields import (
     COLD_FORMED,
+    ROLLED,
     Choice,
     Options,
     Quantity,
@@ -55,6 +56,7 @@ class Purlins(Options):
     )
     sag_bars: Annotated[int | Literal["by span"], _ROWS] = default("by span", "rows of sag bars in a bay")
     sag_bar: Annotated[Section, _BAR] = default("RD 12", "section of the sag bars")
+    sag_bar_grade: Annotated[str, ROLLED] = default("S275", "steel grade of the sag bars")
 
 
 class Rails(Options):
@@ -69,3 +71,4 @@ class Rails(Options):
     lift: Annotated[float, _LIFT] = default("10 mm", "clearance of a rail outside the steel that carries it")
     sag_bars: Annotated[int | Literal["by span"], _ROWS] = default("by span", "rows of sag bars in a bay")
     sag_bar: Annotated[Section, _BAR] = default("RD 12", "section of the sag bars")
+    sag_bar_grade: Annotated[str, ROLLED] = default("S275", "steel grade of the sag bars")

@@ -188,7 +188,7 @@ def _bay_kit(
         for row, place in enumerate(places, start=1):
             member, joints = sag_bar(
                 lower, upper, place, number, options.section, options.sag_bar, f"{name}/{row}",
-                options.grade, finish,
+                options.sag_bar_grade, finish,
             )  # fmt: skip
             members.append(member)
             meetings.extend(joints)

@@ -105,7 +105,7 @@ def _sag_bars(
         for row, place in enumerate(places, start=1):
             member, joints = sag_bar(
                 lower, upper, place, number, options.section, options.sag_bar, f"{name}/{number}/{row}",
-                options.grade, description.finish.secondary,
+                options.sag_bar_grade, description.finish.secondary,
             )  # fmt: skip
             members.append(member)
             meetings.extend(joints)

@@ -8,10 +8,11 @@ __all__ = ["Fit"]
 
 
 class Fit(Enum):
-    """The word people read (EN 1090-2 Table 11; holes for cast-in anchors are common practice)."""
+    """The word people read (EN 1090-2 Table 11; for cast-in anchors and threaded bars: common practice)."""
 
     NORMAL = "normal"
     OVERSIZE = "oversize"
     SHORT_SLOT = "short slot"
     LONG_SLOT = "long slot"
     CAST_IN = "cast-in"
+    BAR = "threaded bar"

@@ -1,4 +1,4 @@
-"""How large a hole is drilled for a bolt, and how far a slot runs: EN 1090-2 Table 11, mm."""
+"""How large a hole is drilled for a bolt, and how far a slot runs: EN 1090-2 Table 11, and what is common, mm."""
 
 from __future__ import annotations
 
@@ -11,17 +11,19 @@ __all__ = ["hole_diameter", "slot_travel"]
 _LONG_SLOT = 1.5
 #: Holes over anchors cast in: so much more than the anchor up to M24, and above (common practice; value from memory).
 _CAST_IN_UP_TO, _CAST_IN, _CAST_IN_ABOVE = 24.0, 6.0, 10.0
+#: The column of ``hole_clearances`` that a round hole is chosen from, where it is not ``normal``.
+_COLUMNS = {Fit.OVERSIZE: "oversize", Fit.BAR: "bar"}
 
 
 def hole_diameter(diameter: float, fit: Fit = Fit.NORMAL) -> float:
-    """Give the diameter of the hole for a bolt; of a slot, its width, which is that of a normal hole.
+    """Give the diameter of the hole for a bolt or a threaded bar; of a slot, its width, which is that of a normal hole.
 
     Raises:
         ValueError: for a diameter of nothing.
     """
     if fit is Fit.CAST_IN:
         return diameter + (_CAST_IN if diameter <= _CAST_IN_UP_TO else _CAST_IN_ABOVE)
-    return diameter + _clearance(diameter, "oversize" if fit is Fit.OVERSIZE else "normal")
+    return diameter + _clearance(diameter, _COLUMNS.get(fit, "normal"))
 
 
 def slot_travel(diameter: float, fit: Fit) -> float:

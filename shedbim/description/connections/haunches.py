@@ -29,10 +29,11 @@ class ColumnHaunch(Options):
 
 
 class ApexHaunch(Options):
-    """Haunches of rafters at the apex."""
+    """Haunches of rafters at the apex; none in an end frame where a gable post stands under one."""
 
     depth: Annotated[float, _DEPTH] | None = left_out(
-        "no haunch", "depth of a haunch below the rafter at the apex"
+        "no haunch",
+        "depth of a haunch below the rafter at the apex; an end frame with a gable post there has none",
     )
     length: Annotated[float, _LENGTH] | None = left_out(
         "twice the rafter's depth", "length of a haunch from the ridge"

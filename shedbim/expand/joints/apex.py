@@ -6,20 +6,24 @@ braces and the heads of gable posts come close. No resistance is computed.
 
 from __future__ import annotations
 
+from itertools import product
+
 import numpy as np
 
 from shedbim.description.connections import Connections
 from shedbim.description.connections.end_plates import ApexOptions
 from shedbim.expand.impossible import impossible
-from shedbim.expand.joints.bolt_room import Room, Zone, rows, sizes, spread
+from shedbim.expand.joints.bolt_lines import tube_line
+from shedbim.expand.joints.bolt_room import Room, Zone, beside, rows, sizes, spread
 from shedbim.expand.joints.contract import Bolting, Connection, Fitting, Joint, Layer, Met, Welding, Work
-from shedbim.expand.joints.haunch import Haunch, clear_of_posts, haunch_plates, plan
+from shedbim.expand.joints.haunch import Haunch, haunch_plates, plan
 from shedbim.expand.joints.rafter_column import EXTENSION, GAUGE, custom_size, rafter_length, zones_between
 from shedbim.expand.joints.standing import Line, Standing, flange, line_of
 from shedbim.expand.joints.truss_node import girth
 from shedbim.fasteners.bolts import bolt
 from shedbim.fasteners.plate_stock import rounded_up
 from shedbim.fasteners.welds import leg, throat_for
+from shedbim.model.joints import At
 from shedbim.model.roles import Role
 
 __all__ = ["apex"]
@@ -36,13 +40,14 @@ def apex(joint: Joint, options: Connections) -> Connection:
     """Give end plates, bolts and haunches.
 
     Raises:
-        DescriptionError: when bolts have no place, or a haunch comes over a gable post.
+        DescriptionError: when bolts have no place.
     """
     own, members = options.apex, joint.members
     planes = [Standing.square_to(np.zeros(3), _level(met.into)) for met in members]
     lines = [line_of(met, plane) for met, plane in zip(members, planes, strict=True)]
-    haunches = [_haunch(own, met, line, joint) for met, line in zip(members, lines, strict=True)]
-    room, half, low, high, aside, levels = _layout(own, members, lines, haunches)
+    haunches = _haunches(own, joint, planes, lines)
+    fins = _fins(joint, planes[0], options)
+    room, half, low, high, aside, levels = _layout(own, members, lines, haunches, fins)
     fittings: list[Fitting] = []
     welds: list[Welding] = []
     works = []
@@ -73,30 +78,58 @@ def _level(direction: np.ndarray) -> np.ndarray:
     return np.array([direction[0], direction[1], 0.0])
 
 
-def _haunch(own: ApexOptions, met: Met, line: Line, joint: Joint) -> Haunch | None:
-    if own.haunch.depth is None:
-        return None
-    plane = Standing.square_to(np.zeros(3), _level(met.into))
-    wanted = own.thickness + (own.haunch.length or _LENGTH * met.section.height) * line.run
-    wanted = min(wanted, own.thickness + 0.7 * rafter_length(met) * line.run)
-    under = any(
-        each.role is Role.GABLE_POST
-        and abs(plane.seen(each.origin)[0]) < wanted + plane.reach(each, plane.out)
-        for each in joint.neighbours
-    )
-    if under or clear_of_posts(plane, wanted, joint.neighbours, 0.0) < wanted:
-        raise impossible(
-            "connections.apex.haunch.depth",
-            "a haunch at the apex comes over a gable post",
-            allowed="leave it out",
-        )
-    return plan(met, line, own.thickness, own.haunch.depth, wanted)
+def _haunches(
+    own: ApexOptions, joint: Joint, planes: list[Standing], lines: list[Line]
+) -> list[Haunch | None]:
+    """The haunch of each rafter; none at all where a gable post is in the way of one: it carries the apex."""
+    depth = own.haunch.depth
+    none: list[Haunch | None] = [None, None]
+    if depth is None:
+        return none
+    found = list(none)
+    for i, (met, plane, line) in enumerate(zip(joint.members, planes, lines, strict=True)):
+        wanted = own.thickness + (own.haunch.length or _LENGTH * met.section.height) * line.run
+        wanted = min(wanted, own.thickness + 0.7 * rafter_length(met) * line.run)
+        if any(_under(plane, post, wanted) for post in joint.neighbours):
+            return none
+        found[i] = plan(met, line, own.thickness, depth, wanted)
+    return found
+
+
+def _under(plane: Standing, met: Met, wanted: float) -> bool:
+    """Whether a member is a gable post below a haunch that runs ``wanted`` mm out, or at the ridge itself."""
+    out = float(plane.seen(met.origin)[0])
+    reach = plane.reach(met, plane.out)
+    return met.role is Role.GABLE_POST and -reach < out < wanted + reach
+
+
+def _fins(joint: Joint, plane: Standing, options: Connections) -> list[Zone]:
+    """From where to where the fins of struts stand beside the plates: they reach in front of the bolts.
+
+    A fin is as high as the distances of its bolts ask for; see ``strut_end``.
+    """
+    found = []
+    for met in joint.neighbours:
+        if met.role is not Role.STRUT or met.at == At.ALONG:
+            continue
+        line = tube_line(met.section, int(options.struts.bolts), options.struts.size)
+        out, _, level = plane.seen(met.origin)
+        if line is not None and abs(out) < met.section.width:
+            found.append(Zone(level - line.side, level + line.side))
+    return found
 
 
 def _layout(
-    own: ApexOptions, members: tuple[Met, ...], lines: list[Line], haunches: list[Haunch | None]
+    own: ApexOptions,
+    members: tuple[Met, ...],
+    lines: list[Line],
+    haunches: list[Haunch | None],
+    fins: list[Zone],
 ) -> tuple[Room, float, float, float, float, list[float]]:
-    """Bolts, half the width, lowest and highest level, bolts aside and rows: the same for both plates."""
+    """Bolts, half the width, lowest and highest level, bolts aside and rows: the same for both plates.
+
+    The largest of the allowed bolts that keep clear of the fins; where none do, the largest that fit at all.
+    """
     start = own.thickness
     high = min(min(line.top(0.0), line.top(start)) for line in lines)
     low = min(line.bottom(start) for line in lines)
@@ -109,7 +142,7 @@ def _layout(
     half = min(rounded_up(max(met.section.width for met in members)) / 2, width / 2 + _BESIDE)
     thinnest = min(flange(met.section) for met in members)
     weld_leg = leg(throat_for(min(own.thickness, thinnest), members[0].grade))
-    for diameter in sizes(own.bolt, custom_size(members[0])):
+    for taken, diameter in product((fins, []), sizes(own.bolt, custom_size(members[0]))):
         room = Room(diameter)
         least = max(webs) / 2 + room.from_wall(weld_leg)
         aside = spread(room, least, half, GAUGE * width / 2, half)
@@ -126,7 +159,7 @@ def _layout(
             )
             for a, b in zip(*each, strict=True)
         ]  # fmt: skip
-        levels = rows(zones, room)
+        levels = rows([part for zone in zones for part in beside(zone, taken, room)], room)
         if len(levels) >= 2:
             return room, half, low, high, aside, levels
     names = " and ".join(met.section.designation for met in members)

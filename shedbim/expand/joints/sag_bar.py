@@ -17,6 +17,7 @@ from shedbim.expand.joints.shaping import plate_at
 from shedbim.fasteners.bolts import bolt
 from shedbim.fasteners.distances import edge, wrench_pitch, wrench_wall
 from shedbim.fasteners.fastener import Fastener
+from shedbim.fasteners.fit import Fit
 from shedbim.fasteners.nuts import bar_nuts
 from shedbim.fasteners.plate_stock import rounded_up
 from shedbim.fasteners.welds import throat_for
@@ -84,7 +85,7 @@ def _threaded(course: Met, bar: Met, arrival: _Arrival) -> Connection:
     beyond = max(disc.end for disc in nuts.stack)
     over = rounded_up(beyond + _SPARE, 5.0)
     bolting = Bolting(
-        "nuts", nuts, arrival.point[None], -arrival.normal, (Layer(0, web),), Role.NUTS, thread=1
+        "nuts", nuts, arrival.point[None], -arrival.normal, (Layer(0, web, Fit.BAR),), Role.NUTS, thread=1
     )
     moved = float((bar.origin - arrival.point) @ arrival.normal)
     return Connection(boltings=(bolting,), works=(Work(1, -moved - over),))

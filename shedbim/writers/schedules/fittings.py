@@ -12,7 +12,7 @@ from shedbim.model.plates import Plate
 from shedbim.model.roles import Sort
 from shedbim.model.shed import Shed
 from shedbim.writers.schedules.table import Cell, Column, Table, Total
-from shedbim.writers.schedules.tables import stock_name
+from shedbim.writers.schedules.tables import revision_column, stock_name
 
 __all__ = ["finishes", "fittings", "holes", "part_lists"]
 
@@ -24,6 +24,7 @@ def fittings(shed: Shed) -> Table:
         Column("role"),
         Column("quantity", decimals=0, summed=True),
         Column("stock"),
+        Column("thickness", "mm", 1),
         Column("width", "mm", 1),
         Column("length", "mm", 1),
         Column("grade"),
@@ -33,7 +34,9 @@ def fittings(shed: Shed) -> Table:
         Column("surface total", "m2", 3, summed=True),
         Column("finish"),
         Column("assemblies"),
+        *revision_column(shed),
     )
+    issued = bool(revision_column(shed))
     rows: list[tuple[Cell, ...]] = []
     for part, count, marks in zip(
         shed.parts, shed.quantities.tolist(), shed.part_assembly_marks, strict=True
@@ -42,18 +45,24 @@ def fittings(shed: Shed) -> Table:
             continue
         length, width = _size(part.shape)
         rows.append((
-            part.mark, part.role.word, count, stock_name(part.shape), width, length, part.grade,
-            len(part.shape.holes), part.shape.mass, count * part.shape.mass,
+            part.mark, part.role.word, count, stock_name(part.shape), _thickness(part.shape), width, length,
+            part.grade, len(part.shape.holes), part.shape.mass, count * part.shape.mass,
             count * part.shape.surface / 1e6, part.finish, ", ".join(marks),
+            *([part.revision] if issued else []),
         ))  # fmt: skip
     return Table("Plates and fittings", columns, tuple(rows), (Total("Total"),))
 
 
 def _size(shape: Bar | Plate) -> tuple[float, float]:
-    """Length and width of what a fitting is cut from, mm."""
+    """Length and width of what a fitting is cut from, mm; of a bar, the wider side of its section."""
     if isinstance(shape, Plate):
         return shape.size
-    return shape.length, shape.section.width
+    return shape.length, max(shape.section.width, shape.section.height)
+
+
+def _thickness(shape: Bar | Plate) -> float:
+    """Of a plate, or of the wall that a bar is bolted through, mm."""
+    return shape.thickness if isinstance(shape, Plate) else shape.section.profile.thickness
 
 
 def holes(shed: Shed) -> Table:
