@@ -10,7 +10,7 @@ from pydantic.fields import FieldInfo
 
 from shedbim.description.models import Description
 from shedbim.description.paths import target
-from shedbim.fields import Kind, OneOf, Options
+from shedbim.fields import Groups, Kind, OneOf, Options
 from shedbim.fields.kind import LEFT_OUT
 
 __all__ = ["FieldRow", "all_fields", "defaults_taken"]
@@ -52,6 +52,8 @@ def _rows(group: type[Options], prefix: str, condition: str) -> Iterator[FieldRo
         explanation = field.description or ""
         if isinstance(here, Kind):
             yield FieldRow(path, here.allowed, _default(field), explanation, condition)
+            if isinstance(here, Groups):
+                yield from _rows(here.kind, f"{path}[].", condition)
         elif isinstance(here, OneOf):
             yield FieldRow(f"{path}.{here.by}", here.allowed, "", explanation, condition)
             for word, kind in here.kinds.items():
@@ -77,7 +79,7 @@ def _default(field: FieldInfo) -> str:
     """What holds where the field is left out; empty where it must be given."""
     if field.is_required():
         return ""
-    return _meaning(field) or str(field.default) or "none"
+    return _meaning(field) or str(field.default or "") or "none"
 
 
 def _meaning(field: FieldInfo) -> str:

@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from typing import get_args
 
 from pydantic.fields import FieldInfo
 
-from shedbim.fields import Kind, OneOf, Options
+from shedbim.fields import Groups, Kind, OneOf, Options
 from shedbim.fields.unions import TAG_SIGN
 
-__all__ = ["Step", "Target", "place_of", "shown_path", "target"]
+__all__ = ["Step", "Target", "place_of", "shown_path", "steps", "target"]
 
 Step = str | int
 
@@ -48,6 +49,9 @@ def place_of(root: type[Options], location: Sequence[Step]) -> tuple[tuple[Step,
             here = here.kinds[step.removeprefix(TAG_SIGN)]
             continue
         path.append(step)
+        if isinstance(here, Groups) and isinstance(step, int):
+            here = here.kind
+            continue
         if isinstance(here, type) and isinstance(step, str):
             around = here
             here = target(here.model_fields[step]) if step in here.model_fields else None
@@ -60,3 +64,9 @@ def shown_path(path: Sequence[Step]) -> str:
     for step in path:
         text += f"[{step}]" if isinstance(step, int) else f".{step}" if text else step
     return text
+
+
+def steps(shown: str) -> tuple[Step, ...]:
+    """The path that ``shown_path`` shows in one word."""
+    found = re.findall(r"\[([0-9]+)\]|([^.\[\]]+)", shown)
+    return tuple(int(number) if number else name for number, name in found)

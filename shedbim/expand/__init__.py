@@ -17,6 +17,7 @@ from shedbim.expand.notes import notes
 from shedbim.expand.purlins import purlins
 from shedbim.expand.rails import gable_rails, rail_depth, side_rails
 from shedbim.expand.stays import stays
+from shedbim.expand.zones import zones
 from shedbim.model.shed import Georeference, ProjectInfo, Shed
 
 __all__ = ["expand"]
@@ -64,4 +65,5 @@ def expand(description: Description) -> Shed:
         finishes=description.finish.meanings,
         defaults=defaults_taken(description),
         notes=notes(description),
+        zones=zones(description.reserved, layout.grid),
     )

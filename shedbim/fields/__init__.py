@@ -1,12 +1,13 @@
 """The kinds of fields a description is made of, below the roof forms, frames and all that has options."""
 
 from shedbim.fields.kind import FieldError, Kind, Options, default, left_out, nearest, required
-from shedbim.fields.lists import Labels, NumbersOr, Repeats
+from shedbim.fields.lists import Groups, Labels, NumbersOr, Repeats
 from shedbim.fields.scalars import (
     COLD_FORMED,
     ROLLED,
     Choice,
     Grade,
+    Number,
     Quantity,
     Text,
     Whole,
@@ -22,8 +23,10 @@ __all__ = [
     "Choice",
     "FieldError",
     "Grade",
+    "Groups",
     "Kind",
     "Labels",
+    "Number",
     "NumbersOr",
     "OneOf",
     "Options",

@@ -1,4 +1,4 @@
-"""Kinds of fields that hold a list: lengths with repeats, labels, numbers with words among them."""
+"""Kinds of fields that hold a list: lengths with repeats, labels, numbers with words among them, groups."""
 
 from __future__ import annotations
 
@@ -8,14 +8,14 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
 
-from pydantic import GetCoreSchemaHandler
+from pydantic import GetCoreSchemaHandler, GetJsonSchemaHandler, ValidationError
 from pydantic_core import CoreSchema, core_schema
 
 from shedbim import units
-from shedbim.fields.kind import FieldError, Kind, as_text, nearest
+from shedbim.fields.kind import ALLOWED, FieldError, Kind, Options, as_text, nearest
 from shedbim.fields.scalars import Quantity, Text, Whole
 
-__all__ = ["Labels", "NumbersOr", "Repeats"]
+__all__ = ["Groups", "Labels", "NumbersOr", "Repeats"]
 
 _REPEAT = re.compile(r"\s*([0-9]{1,6})\s*[x×*]\s+?(.+)|\s*([0-9]{1,6})\s*[x×*](.+)", re.DOTALL)
 
@@ -201,3 +201,48 @@ class NumbersOr(ListKind):
                 {"type": "array", "items": item, "minItems": 1, "uniqueItems": True},
             ]
         }
+
+
+@dataclass(frozen=True)
+class Groups(ListKind):
+    """A list of groups of fields, all of one kind."""
+
+    kind: type[Options]
+    most: int
+
+    @property
+    def allowed(self) -> str:
+        """The fields of a group."""
+        return f"a list of groups of fields: {', '.join(self.kind.model_fields)}; at most {self.most}"
+
+    @property
+    def longest(self) -> int:
+        """As many as there may be."""
+        return self.most
+
+    def item(self, value: object) -> Options:
+        """One group."""
+        try:
+            return self.kind.model_validate(value)
+        except ValidationError:
+            raise FieldError("a group of fields that is not right", self.allowed) from None
+
+    def whole(self, items: Sequence[Any]) -> tuple[Options, ...]:
+        """All groups."""
+        return tuple(items)
+
+    def schema(self) -> dict[str, Any]:
+        """An array of objects."""
+        return {"type": "array", "maxItems": self.most}
+
+    def __get_pydantic_core_schema__(self, source: Any, handler: GetCoreSchemaHandler) -> CoreSchema:
+        """A validator of a list whose items are read as the groups they are, each with its faults in place."""
+        groups = core_schema.list_schema(handler.generate_schema(self.kind))
+        listed = core_schema.no_info_before_validator_function(self._listed, groups)
+        return core_schema.no_info_after_validator_function(self.whole, listed)
+
+    def __get_pydantic_json_schema__(
+        self, schema: CoreSchema, handler: GetJsonSchemaHandler
+    ) -> dict[str, Any]:
+        """An array of the groups' own schema."""
+        return {ALLOWED: self.allowed, **handler(schema), **self.schema()}

@@ -9,7 +9,7 @@ from typing import Any
 from shedbim import units
 from shedbim.fields.kind import FieldError, Kind, as_text, nearest
 
-__all__ = ["COLD_FORMED", "ROLLED", "Choice", "Grade", "Quantity", "Text", "Whole", "WordOr"]
+__all__ = ["COLD_FORMED", "ROLLED", "Choice", "Grade", "Number", "Quantity", "Text", "Whole", "WordOr"]
 
 #: Room for rounding when a value is compared with a bound that was written in another unit.
 _BOUND_ROOM = 1e-9
@@ -109,6 +109,32 @@ class Whole(Kind):
     def schema(self) -> dict[str, Any]:
         """An integer with bounds."""
         return {"type": "integer", "minimum": self.low, "maximum": self.high}
+
+
+@dataclass(frozen=True)
+class Number(Kind):
+    """A number without a unit between two bounds."""
+
+    low: float
+    high: float
+
+    @property
+    def allowed(self) -> str:
+        """The bounds."""
+        return f"a number, {self.low:g} to {self.high:g}"
+
+    def read(self, value: object) -> float:
+        """The number."""
+        text = as_text(value, self.allowed)
+        if not re.fullmatch(r"[+-]?[0-9]{1,9}(?:\.[0-9]{0,9})?", text):
+            raise FieldError("not a number", self.allowed)
+        if not self.low <= float(text) <= self.high:
+            raise FieldError("out of bounds", self.allowed)
+        return float(text)
+
+    def schema(self) -> dict[str, Any]:
+        """A number with bounds."""
+        return {"type": "number", "minimum": self.low, "maximum": self.high}
 
 
 @dataclass(frozen=True)

@@ -7,13 +7,13 @@ description, in which other fields are absent; there it ends where it first miss
 from contextlib import suppress
 
 from shedbim.description.models import Description
-from shedbim.description.rules import layout, secondary, trusses
+from shedbim.description.rules import layout, reserved, secondary, trusses
 from shedbim.description.rules.broken import Broken, Rule
 
 __all__ = ["RULES", "Broken", "Rule", "broken_rules"]
 
 #: Every rule, in the order of the description.
-RULES: tuple[Rule, ...] = (*layout.RULES, *trusses.RULES, *secondary.RULES)
+RULES: tuple[Rule, ...] = (*layout.RULES, *trusses.RULES, *secondary.RULES, *reserved.RULES)
 
 
 def broken_rules(description: Description, *, partly: bool = False) -> list[Broken]:
