@@ -22,7 +22,7 @@ from shedbim.model.joints import JointRun
 from shedbim.model.plates import Plate
 from shedbim.model.roles import Sort
 from shedbim.model.shapes import Shape
-from shedbim.model.shed import Part, Pieces, Shed
+from shedbim.model.shed import Part, Shed
 
 __all__ = ["LEVELS", "at_level"]
 
@@ -76,12 +76,8 @@ def _members_alone(shed: Shed) -> Shed:
     stays = is_member[shed.pieces.part] if len(shed.pieces) else np.zeros(0, bool)
     rows = np.flatnonzero(stays)
     part_number = np.cumsum(is_member) - 1
-    pieces = Pieces(
-        tuple(shed.pieces.keys[row] for row in rows.tolist()),
-        part_number[shed.pieces.part[rows]],
-        shed.pieces.placement[rows],
-        shed.pieces.assembly[rows],
-    )
+    left_over = shed.pieces.only(rows)
+    pieces = replace(left_over, part=part_number[left_over.part])
     piece_number = np.where(stays, np.cumsum(stays) - 1, -1)
     joints = [_bare_joints(run, piece_number[run.pieces]) for run in shed.joints]
     left = tuple(run for run in joints if len(run.pieces))

@@ -18,6 +18,7 @@ from shedbim.model.bars import Bar
 from shedbim.model.joints import JointRun
 from shedbim.model.roles import Role
 from shedbim.model.shapes import Shape
+from shedbim.model.zones import Zone
 
 __all__ = ["Assemblies", "AssemblyType", "Georeference", "Grid", "Part", "Pieces", "ProjectInfo", "Shed"]
 
@@ -29,6 +30,7 @@ class Part:
     Attributes:
         shape: what it is made as, every hole included.
         drawn: what models and pictures show of it where that is less; see ``model.levels``.
+        revision: the issue in which it last changed; empty for what no register knows.
     """
 
     mark: str
@@ -37,6 +39,7 @@ class Part:
     grade: str
     finish: str
     drawn: Shape | None = None
+    revision: str = ""
 
     @property
     def bar(self) -> Bar:
@@ -64,12 +67,31 @@ class Pieces:
         part: (n,) int, index into ``Shed.parts``.
         placement: (n, 3, 4) float, of the part's own frame in building axes.
         assembly: (n,) int, index into ``Shed.assemblies``, -1 for a loose piece.
+        issued: n keys that the pieces had when they were first issued, which their ids are made from; empty where
+            all have the keys they had.
     """
 
     keys: tuple[str, ...]
     part: NDArray[np.int64]
     placement: Placements
     assembly: NDArray[np.int64]
+    issued: tuple[str, ...] = ()
+
+    @property
+    def names(self) -> tuple[str, ...]:
+        """What the ids of the pieces are made from: all different, and the same from issue to issue."""
+        return self.issued or self.keys
+
+    def only(self, rows: NDArray[np.int64]) -> Pieces:
+        """Give the pieces at ``rows`` (m,) alone, in that order."""
+        keys, issued = (tuple(names[row] for row in rows.tolist()) for names in (self.keys, self.names))
+        return Pieces(
+            keys,
+            self.part[rows],
+            self.placement[rows],
+            self.assembly[rows],
+            issued if self.issued else (),
+        )
 
     def __len__(self) -> int:
         return len(self.keys)
@@ -77,11 +99,12 @@ class Pieces:
 
 @dataclass(frozen=True)
 class AssemblyType:
-    """What equal assemblies share: mark, kind (``truss`` or ``frame``) and where it is put together."""
+    """What equal assemblies share: mark, kind (``truss`` or ``frame``), where it is put together, and its revision."""
 
     mark: str
     kind: str
     made: str  # "shop" or "site"
+    revision: str = ""
 
 
 @dataclass(frozen=True, eq=False)
@@ -93,12 +116,19 @@ class Assemblies:
         type: (n,) int, index into ``Shed.assembly_types``.
         placement: (n, 3, 4) float, in building axes.
         parent: (n,) int, index of the assembly this one belongs to, -1 for none. Parents come first.
+        issued: as in ``Pieces``.
     """
 
     keys: tuple[str, ...]
     type: NDArray[np.int64]
     placement: Placements
     parent: NDArray[np.int64]
+    issued: tuple[str, ...] = ()
+
+    @property
+    def names(self) -> tuple[str, ...]:
+        """What the ids of the assemblies are made from."""
+        return self.issued or self.keys
 
     def __len__(self) -> int:
         return len(self.keys)
@@ -148,6 +178,7 @@ class Shed:
         finishes: (finish, what it stands for) of the finishes that parts may name.
         defaults: (field, value) of everything that the description left open.
         notes: sentences a reader must know: what was assumed or simplified.
+        zones: what its steel keeps out of, in the order of the description.
     """
 
     project: ProjectInfo
@@ -161,6 +192,7 @@ class Shed:
     finishes: tuple[tuple[str, str], ...] = ()
     defaults: tuple[tuple[str, str], ...] = ()
     notes: tuple[str, ...] = ()
+    zones: tuple[Zone, ...] = ()
 
     @cached_property
     def quantities(self) -> NDArray[np.int64]:
