@@ -46,7 +46,7 @@ class Source:
         line, column = (node.line, node.column) if at_value else (node.key_line, node.key_column)
         shown = given or (node.shown if is_there else "")
         field = printable(shown_path(path))
-        return Fault(message, field, shown, allowed, tuple(near), self.file, line, column)
+        return Fault(message, field, shown, allowed, tuple(near), node.file or self.file, line, column)
 
     def is_broken(self, path: Sequence[Step]) -> bool:
         """Whether a value on the path has a fault of its own already."""

@@ -46,6 +46,7 @@ class Node:
         items: the items of a list, or None.
         key_line, key_column: where its key begins; as the value where it has none.
         broken: the value cannot be known, and its fault is already noted.
+        file: what its faults name as their file, where that is not the file of the text.
     """
 
     line: int
@@ -56,6 +57,7 @@ class Node:
     key_line: int = 0
     key_column: int = 0
     broken: bool = False
+    file: str = ""
 
     @property
     def value(self) -> Any:
