@@ -4,6 +4,7 @@ The stages, one function each::
 
     description = shedbim.read("store.yaml")              # or DescriptionError with every fault
     shed = shedbim.expand_description(description)       # parts, pieces, assemblies, joints
+    findings = shedbim.check(shed, description.checks.criteria)
     shedbim.write_schedules(shed, "outputs/store")        # or write_model, write_summary, write_outputs
     result = shedbim.build("store.yaml", "outputs/store")  # all of it
 
@@ -15,10 +16,21 @@ from __future__ import annotations
 from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
-from shedbim.errors import DescriptionError, Fault, ModelError, OutputError, ShedbimError, UnknownSection
+from shedbim.errors import (
+    ComparisonError,
+    DescriptionError,
+    Fault,
+    ModelError,
+    OutputError,
+    RegisterError,
+    ShedbimError,
+    UnknownSection,
+)
 from shedbim.version import __version__
 
 if TYPE_CHECKING:
+    from shedbim.checks.checking import check
+    from shedbim.checks.finding import Finding
     from shedbim.description import Description, read, read_text
     from shedbim.expand import expand as expand_description
     from shedbim.model.shed import Shed
@@ -36,18 +48,22 @@ if TYPE_CHECKING:
 
 __all__ = [
     "BuildResult",
+    "ComparisonError",
     "Description",
     "DescriptionError",
     "Fault",
+    "Finding",
     "Imprint",
     "ModelError",
     "OutputError",
+    "RegisterError",
     "Section",
     "Shed",
     "ShedbimError",
     "UnknownSection",
     "__version__",
     "build",
+    "check",
     "expand_description",
     "read",
     "read_text",
@@ -63,10 +79,12 @@ __all__ = [
 _LATE = {
     "BuildResult": ("shedbim.pipeline", "BuildResult"),
     "Description": ("shedbim.description", "Description"),
+    "Finding": ("shedbim.checks.finding", "Finding"),
     "Imprint": ("shedbim.writers.imprint", "Imprint"),
     "Section": ("shedbim.sections.section", "Section"),
     "Shed": ("shedbim.model.shed", "Shed"),
     "build": ("shedbim.pipeline", "build"),
+    "check": ("shedbim.checks.checking", "check"),
     "expand_description": ("shedbim.expand", "expand"),
     "read": ("shedbim.description", "read"),
     "read_text": ("shedbim.description", "read_text"),

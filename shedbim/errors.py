@@ -3,7 +3,9 @@
 ShedbimError
 ├── DescriptionError   the description is refused: one or more faults, each with its place
 ├── UnknownSection     a designation that the catalogue does not hold
+├── ComparisonError    two states of a building cannot be compared: a file is no state of one, or of another kind
 ├── OutputError        results cannot be written where they should go
+├── RegisterError      a register is damaged, or two of them contradict one another
 └── ModelError         a programming error: the expansion broke one of its own promises
 """
 
@@ -12,7 +14,16 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-__all__ = ["DescriptionError", "Fault", "ModelError", "OutputError", "ShedbimError", "UnknownSection"]
+__all__ = [
+    "ComparisonError",
+    "DescriptionError",
+    "Fault",
+    "ModelError",
+    "OutputError",
+    "RegisterError",
+    "ShedbimError",
+    "UnknownSection",
+]
 
 
 class ShedbimError(Exception):
@@ -37,7 +48,10 @@ class Fault:
     def __str__(self) -> str:
         """One paragraph: place, field, what is wrong, what was given, what is allowed, near names."""
         place = f"{self.file}:{self.line}:{self.column}" if self.line else self.file
-        text = ": ".join(part for part in (place, self.field, self.message) if part)
+        field = (
+            "" if place.endswith(f" {self.field}") else self.field
+        )  # a place may be that of the field itself
+        text = ": ".join(part for part in (place, field, self.message) if part)
         if self.given:
             text += f"\n    given:   {self.given}"
         if self.allowed:
@@ -71,10 +85,26 @@ class UnknownSection(ShedbimError):
         super().__init__(f"no section {designation!r} in the catalogue{why}{hint}")
 
 
+class ComparisonError(ShedbimError):
+    """Raised when two states of a building cannot be compared; says which file, and why."""
+
+    exit_code = 2
+
+
 class OutputError(ShedbimError):
     """Raised when results cannot be written; what stood there before is untouched."""
 
     exit_code = 3
+
+
+class RegisterError(ShedbimError):
+    """Raised when a register cannot be relied on; carries what is wrong, line by line. Nothing is changed then."""
+
+    exit_code = 5
+
+    def __init__(self, faults: Sequence[Fault]) -> None:
+        self.faults = tuple(faults)
+        super().__init__("\n".join(str(fault) for fault in self.faults))
 
 
 class ModelError(ShedbimError):

@@ -11,8 +11,8 @@ from typing import TYPE_CHECKING, BinaryIO
 from shedbim.errors import OutputError
 
 if TYPE_CHECKING:
-    from shedbim.model.shed import Shed
-    from shedbim.writers.imprint import Imprint
+    from shedbim.writers.handover import Handover
+    from shedbim.writers.view.shown import ShownChange
 
 __all__ = [
     "LABEL_NAMES",
@@ -49,64 +49,96 @@ class Output:
         file: its file name.
         meaning: what is in it.
         write: writes its bytes to a binary sink.
-        drawn: whether it shows the shed, at the level of detail asked for; lists tell of everything.
+        checked: whether it tells of findings and of nothing else, so that the shed has to be checked for it.
     """
 
     name: str
     group: str
     file: str
     meaning: str
-    write: Callable[[Shed, Imprint, BinaryIO], None]
-    drawn: bool = False
+    write: Callable[[Handover, BinaryIO], None]
+    checked: bool = False
 
 
-def _model(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+def _model(handover: Handover, sink: BinaryIO) -> None:
     from shedbim.writers.ifc import write
 
-    write(shed, sink, schema=imprint.schema, timestamp=imprint.stamp)
+    write(handover.drawn, sink, schema=handover.imprint.schema, timestamp=handover.imprint.stamp)
 
 
-def _mesh(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+def _mesh(handover: Handover, sink: BinaryIO) -> None:
     from shedbim.writers.glb import write
 
-    write(shed, sink, imprint)
+    write(handover.drawn, sink, handover.imprint)
 
 
-def _schedule(module: str, name: str) -> Callable[[Shed, Imprint, BinaryIO], None]:
+def _schedule(module: str, name: str) -> Callable[[Handover, BinaryIO], None]:
     """Give the writer of one schedule as CSV, by the module and function that make its table."""
 
-    def write(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+    def write(handover: Handover, sink: BinaryIO) -> None:
         from importlib import import_module
 
         from shedbim.writers.schedules.csv_text import csv_text
 
-        table = getattr(import_module(f"shedbim.writers.schedules.{module}"), name)(shed)
+        table = getattr(import_module(f"shedbim.writers.schedules.{module}"), name)(handover.shed)
         sink.write(csv_text(table).encode())
 
     return write
 
 
-def _workbook(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+def _passages(handover: Handover, sink: BinaryIO) -> None:
+    from shedbim.writers.schedules.csv_text import csv_text
+    from shedbim.writers.schedules.passages import passages
+
+    sink.write(csv_text(passages(handover.shed, handover.criteria)).encode())
+
+
+def _workbook(handover: Handover, sink: BinaryIO) -> None:
     from shedbim.writers.schedules.workbook import workbook_bytes
 
-    sink.write(workbook_bytes(shed, imprint))
+    groups = None if handover.changes is None else handover.change_groups
+    sink.write(workbook_bytes(handover.shed, handover.imprint, handover.findings, groups))
 
 
-def _summary(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+def _summary(handover: Handover, sink: BinaryIO) -> None:
     from shedbim.writers.summary import summary_text
 
-    sink.write(summary_text(shed, imprint).encode())
+    sink.write(summary_text(handover.shed, handover.imprint, handover.findings).encode())
 
 
-def _view(shed: Shed, imprint: Imprint, sink: BinaryIO) -> None:
+def _view(handover: Handover, sink: BinaryIO) -> None:
     from shedbim.writers.view import write
+    from shedbim.writers.view.found import shown_findings
 
-    write(shed, sink, imprint)
+    shown = shown_findings(handover.shed, handover.findings or (), handover.drawn)
+    changes: list[ShownChange] = []
+    if handover.changes is not None:
+        from shedbim.writers.view.changed import shown_changes
+
+        changes = shown_changes(handover.shed, handover.changes, handover.change_groups, handover.drawn)
+    write(handover.drawn, sink, handover.imprint, findings=shown, changes=changes)
+
+
+def _findings(handover: Handover, sink: BinaryIO) -> None:
+    from shedbim.writers.findings import findings_text
+
+    sink.write(findings_text(handover).encode())
+
+
+def _topics(version: str) -> Callable[[Handover, BinaryIO], None]:
+    """Give the writer of findings as topics, in the form of a version of the standard."""
+
+    def write(handover: Handover, sink: BinaryIO) -> None:
+        from shedbim.writers.bcf import write
+
+        write(handover, sink, version)
+
+    return write
 
 
 OUTPUTS: tuple[Output, ...] = (
-    Output("model", "model", "model.ifc", "the building model", _model, drawn=True),
-    Output("mesh", "mesh", "model.glb", "the model as meshes, for any 3D viewer", _mesh, drawn=True),
+    Output("model", "model", "model.ifc", "the building model", _model),
+    Output("mesh", "mesh", "model.glb", "the model as meshes, for any 3D viewer", _mesh),
     Output("members", "schedules", "members.csv", "members by mark", _schedule("tables", "members")),
     Output(
         "plates", "schedules", "plates.csv", "plates and fittings by mark", _schedule("fittings", "fittings")
@@ -143,6 +175,7 @@ OUTPUTS: tuple[Output, ...] = (
         "totals by section, by role and of everything",
         _schedule("tables", "totals"),
     ),
+    Output("passages", "schedules", "passages.csv", "ducts that pass through the trusses", _passages),
     Output("workbook", "schedules", "schedule.xlsx", "all schedules in one workbook that prints", _workbook),
     Output(
         "view",
@@ -150,17 +183,40 @@ OUTPUTS: tuple[Output, ...] = (
         "view.html",
         "the building in three dimensions, for a browser, as one file",
         _view,
-        drawn=True,
+    ),
+    Output(
+        "findings", "findings", "findings.json", "findings of the checks as data", _findings, checked=True
+    ),
+    Output(
+        "bcf-2.1",
+        "bcf",
+        "findings.bcf",
+        "findings as topics for coordination, BCF 2.1",
+        _topics("2.1"),
+        checked=True,
+    ),
+    Output(
+        "bcf-3.0",
+        "bcf",
+        "findings-3.0.bcf",
+        "findings as topics for coordination, BCF 3.0",
+        _topics("3.0"),
+        checked=True,
     ),
     Output("summary", "summary", "summary.json", "counts, masses, defaults and cautions", _summary),
 )
 
 
-def chosen(names: Sequence[str]) -> tuple[Output, ...]:
+def chosen(names: Sequence[str], *, checked: bool = True) -> tuple[Output, ...]:
     """Give the rows chosen by names or group names, each once and in order; no names choose all.
 
+    Args:
+        names: of outputs or groups.
+        checked: whether the shed was checked; if not, what tells of findings is no part of all.
+
     Raises:
-        OutputError: when a name is neither, with the names there are and the nearest one.
+        OutputError: when a name is neither, with the names there are and the nearest one; when what is chosen tells
+            of findings and the shed was not checked.
     """
     known = list(dict.fromkeys(word for row in OUTPUTS for word in (row.name, row.group)))
     for name in names:
@@ -168,4 +224,11 @@ def chosen(names: Sequence[str]) -> tuple[Output, ...]:
             near = get_close_matches(name, known, 1)
             hint = f"; nearest: {near[0]}" if near else ""
             raise OutputError(f"no output {name!r}; there are: {', '.join(sorted(known))}{hint}")
-    return tuple(row for row in OUTPUTS if not names or row.name in names or row.group in names)
+    if not names:
+        return tuple(row for row in OUTPUTS if checked or not row.checked)
+    rows = tuple(row for row in OUTPUTS if row.name in names or row.group in names)
+    if not checked and (told := [row.name for row in rows if row.checked]):
+        raise OutputError(
+            f"cannot write {', '.join(told)}: the shed was not checked, so there are no findings"
+        )
+    return rows

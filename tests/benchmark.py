@@ -2,6 +2,8 @@
 
     python tests/benchmark.py             stages, exponents, memory, bytes, ratio to one entity at a time
     python tests/benchmark.py --receiver  besides: what opening and meshing the model costs a receiver
+    python tests/benchmark.py --clash     only the clash check: see clash_benchmark.py
+    python tests/benchmark.py --compare   only comparing and watching: see compare_benchmark.py
 
 Times are medians of runs in one process on one machine: quote their ratios, not the times.
 """
@@ -24,6 +26,8 @@ from pathlib import Path
 from typing import Any
 
 import numpy as np
+from clash_benchmark import clash_costs
+from compare_benchmark import compare_costs, watch_costs
 
 from shedbim.description import read_text
 from shedbim.expand import assembling, expand, shop
@@ -255,7 +259,17 @@ def main() -> None:
     arguments = argparse.ArgumentParser(description=__doc__)
     arguments.add_argument("--receiver", action="store_true")
     arguments.add_argument("--largest", type=int, default=350_000, choices=list(_SIZES))
+    arguments.add_argument("--clash", action="store_true")
+    arguments.add_argument("--fittings", action="store_true", help="with --clash: with fittings too")
+    arguments.add_argument("--compare", action="store_true")
     chosen = arguments.parse_args()
+    if chosen.compare:
+        compare_costs(description_text, 2, 140)
+        watch_costs(_PRESET)
+        return
+    if chosen.clash:
+        clash_costs(description_text, fittings=chosen.fittings)
+        return
     watched = Watched((assembling, "group_parts"), (shop, "group_assemblies"))
     rows = [stages(size, watched) for size in _SIZES if size <= chosen.largest]
     for name in rows[0]:

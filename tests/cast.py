@@ -10,6 +10,7 @@ from io import BytesIO, StringIO
 from pathlib import Path
 from typing import Any
 
+from keeping import kept
 from ruamel.yaml import YAML
 
 from shedbim.description import Description, read_text
@@ -21,6 +22,7 @@ from shedbim.writers.ifc import write
 __all__ = [
     "CAST",
     "PRESETS",
+    "SHORT",
     "TINY",
     "changed",
     "described",
@@ -28,6 +30,7 @@ __all__ = [
     "members_of",
     "model_bytes",
     "shed_of",
+    "shortened",
     "text_of",
 ]
 
@@ -145,6 +148,17 @@ PRESETS: dict[str, str] = {
     path.stem: path.read_text(encoding="utf-8") for path in sorted(_FOLDER.glob("*.yaml"))
 }
 TINY: dict[str, str] = {"lopsided": _LOPSIDED, "valley": _VALLEY, "lean": _LEAN, "flat": _FLAT}
+#: Presets with fewer bays and spans: the same kinds of parts and joints, fewer of each.
+SHORT: dict[str, dict[str, Any]] = {
+    "boat-hall": {"building__bays": ["5.5 m", "6.4 m", "6.4 m", "5.9 m"], "bracing__bays": ["first", "last"]},
+    "depot": {"building__bays": ["6.3 m", "7.2 m", "6.6 m", "5.8 m"]},
+    "distribution-hall": {
+        "building__bays": ["6.5 m", "6 m", "7.5 m"],
+        "building__spans": ["30 m", "28.5 m"],
+    },
+    "packing-house": {"building__bays": ["6.2 m", "6.8 m", "6.4 m", "6 m"]},
+    "seed-store": {"building__bays": ["7 m", "2 x 5.75 m", "7 m"]},
+}
 #: Names of all specimens.
 CAST: tuple[str, ...] = (*TINY, *PRESETS)
 
@@ -177,12 +191,18 @@ def members_of(name: str) -> Shed:
     return at_level(shed_of(name), "outline")
 
 
-@cache
+@kept
 def model_bytes(name: str, schema: str = "IFC4") -> bytes:
     """Give the model file of a specimen as it is written with every bolt and hole."""
     sink = BytesIO()
     write(shed_of(name), sink, schema=schema)
     return sink.getvalue()
+
+
+@cache
+def shortened(name: str) -> Shed:
+    """Give the building of a specimen with fewer bays where it has many; see ``SHORT``."""
+    return expand(changed(name, **SHORT[name])) if name in SHORT else shed_of(name)
 
 
 def changed(name: str, **fields: Any) -> Description:

@@ -15,7 +15,7 @@ from shedbim.fasteners.distances import least_edge, least_pitch, wrench_pitch, w
 from shedbim.fasteners.holes import hole_diameter
 from shedbim.model.joints import At
 
-__all__ = ["faults", "shape_of"]
+__all__ = ["faults", "shape_of", "wrenches"]
 
 #: Solids share less than this, mm3: the chords that stand for arcs touch one another.
 _SHARED = 60.0
@@ -36,7 +36,7 @@ def faults(joint: Joint, made: Connection, *, walls: bool = True) -> list[str]:
             found.append(f"the weld of {weld.between} is too small")
     for bolting in made.boltings:
         found += _bolts(bolting, whole)
-        found += _wrenches(bolting, whole) if walls else []
+        found += wrenches(bolting, whole) if walls else []
     found += _loose(joint, made)
     for number, met in enumerate(joint.neighbours):
         place = met.frame[:, 3] + met.into * 5.0
@@ -75,8 +75,8 @@ def _bolts(bolting: Bolting, whole: dict[Ref, Manifold]) -> Iterator[str]:
             depth += layer.thickness
 
 
-def _wrenches(bolting: Bolting, whole: dict[Ref, Manifold]) -> Iterator[str]:
-    """A socket fits over head and nut."""
+def wrenches(bolting: Bolting, whole: dict[Ref, Manifold]) -> Iterator[str]:
+    """What stands in the way of a socket over a head or nut, in words."""
     d = bolting.fastener.diameter
     through = sum(layer.thickness for layer in bolting.layers)
     high = 0.4 * d + 20.0 / d

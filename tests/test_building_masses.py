@@ -16,7 +16,7 @@ import pytest
 
 from shedbim.model.bolt_groups import BoltGroup
 from shedbim.outputs import OUTPUTS, SCHEMAS
-from shedbim.writers.imprint import Imprint
+from shedbim.writers.handover import Handover
 
 #: kg/mm³: EN 1991-1-1 Table A.4 and the section tables: 7 850 kg/m³.
 DENSITY = 7850e-9
@@ -34,7 +34,7 @@ def rows(name: str, output: str) -> list[dict[str, str]]:
     """The rows of a schedule as a spreadsheet reads them."""
     (row,) = [each for each in OUTPUTS if each.name == output]
     sink = io.BytesIO()
-    row.write(cast.shed_of(name), Imprint(), sink)
+    row.write(Handover(cast.shed_of(name)), sink)
     return list(csv.DictReader(io.StringIO(sink.getvalue().decode("utf-8-sig"))))
 
 

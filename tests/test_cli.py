@@ -4,11 +4,14 @@ from __future__ import annotations
 
 import hashlib
 import json
+import pickle
 import re
 import shlex
 import subprocess
 import sys
 import tomllib
+from collections.abc import Callable
+from functools import cache
 from pathlib import Path
 
 import jsonschema
@@ -18,12 +21,16 @@ from typer.main import get_command
 
 import shedbim
 from shedbim import errors, outputs, pipeline
+from shedbim.checks.checking import check
+from shedbim.checks.finding import Finding
 from shedbim.cli import commands, main, speech
 from shedbim.cli.guard import EXIT_CODES
 from shedbim.cli.tables import show_table
 from shedbim.description import presets
 from shedbim.description.listing import all_fields
+from shedbim.expand import expand
 from shedbim.model import levels
+from shedbim.model.shed import Pieces, Shed
 from shedbim.sections.catalogue import designations, families
 from shedbim.writers import ifc
 from shedbim.writers.imprint import CAUTIONS
@@ -89,8 +96,36 @@ class Shell:
         return {path.name: path.read_bytes() for path in sorted((self.folder / folder).glob("*"))}
 
 
+@cache
+def expanded(description: bytes) -> Shed:
+    """The shed of a description as it was pickled, expanded once for all tests."""
+    return expand(pickle.loads(description))
+
+
+#: What the checks of a shed found, and what they told as they went, by its pieces, its notes and the criteria.
+LOOKED_AT: dict[tuple[Pieces, tuple[str, ...], bytes], tuple[list[Finding], list[str]]] = {}
+
+
+def checked(
+    shed: Shed, criteria: object, *, others: tuple[object, ...], tell: Callable[[str], None]
+) -> list[Finding]:
+    """Check as the pipeline does, each shed once for all tests."""
+    if others:
+        return list(check(shed, criteria, others=others, tell=tell))
+    which = (shed.pieces, shed.notes, pickle.dumps(criteria))
+    if which not in LOOKED_AT:
+        told: list[str] = []
+        LOOKED_AT[which] = list(check(shed, criteria, tell=told.append)), told
+    found, told = LOOKED_AT[which]
+    for name in told:
+        tell(name)
+    return found
+
+
 @pytest.fixture
 def shell(tmp_path, monkeypatch, capsys) -> Shell:
+    monkeypatch.setattr(pipeline, "expand", lambda description: expanded(pickle.dumps(description)))
+    monkeypatch.setattr(pipeline, "check", checked)
     (tmp_path / "barn.yaml").write_text(BARN, encoding="utf-8")
     return Shell(tmp_path, monkeypatch, capsys)
 
@@ -237,7 +272,7 @@ def test_build_writes_every_output_and_tells_a_person_what_came_out(shell):
     assert set(made) == {
         "model.ifc", "model.glb", "members.csv", "plates.csv", "bolts.csv", "anchors.csv", "welds.csv", "holes.csv",
         "assemblies.csv", "part-lists.csv", "finishes.csv", "sections.csv", "schedule.xlsx", "view.html",
-        "summary.json",
+        "findings.json", "findings.bcf", "findings-3.0.bcf", "summary.json",
     }  # fmt: skip
     told = json.loads(made["summary.json"])
     assert out.startswith("2417 Grün [bold]Store[/] =1+1, revision P01\n")  # a user's text is only text
@@ -286,13 +321,17 @@ def test_only_the_chosen_outputs_are_written_and_where_one_wants(shell):
     assert not (shell.folder / "outputs").exists()
 
 
-def test_the_same_input_gives_the_same_bytes_and_another_time_stamp_others(shell):
-    for folder, stamp in (("a", STAMP[1]), ("b", "2024-05-17T11:30:00+02:00"), ("c", "2024-05-17T09:30:01")):
+def test_the_same_input_gives_the_same_bytes_and_another_time_stamp_others(shell, monkeypatch):
+    for folder, stamp in (("c", "2024-05-17T09:30:01"), ("a", STAMP[1]), ("b", "2024-05-17T11:30:00+02:00")):
         shell.ok("build", "barn.yaml", "-q", "--out", folder, "--time-stamp", stamp)
+        monkeypatch.setattr(pipeline, "expand", expand)  # anew from here on, and with it the checks
     first, second, third = (shell.contents(folder) for folder in "abc")
     assert first == second
     changed = {name for name in first if first[name] != third[name]}
-    assert changed == {"model.ifc", "model.glb", "schedule.xlsx", "view.html", "summary.json"}
+    assert changed == {
+        "model.ifc", "model.glb", "schedule.xlsx", "view.html", "summary.json",
+        "findings.json", "findings.bcf", "findings-3.0.bcf",
+    }  # fmt: skip
 
 
 @pytest.mark.parametrize("schema", outputs.SCHEMAS)
@@ -305,7 +344,6 @@ def test_the_schema_is_the_one_asked_for(shell, schema):
 
 def test_the_levels_are_those_of_the_model():
     assert set(outputs.LEVEL_NAMES) == set(levels.LEVELS)
-    assert {row.name for row in outputs.OUTPUTS if row.drawn} == {"model", "mesh", "view"}
 
 
 def test_the_level_is_that_of_models_and_lists_tell_of_everything(shell):

@@ -59,8 +59,7 @@ def test_every_fitting_and_fastener_has_a_use_in_the_cast():
         Role.SHEAR_KEY,
         Role.SEAT,
         Role.SLEEVE,
-        Role.SPLICE_PLATE,
-    }  # by option, or for chords of angles
+    }  # by option
     assert {role for role in Role if role.sort is not Sort.MEMBER} - seen <= optional
 
 

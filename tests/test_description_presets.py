@@ -80,4 +80,4 @@ def test_the_packages_that_are_installed_are_the_folders_with_modules() -> None:
     expected = {".".join(folder.parts) for folder in folders} | {"shedbim.presets"}
     assert set(setup["packages"]) == expected
     assert setup["package-dir"]["shedbim.presets"] == "presets"
-    assert setup["package-data"]["shedbim.presets"] == ["*.yaml"]
+    assert setup["package-data"]["shedbim.presets"] == ["*.yaml", "services/*.ifc"]

@@ -55,6 +55,12 @@ BROKEN = [
      [("L 90x90x8", "L 120x120x12")], "sticks out"),
     ("wall_braces_fit_the_columns", "bracing.walls.section", "howe-valleys",
      [("HEA 320", "HEA 100"), ("CHS 114.3x5", "CHS 88.9x4")], "sticks out"),
+    ("zones_are_boxes_or_in_a_wall", "reserved[0]", "warren-gable",
+     [("\npurlins:", "\nreserved: [{name: d, kind: door, line: A, z: [0 m, 4 m]}]\n\npurlins:")],
+     "does not say where it is"),
+    ("zones_have_names_of_their_own", "reserved[1].name", "warren-gable",
+     [("\npurlins:", "\nreserved:\n  - {name: d, kind: free, x: [A, B], y: [1, 2], z: [0 m, 4 m]}\n"
+       "  - {name: d, kind: free, x: [A, B], y: [2, 3], z: [0 m, 4 m]}\n\npurlins:")], "two zones"),
 ]  # fmt: skip
 
 

@@ -76,6 +76,8 @@ def test_every_field_of_the_list_is_in_the_schema_with_its_words() -> None:
             walk(SCHEMA["$defs"][schema["$ref"].rpartition("/")[2]], path)
         for choice in (*schema.get("oneOf", ()), *schema.get("anyOf", ())):
             walk(choice, path)
+        if isinstance(schema.get("items"), dict):
+            walk(schema["items"], f"{path}[]")
         for name, field in schema.get("properties", {}).items():
             inner = f"{path}.{name}".removeprefix(".")
             found[inner] = found.get(inner, "") + field.get("description", "")

@@ -33,7 +33,11 @@ def test_readme_lists_every_field() -> None:
 
 def test_readme_commands_name_presets_that_exist() -> None:
     text = readme_fields.README.read_text(encoding="utf-8")
-    assert set(re.findall(r"presets/[\w.-]+", text)) == {"presets/seed-store.yaml", "presets/seed-store.png"}
+    assert set(re.findall(r"presets/[\w.-]+", text)) == {
+        "presets/seed-store.yaml",
+        "presets/seed-store.png",
+        "presets/services",
+    }
     assert (ROOT / "presets" / "seed-store.yaml").exists()
     assert (ROOT / "presets" / "seed-store.png").exists()
 

@@ -16,6 +16,7 @@ from shedbim.expand.sticks import along, stick
 from shedbim.model.joints import At, JointKind
 from shedbim.model.roles import Role
 from shedbim.sections.catalogue import section
+from shedbim.sections.profiles import IShape
 
 COLUMNS = ["HEB 300", "IPE 450", "W 310x60", "SHS 250x250x10", "RHS 300x200x10", "CHS 273x10"]
 PITCHES = [-32.0, -6.0, 0.0, 4.5, 18.0]
@@ -54,6 +55,9 @@ def test_the_cap_keeps_within_the_faces_and_under_the_old_head(name, pitch):
     assert (box[3:5] <= half + 1e-6).all()
     # Not more than a step and the inset of a tube's wall short of them.
     assert (box[3:5] >= half - 5.0 - section(name).profile.thickness).all()
+    if isinstance(section(name).profile, IShape):
+        # End plates are drawn up to the faces of flanges: 2 mm of air at least (common practice).
+        assert min(half[0] - box[3], half[0] + box[0]) >= 2.0 - 1e-6
     # Upper face in the plane that the column ended with.
     heights = np.array([p[2] - p[0] * tan(radians(pitch)) for p in cap.to_mesh().vert_properties])
     assert heights.max() == pytest.approx(0.0, abs=1e-3)

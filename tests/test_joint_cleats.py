@@ -141,9 +141,9 @@ def test_a_mirrored_rail_gives_a_mirrored_cleat():
         assert distance.min(axis=0).max() < 1e-6
 
 
-def corners(made) -> np.ndarray:
-    """The corners of both faces of the cleat (2 n, 3)."""
-    plate = fitting(made)
+def corners(made, name="cleat") -> np.ndarray:
+    """The corners of both faces of a fitting (2 n, 3)."""
+    plate = fitting(made, name)
     flat = [(x, y, z) for x, y in plate.shape.corners for z in (0.0, plate.shape.thickness)]
     return apply(plate.frame, flat)
 
@@ -176,12 +176,36 @@ def test_a_cleat_beside_its_column_stands_on_a_seat():
         made = cleat(JOINTS[name], OPTIONS)
         seat = fitting(made, "seat")
         assert seat.role is Role.SEAT
-        assert seat.shape.thickness == 8.0
+        assert seat.shape.thickness == 6.0
+        pack = fitting(made, "pack")
+        assert pack.shape.thickness == 2.0
         assert {frozenset(weld.between) for weld in made.welds} == {
             frozenset(("seat", "cleat")),
-            frozenset((0, "seat")),
+            frozenset(("pack", "seat")),
+            frozenset((0, "pack")),
         }
     assert [f.name for f in cleat(JOINTS["column head"], OPTIONS).fittings] == ["cleat"]
+
+
+@pytest.mark.parametrize(
+    "name", ["beside a column head", "beside a head that falls", "C beside a column head"]
+)
+def test_a_seat_passes_over_what_runs_up_to_the_column(name):
+    """2 to 3 mm of air over the steel beside the head (common practice), which is as high as the head."""
+    joint = JOINTS[name]
+    column, made = joint.members[0], cleat(joint, OPTIONS)
+    up = joint.members[1].z
+    head = float(column.point(column.to_end, 0.0, 0.0) @ up)
+    for word, low, high in (("pack", 0.0, 2.0), ("seat", 2.0, 8.0)):
+        plate = fitting(made, word)
+        levels = [
+            float(apply(plate.frame, [(*corner, z)])[0] @ up) - head
+            for corner in plate.shape.corners
+            for z in (0.0, plate.shape.thickness)
+        ]
+        assert (min(levels), max(levels)) == pytest.approx((low, high), abs=1e-6)
+    across = np.array([column.local(point)[2] for point in corners(made, "pack")])
+    assert np.abs(across).max() < column.section.height / 2 - 2.0
 
 
 def test_steep_valleys_leave_a_stub():

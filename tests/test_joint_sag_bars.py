@@ -6,7 +6,7 @@ from math import cos, radians, sin
 
 import numpy as np
 import pytest
-from joint_bench import bench, faults, met, mirrored
+from joint_bench import bench, cylinder, faults, met, mirrored
 
 from shedbim.description import read_text
 from shedbim.description.connections import Connections
@@ -118,6 +118,20 @@ def test_a_bar_over_a_ridge_ends_on_plates(name, pitch):
         solids = bench(joint, made).drilled
         assert solids[0].min_gap(solids["end plate"], 5.0) == pytest.approx(0.0, abs=1e-3)
         assert len(made.boltings[0].points) == 2
+
+
+@pytest.mark.parametrize("pitch", [6.0, 18.4, 30.0, 45.0])
+@pytest.mark.parametrize("bar", ["RD 12", "RD 16"])
+def test_a_wrench_on_the_bolts_passes_the_bar_that_leans_over_them(pitch, bar):
+    """M12: 16 mm beside the axis, from a data handbook (fasteners/data/distances.csv); heads of 7.5 mm (ISO 4017)."""
+    a = radians(pitch)
+    lower, upper = course(-150 * cos(a), 0, pitch), course(150 * cos(a), 0, pitch, falls=True)
+    for joint in ends(lower, upper, "Z 200x75x20x2.5", bar):
+        made = sag_bar_end(joint, OPTIONS)
+        solids, (bolting,) = bench(joint, made).drilled, made.boltings
+        for point in bolting.points:
+            room = cylinder(point, -bolting.axis, 2 * 16.0, 7.5 + 10.0)
+            assert (room ^ solids[1]).volume() < 1.0
 
 
 def test_a_low_ridge_is_passed_straight():

@@ -88,10 +88,10 @@ def test_the_worst_node_is_sought_among_nodes_only_and_in_every_run_of_them():
 
 
 def test_every_key_is_explained_and_every_explained_key_is_there():
-    told = summary(shed(), STAMP)
+    told = summary(shed(), STAMP, ())
     found = {path: documented(path) for path in paths(told)}
     assert None not in found.values(), found
-    parents = {"largest_node_eccentricity"}  # explained for the case that it is null
+    parents = {"largest_node_eccentricity", "findings"}  # explained for the case that they are null
     assert set(found.values()) | parents == {key for key, _ in KEYS}
     without = summary(shed(joints=()), STAMP)
     assert None not in {documented(path) for path in paths(without) if path != "joint_kinds"} - {

@@ -23,7 +23,10 @@ def figure(value: float | None, unit: str) -> str:
     """Give a value as text with its unit: mm as mm or m, mm³ as cm³, rad as deg, kg as kg or t, a share as %."""
     if value is None:
         return "?"
-    text = f"{in_unit(value, unit):,.{UNITS[unit][1]}f}"
+    shown = in_unit(value, unit)
+    # Ratios are told to three or four figures, as slenderness and shares of a depth are.
+    decimals = UNITS[unit][1] if unit or abs(shown) < 100 else 0
+    text = f"{shown:,.{decimals}f}"
     if not unit:
         text = text.rstrip("0").rstrip(".") if "." in text else text
     return f"{text} {unit}".strip()

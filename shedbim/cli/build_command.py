@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 import sys
-from collections.abc import Iterator
+from collections.abc import Iterator, Sequence
 from datetime import UTC, datetime
 from pathlib import Path
 from textwrap import wrap
 
+from shedbim.checks.finding import Finding
+from shedbim.cli.findings_text import counts_line
 from shedbim.cli.speech import complain, say, show_json, stage_line
 from shedbim.model.shed import Shed
 from shedbim.outputs import OUTPUTS
@@ -20,6 +22,9 @@ __all__ = ["report", "run"]
 
 _WIDTH = 100  # characters of a line of the report
 
+#: Groups with many fields that have a rule each.
+_BY_RULE = ("connections", "checks")
+
 
 def run(
     file: Path,
@@ -29,6 +34,8 @@ def run(
     outputs: tuple[str, ...],
     moment: datetime | None,
     *,
+    settings: Sequence[str],
+    checks: bool,
     as_json: bool,
     quiet: bool,
 ) -> None:
@@ -36,6 +43,8 @@ def run(
 
     Args:
         moment: the time stamp of the outputs; now where not given.
+        settings: fields set over those of the file, each as ``path=value``.
+        checks: whether the shed is checked.
 
     Raises:
         ShedbimError: as ``pipeline.build``.
@@ -44,15 +53,17 @@ def run(
     result = build(
         file,
         out,
+        settings=settings,
         schema=schema,
         level=level,
         outputs=outputs,
+        checks=checks,
         timestamp=moment or datetime.now(UTC),
         progress=stage_line if watched else None,
     )
     if as_json:
         files = {name: str(path) for name, path in result.files.items()}
-        show_json({**summary(result.shed, result.imprint), "files": files})
+        show_json({**summary(result.shed, result.imprint, result.findings), "files": files})
     elif not quiet:
         for line in report(result):
             say(line)
@@ -86,18 +97,36 @@ def report(result: BuildResult) -> Iterator[str]:
     if missed := summary(shed, result.imprint)["largest_node_eccentricity"]:
         yield ""
         yield f"  axes at truss nodes miss the chord axis by {abs(missed['mm']):.0f} mm at most: {missed['pieces'][0]}"
+    if result.findings is not None:
+        yield from _listed("Checks:", _check_lines(shed, result.findings))
     yield from _listed("Left open, so by default:", _default_lines(shed))
     yield from _listed("Notes:", shed.notes)
     yield from _listed("Cautions:", CAUTIONS)
     yield from _listed(f"Written to {result.folder}:", _file_lines(result))
 
 
+def _check_lines(shed: Shed, findings: Sequence[Finding]) -> list[str]:
+    """How many findings there are, and each severe one."""
+    severe = [f"{each.code.name}: {each.says}" for each in findings if each.severe]
+    told = "; `shedbim check` tells of each" if findings else ""
+    return [f"{counts_line(findings)}{told}", *severe]
+
+
 def _default_lines(shed: Shed) -> list[str]:
-    """What was left open: each field, but those of the connections in one line, for they are many."""
-    inside = [field for field, _ in shed.defaults if field.startswith("connections")]
-    lines = [f"{field}: {value}" for field, value in shed.defaults if field not in inside]
-    if inside:
-        lines.append(f"connections: {len(inside)} fields by rule; `shedbim fields connections` lists them")
+    """What was left open: each field, but those of the big groups in one line, for they are many."""
+    lines = []
+    groups: dict[str, int] = dict.fromkeys(_BY_RULE, 0)
+    for field, value in shed.defaults:
+        group = next((name for name in _BY_RULE if field.startswith(f"{name}.")), None)
+        if group is None:
+            lines.append(f"{field}: {value}")
+        else:
+            groups[group] += 1
+    lines += [
+        f"{group}: {count} fields by rule; `shedbim fields {group}` lists them"
+        for group, count in groups.items()
+        if count
+    ]
     return lines
 
 

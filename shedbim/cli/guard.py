@@ -19,6 +19,8 @@ EXIT_CODES: tuple[tuple[int, str], ...] = (
     (1, "a fault of the program that nobody foresaw: please report the traceback"),
     (2, "a description, a section name or the command itself is refused"),
     (3, "outputs cannot be written; what stood there is untouched"),
+    (4, "checked, and a severe finding is open"),
+    (5, "a register is damaged, or two of them contradict one another"),
     (70, "a fault of the program that it found itself: please report it"),
     (130, "interrupted; what stood there is untouched"),
 )

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from functools import partial
 from pathlib import Path
 from typing import BinaryIO
@@ -10,7 +11,7 @@ from shedbim.cli.speech import say
 from shedbim.errors import OutputError
 from shedbim.model.levels import at_level
 from shedbim.outputs import PICTURE_ENDINGS
-from shedbim.pipeline import read_and_expand
+from shedbim.pipeline import default_folder, read_and_expand
 from shedbim.saving import save
 from shedbim.writers.pictures.views import render_view
 
@@ -23,6 +24,7 @@ def run(
     of: str | None,
     out: Path | None,
     *,
+    settings: Sequence[str],
     width: int,
     height: int,
     labels: str | None,
@@ -34,6 +36,7 @@ def run(
 
     Args:
         file: the description.
+        settings: fields set over those of the file, each as ``path=value``; the caption tells of them.
         view: its name.
         of: what it shows, where it asks for that.
         out: the picture; a PNG file beside the description's outputs where not given.
@@ -47,12 +50,12 @@ def run(
     Raises:
         ShedbimError: when the description, the view or the place of the picture is refused.
     """
-    target = out or Path("outputs") / file.stem / f"{view}.png"
+    target = out or default_folder(file, settings) / f"{view}.png"
     form = target.suffix.removeprefix(".").lower()
     if form not in PICTURE_ENDINGS:
         endings = " or ".join(f".{ending}" for ending in PICTURE_ENDINGS)
         raise OutputError(f"a picture is a file that ends in {endings}, not {target.name!r}")
-    _, shed, _ = read_and_expand(file)
+    _, shed, _ = read_and_expand(file, settings=settings)
     data = render_view(
         at_level(shed, level),
         view,
@@ -63,6 +66,7 @@ def run(
         labels=labels,
         highlight=highlight,
         caption=caption,
+        remark=f"what if {', '.join(settings)}" if settings else "",
     )
     save(target.parent, {target.name: partial(_write, data)})
     say(f"Written to {target}")

@@ -7,13 +7,16 @@ from uuid import UUID, uuid5
 
 from shedbim import units
 from shedbim.description.bracing import Bracing, EavesStrut, RoofBracing, Struts, Ties, WallBracing
+from shedbim.description.checks import Checks
 from shedbim.description.connections import BoltOptions, Connections
 from shedbim.description.gable_systems import GABLE_SYSTEMS, GableSystem, RafterGable, SameGable
+from shedbim.description.reserved import MOST_ZONES, Reserved
 from shedbim.description.roof_systems import ROOF_SYSTEMS, RafterRoof, RoofSystem, TrussRoof
 from shedbim.description.secondary import Purlins, Rails
 from shedbim.fields import (
     ROLLED,
     Choice,
+    Groups,
     Labels,
     OneOf,
     Options,
@@ -35,6 +38,7 @@ __all__ = [
     "BoltOptions",
     "Bracing",
     "Building",
+    "Checks",
     "Columns",
     "Connections",
     "Description",
@@ -47,6 +51,7 @@ __all__ = [
     "RafterGable",
     "RafterRoof",
     "Rails",
+    "Reserved",
     "RoofBracing",
     "RoofForm",
     "RoofSystem",
@@ -185,6 +190,10 @@ class Description(Options):
     bracing: Bracing = required("bracing of roof and walls")
     connections: Connections = default({}, "how the steel is fastened together")
     finish: Finish = default({}, "protection of the steel")
+    reserved: Annotated[tuple[Reserved, ...], Groups(Reserved, MOST_ZONES)] = default(
+        (), "zones that are kept free of steel"
+    )
+    checks: Checks = default({}, "what the checks hold the shed against")
 
     @property
     def project_id(self) -> UUID:

@@ -58,10 +58,11 @@ def change_groups(changes: Changes) -> tuple[ChangeGroup, ...]:
     told = _Told(changes)
     found: list[ChangeGroup] = []
     for (kind, role), ways in told.sorted_out().items():
+        together = ways
         if len(ways) > _MOST_WAYS:
-            rows = np.concatenate(list(ways.values()))
-            ways = {told.ways(kind, rows, len(ways)): rows}
-        found += [told.group(kind, role, way, rows) for way, rows in ways.items()]
+            rows = np.sort(np.concatenate(list(ways.values())))
+            together = {told.ways(kind, rows, len(ways)): rows}
+        found += [told.group(kind, role, way, rows) for way, rows in together.items()]
     return tuple(sorted(found, key=lambda each: (_ORDER.index(each.kind), -each.mass, each.says)))
 
 
@@ -114,7 +115,8 @@ class _Told:
         flags = self.changes.kinds[rows]
         kind = np.argmax([(flags & np.uint8(each)) > 0 for each in _ORDER], axis=0)
         # Rows alike in all that the words are made of are put into words once.
-        old = np.where(self.changes.old[rows] >= 0, self.changes.before.thing[self.changes.old[rows]], -1)
+        old, stood = np.full(len(rows), -1), self.changes.old[rows] >= 0
+        old[stood] = self.changes.before.thing[self.changes.old[rows[stood]]]
         step = np.rint(self.changes.moved[rows]).astype(np.int64)
         step[kind != _ORDER.index(Kind.MOVED)] = 0
         alike = np.column_stack([kind, old, self.thing[rows], step])
@@ -124,7 +126,7 @@ class _Told:
         found: dict[tuple[Kind, str], dict[str, list[Ints]]] = defaultdict(lambda: defaultdict(list))
         for number, (kind_number, was, now, *moved) in enumerate(different.tolist()):
             one, thing = _ORDER[kind_number], self.things[now]
-            way = _way(one, self.changes.before.things[was], thing, moved)
+            way = _way(one, self.things[was], thing, moved)
             found[one, thing.role][way].append(rows[order[edges[number] : edges[number + 1]]])
         return {
             group: {way: np.sort(np.concatenate(some)) for way, some in ways.items()}

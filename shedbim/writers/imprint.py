@@ -30,9 +30,11 @@ class Imprint:
     Attributes:
         timestamp: when it was made, with its time zone.
         schema: the schema of the model file, for example ``IFC4``.
-        digest: SHA-256 of the description's bytes as 64 hexadecimal digits, or empty when there was no file.
+        digest: SHA-256 of the description's bytes as 64 hexadecimal digits, or empty when there was no file;
+            each setting follows the bytes after a zero byte.
         version: of the program.
         level: the level of detail that the models show.
+        settings: the fields set over those of the file for this run, each as ``path=value``.
     """
 
     timestamp: datetime = UNDATED
@@ -40,6 +42,7 @@ class Imprint:
     digest: str = ""
     version: str = __version__
     level: str = "coordination"
+    settings: tuple[str, ...] = ()
 
     @property
     def stamp(self) -> str:

@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 import json
+from collections.abc import Iterable
 from typing import Any
 
 import numpy as np
 
+from shedbim.checks.finding import Finding
 from shedbim.model.joints import JointKind, JointRun
 from shedbim.model.shed import Shed
+from shedbim.writers.finding_words import counts
 from shedbim.writers.imprint import CAUTIONS, Imprint
 from shedbim.writers.schedules.tables import by_role
 from shedbim.writers.summary_keys import KEYS
@@ -16,8 +19,8 @@ from shedbim.writers.summary_keys import KEYS
 __all__ = ["KEYS", "summary", "summary_text"]
 
 
-def summary(shed: Shed, imprint: Imprint) -> dict[str, Any]:
-    """Give the summary as plain data with the keys of ``KEYS`` in their order."""
+def summary(shed: Shed, imprint: Imprint, findings: Iterable[Finding] | None = None) -> dict[str, Any]:
+    """Give the summary as plain data with the keys of ``KEYS`` in their order; no findings where not checked."""
     project = shed.project
     return {
         "program": "shedbim",
@@ -25,6 +28,7 @@ def summary(shed: Shed, imprint: Imprint) -> dict[str, Any]:
         "time_stamp": imprint.stamp,
         "schema": imprint.schema,
         "description_sha256": imprint.digest,
+        "settings": list(imprint.settings),
         "project": {
             "id": project.id,
             "name": project.name,
@@ -41,15 +45,16 @@ def summary(shed: Shed, imprint: Imprint) -> dict[str, Any]:
         "roles": _roles(shed),
         "joint_kinds": _joint_kinds(shed),
         "largest_node_eccentricity": _largest_eccentricity(shed),
+        "findings": None if findings is None else counts(findings),
         "defaults": [{"field": field, "value": value} for field, value in shed.defaults],
         "notes": list(shed.notes),
         "cautions": list(CAUTIONS),
     }
 
 
-def summary_text(shed: Shed, imprint: Imprint) -> str:
+def summary_text(shed: Shed, imprint: Imprint, findings: Iterable[Finding] | None = None) -> str:
     """Give the summary as JSON text that ends in a line feed; texts keep their own letters (UTF-8)."""
-    return json.dumps(summary(shed, imprint), ensure_ascii=False, indent=2, allow_nan=False) + "\n"
+    return json.dumps(summary(shed, imprint, findings), ensure_ascii=False, indent=2, allow_nan=False) + "\n"
 
 
 def _roles(shed: Shed) -> dict[str, dict[str, Any]]:

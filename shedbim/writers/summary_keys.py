@@ -13,8 +13,10 @@ KEYS: tuple[tuple[str, str], ...] = (
     ("schema", "schema of the model file: IFC4, IFC4X3_ADD2 or IFC2X3"),
     (
         "description_sha256",
-        "SHA-256 of the bytes of the description, 64 hexadecimal digits; empty without a file",
+        "SHA-256 of the bytes of the description, then of a zero byte and each setting; 64 hexadecimal digits, "
+        "empty without a file",
     ),
+    ("settings[]", "a field set for this run over that of the file, as path=value; none as a rule"),
     ("project.id", "the project's id, the scope of every GlobalId"),
     ("project.name", "its name"),
     ("project.number", "its number"),
@@ -34,6 +36,11 @@ KEYS: tuple[tuple[str, str], ...] = (
     ("largest_node_eccentricity.mm", "by how much they miss, mm"),
     ("largest_node_eccentricity.pieces", "keys of the pieces that meet there"),
     ("largest_node_eccentricity.point_mm", "the work point x, y, z in building axes, mm"),
+    ("findings", "what the checks found; null where the shed was not checked"),
+    ("findings.error", "open findings that are severe: the shed is not sound to hand over"),
+    ("findings.warning", "open findings to be looked at and answered"),
+    ("findings.note", "open findings worth knowing"),
+    ("findings.waived", "findings of any severity that the description accepts with a reason"),
     ("defaults[].field", "a field that the description left open"),
     ("defaults[].value", "the value it was given"),
     ("notes[]", "what was assumed or simplified in this shed"),

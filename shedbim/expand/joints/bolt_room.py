@@ -14,7 +14,7 @@ from shedbim.fasteners.bolts import bolt
 from shedbim.fasteners.distances import edge, least_edge, pitch, wrench_pitch, wrench_wall
 from shedbim.fasteners.holes import hole_diameter
 
-__all__ = ["PlateLayout", "Room", "Zone", "rows", "sizes", "spread"]
+__all__ = ["PlateLayout", "Room", "Zone", "beside", "rows", "sizes", "spread"]
 
 _SERIES = (36.0, 30.0, 27.0, 24.0, 20.0, 16.0, 12.0)
 #: Greatest distance of rows (EN 1993-1-8 Table 3.3: the lesser of 14 t and 200 mm, for plates of 15 mm up).
@@ -54,6 +54,11 @@ class Room:
     def from_wall(self, leg: float = 0.0) -> float:
         """Least distance of a bolt from a wall beside it that a weld with this leg runs along."""
         return max(wrench_wall(self.diameter), leg + _washer(self.diameter) / 2 + _AIR)
+
+    @property
+    def round_corner(self) -> float:
+        """Least distance along a corner of bolts in its two legs: a wrench on one passes the nut of the other."""
+        return wrench_wall(self.diameter) + _washer(self.diameter) / 2 + _AIR
 
     def from_root(self, half: float, radius: float) -> float:
         """Least distance of a bolt from the middle of a web of half this thickness with such root fillets."""
@@ -116,6 +121,29 @@ class Zone:
 
     low: float
     high: float
+
+
+def beside(zone: Zone, taken: Sequence[Zone], room: Room) -> list[Zone]:
+    """Give what of a zone is a wrench's distance off everything that is in the way.
+
+    What is left under it and is too short for two rows keeps its lower end alone: rows stay as far apart as they may.
+    """
+    left = [zone]
+    for each in sorted(taken, key=lambda each: -each.high):
+        above = left[-1]
+        wall = room.from_wall()
+        if each.high + wall <= above.low or each.low - wall >= above.high:
+            continue
+        upper, under = Zone(each.high + wall, above.high), Zone(above.low, each.low - wall)
+        if under.low < under.high < under.low + room.pitch:
+            level = (
+                max(under.low, min(upper.high - _FARTHEST, under.high))
+                if upper.high >= upper.low
+                else under.low
+            )
+            under = Zone(level, level)
+        left[-1:] = [upper, under]
+    return left
 
 
 def rows(zones: Sequence[Zone], room: Room) -> list[float]:

@@ -27,6 +27,7 @@ from shedbim.expand.joints.bolt_lines import BoltLine, leg_line, tube_line
 from shedbim.expand.joints.cap import cap_thickness
 from shedbim.expand.joints.contract import FAR, Bolting, Connection, Fitting, Joint, Layer, Met, Welding, Work
 from shedbim.expand.joints.flattened import flattened
+from shedbim.expand.joints.gusset_levels import middle_of_gusset
 from shedbim.expand.joints.gusset_outline import (
     CHORD_ERROR,
     Plane,
@@ -178,9 +179,7 @@ class _Gusset:
         v = self.carrier.y * (1.0 if float(self.brace.into @ self.carrier.y) > 0 else -1.0)
         u = self.brace.into - v * float(self.brace.into @ v)
         u = u / float(np.linalg.norm(u))
-        below = self.fin / 2 if self.angle is None else -self.brace.section.outline.bounds[1]
-        level = float(self.brace.origin @ self.brace.z) - below - GUSSET / 2
-        return Plane(self.brace.z * level, u, v, cross(u, v))
+        return Plane(self.brace.z * middle_of_gusset(self.brace, self.fin), u, v, cross(u, v))
 
     @property
     def _mark(self) -> float:

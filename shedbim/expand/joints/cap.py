@@ -1,7 +1,8 @@
 """Cap plates on the heads of columns, and of gable posts that are tubes.
 
 A cap takes the place of the last of the column, so that the head stays where it was; it lies along the cut of
-the head and stands out over no face of the column: end plates, rails and struts come close there.
+the head and stands out over no face of the column: end plates, rails and struts come close there. It keeps off the
+faces of flanges, which end plates are drawn up to.
 """
 
 from __future__ import annotations
@@ -28,6 +29,8 @@ __all__ = ["cap_on", "cap_thickness", "column_cap"]
 _LEAST, _MOST, _SHARE = 10.0, 30.0, 0.5
 #: Sizes of caps are whole steps of this.
 _STEP = 5.0
+#: From the edge of a cap to the face of a flange, mm (common practice: 2 to 5 mm; value from memory).
+_OFF_FLANGE = 2.0
 #: Sides of the polygon that stands for an ellipse.
 _SIDES = 48
 
@@ -81,9 +84,11 @@ def cap_on(met: Met, number: int, thickness: float) -> tuple[Fitting, Welding, W
 
 
 def _room(section: Section) -> tuple[float, float]:
-    """How large a level cap may be across and along the depth: to the faces of an I; half a wall less on a tube,
-    whose wall then carries the weld outside the plate."""
-    inset = 0.0 if isinstance(section.profile, IShape) else section.profile.thickness
+    """How large a level cap may be across and along the depth: to the tips of an I and nearly to its faces; half a
+    wall less on a tube, whose wall then carries the weld outside the plate."""
+    if isinstance(section.profile, IShape):
+        return section.width, section.height - 2 * _OFF_FLANGE
+    inset = section.profile.thickness
     return section.width - inset, section.height - inset
 
 

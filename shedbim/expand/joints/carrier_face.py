@@ -19,7 +19,7 @@ Array = NDArray[np.float64]
 #: Axes whose cosine is above this are parallel; two of them never are nearly so by chance.
 _PARALLEL = 0.999
 #: The plate that caps a column stays this far inside its faces at most, mm: see ``joints.cap``.
-_CAP_INSET = 5.0
+_CAP_INSET = 7.0
 #: Directions whose cosine is this near to 1 are one.
 _SAME = 1e-6
 

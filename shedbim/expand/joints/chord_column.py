@@ -11,9 +11,10 @@ from shedbim.description.connections import Connections
 from shedbim.description.connections.end_plates import ChordOptions
 from shedbim.errors import DescriptionError
 from shedbim.expand.impossible import impossible
-from shedbim.expand.joints.bolt_room import PlateLayout, Room, Zone, rows, sizes, spread
+from shedbim.expand.joints.bolt_room import PlateLayout, Room, Zone, beside, rows, sizes, spread
 from shedbim.expand.joints.column_side import Side, bolted, bracket, column_side, gap_left
 from shedbim.expand.joints.contract import Connection, Fitting, Joint, Met, Welding
+from shedbim.expand.joints.gusset_levels import gusset_levels
 from shedbim.expand.joints.standing import Line, line_of
 from shedbim.expand.joints.truss_node import girth
 from shedbim.fasteners.plate_stock import rounded_up
@@ -41,7 +42,7 @@ def chord_column(joint: Joint, options: Connections) -> Connection:
     bare = column_side(column, chord)
     line = line_of(chord, bare.plane)
     side, work = gap_left(bare, line, own.thickness, options.brackets.thickness)
-    layout = _layout(own, joint, line, side)
+    layout = _layout(own, joint, line, side, gusset_levels(side, joint.neighbours, options))
     half, low, high = layout.half, layout.low, layout.high
     corners = [(-half, low), (half, low), (half, high), (-half, high)]
     fittings = [side.plane.facing("end plate", Role.END_PLATE, side.face, corners, own.thickness, 1)]
@@ -69,17 +70,21 @@ def _seat(side: Side, own: ChordOptions, layout: PlateLayout) -> tuple[list[Fitt
     return [seat], [Welding((0, "seat"), throat, 4 * half)]
 
 
-def _layout(own: ChordOptions, joint: Joint, line: Line, side: Side) -> PlateLayout:
-    """Plate and bolts: the largest of the allowed bolts that fits beside the chord, else one above and below it."""
+def _layout(own: ChordOptions, joint: Joint, line: Line, side: Side, gussets: list[Zone]) -> PlateLayout:
+    """Plate and bolts: the largest of the allowed bolts that fits beside the chord, else one above and below it.
+
+    Clear of the gussets of roof braces where any are.
+    """
     chord = joint.members[1]
-    for diameter in sizes(own.bolt, _CUSTOM):
-        found = _beside(Room(diameter), own, chord, line, side)
-        if found is not None:
-            return found
-    for diameter in sizes(own.bolt, _CUSTOM):
-        found = _above_and_below(Room(diameter), own, joint, line, side)
-        if found is not None:
-            return found
+    for taken in (gussets, []):
+        for diameter in sizes(own.bolt, _CUSTOM):
+            found = _beside(Room(diameter), own, chord, line, side, taken)
+            if found is not None:
+                return found
+        for diameter in sizes(own.bolt, _CUSTOM):
+            found = _above_and_below(Room(diameter), own, joint, line, side, taken)
+            if found is not None:
+                return found
     raise _no_place(own, chord, side)
 
 
@@ -88,8 +93,10 @@ def _highest(line: Line, start: float, near: float) -> float:
     return min(line.top(near), line.top(start))
 
 
-def _beside(room: Room, own: ChordOptions, chord: Met, line: Line, side: Side) -> PlateLayout | None:
-    """Two rows beside the chord."""
+def _beside(
+    room: Room, own: ChordOptions, chord: Met, line: Line, side: Side, taken: list[Zone]
+) -> PlateLayout | None:
+    """Two rows beside the chord; the plate comes out below it where a gusset leaves no room for both."""
     start = side.face + own.thickness
     half_chord = chord.section.width / 2
     least = max(half_chord + room.from_wall(_leg(own, chord)), side.least_aside(room))
@@ -100,30 +107,37 @@ def _beside(room: Room, own: ChordOptions, chord: Met, line: Line, side: Side) -
     if chord.role is not Role.TOP_CHORD:
         high += _EXTENSION
     least_height = max(high - line.bottom(start) + _EXTENSION, room.pitch + 2 * room.edge)
-    low = high - rounded_up(least_height)
-    levels = rows([_on_steel(Zone(low + room.edge, high - room.edge), room, side)], room)
-    if len(levels) < 2:
+    under = max([high - each.low + room.from_wall() + room.edge for each in taken], default=0.0)
+    for height in (least_height, max(least_height, under), max(least_height, under + room.pitch)):
+        low = high - rounded_up(height)
+        zone = _on_steel(Zone(low + room.edge, high - room.edge), room, side)
+        levels = rows(beside(zone, taken, room), room)
+        if len(levels) >= 2:
+            break
+    else:
         return None
     half = min(rounded_up(2 * (aside + room.edge)) / 2, side.half_width)
     return PlateLayout(room, half, low, high, aside, levels)
 
 
 def _above_and_below(
-    room: Room, own: ChordOptions, joint: Joint, line: Line, side: Side
+    room: Room, own: ChordOptions, joint: Joint, line: Line, side: Side, taken: list[Zone]
 ) -> PlateLayout | None:
     """A row above and a row below a bottom chord, two rows below a top chord; beside the webs."""
     chord = joint.members[1]
     start = side.face + own.thickness
     wall = room.from_wall(_leg(own, chord))
     webs = [met.section.width for met in joint.neighbours if met.role in _WEBS]
-    beside = max(webs, default=0.0) / 2 + room.from_wall(0.8 * chord.section.profile.thickness)
-    least = max(beside, side.least_aside(room))
+    off_webs = max(webs, default=0.0) / 2 + room.from_wall(0.8 * chord.section.profile.thickness)
+    least = max(off_webs, side.least_aside(room))
     aside = spread(room, least, side.half_width, least, side.half_width)
     if aside is None:
         return None
     lean = room.stack * abs(line.rise)
     upper, lower = line.top(start) + wall + lean, line.bottom(start) - wall - lean
     if chord.role is Role.TOP_CHORD:
+        in_the_way = [each for each in taken if each.high + room.from_wall() > lower - room.pitch]
+        lower = min([lower, *(each.low - room.from_wall() for each in in_the_way)])
         levels = [lower, lower - room.pitch]
         high = _highest(line, start, side.back)
     else:

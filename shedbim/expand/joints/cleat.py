@@ -46,6 +46,9 @@ _SEATS = (8.0, 6.0, 5.0)
 #: Air between a seat plate and the flange over it; room for a weld beside the cleat; depth of a seat on its
 #: carrier; the most it may stand out, mm (all common practice, values from memory).
 _SEAT_GAP, _WELD_ROOM, _SEAT_HOLD, _STANDS_OUT = 1.5, 10.0, 50.0, 75.0
+#: Thickness of the pack between a column's head and a seat, mm: what runs up to the column passes under the seat
+#: with so much air (common practice: 2 to 3 mm; value from memory).
+_PACK = 2.0
 _CARRIED = (Role.PURLIN, Role.SIDE_RAIL, Role.GABLE_RAIL)
 #: Air between the shoulders of a cleat and the flanges it reaches between, mm.
 _SHOULDER = 5.0
@@ -76,11 +79,12 @@ def cleat(joint: Joint, options: Connections) -> Connection:
     face = ground(carrier, web, options.cleats.thickness, on_head=on_head)
     out = _out_from_line(carried, web, lines)
     half = rounded_up(out + end_distance(lines), 5.0)
-    seat, lift = None, 0.0
+    under: tuple[Fitting, ...] = ()
     if face.beyond > 0.0:
-        seat, lift = _seat(face, web, group, half, options)
+        under = _seat(face, web, group, half, options, packed=on_head)
+    lift = sum(each.shape.thickness for each in under if isinstance(each.shape, Plate))
     size = _size(face, web, lines, half, lift, group)
-    plate, frame = _plate(face, web, size, options.cleats.thickness, seated=seat is not None)
+    plate, frame = _plate(face, web, size, options.cleats.thickness, seated=bool(under))
     fitting = Fitting("cleat", Role.CLEAT, plate, frame)
     sleeve = sleeve_over(carried, web, lines, options)
     if len(carried) > 1 and all(met.at == At.ALONG for met in carried):
@@ -88,15 +92,15 @@ def cleat(joint: Joint, options: Connections) -> Connection:
     else:
         boltings = _boltings(carried, web, lines, out, options, sleeve)
     throat = throat_for(options.cleats.thickness)
-    if seat is None:
+    fittings = (*under, fitting)
+    if not under:
         length = _weld_length(face, size) / len(holding)
         welds = tuple(Welding((number, "cleat"), throat, length) for number in holding)
-        fittings: tuple[Fitting, ...] = (fitting,)
     else:
-        fittings = (seat, fitting)
         held = 2.0 * min(_SEAT_HOLD, size.half) + 2.0 * min(face.half, size.half)
-        on_seat = tuple(Welding((number, "seat"), throat, held / len(holding)) for number in holding)
-        welds = (Welding(("seat", "cleat"), throat, 4.0 * size.half), *on_seat)
+        on_seat = tuple(Welding((number, under[0].name), throat, held / len(holding)) for number in holding)
+        on_pack = tuple(Welding((each.name, "seat"), throat, held) for each in under[:-1])
+        welds = (Welding(("seat", "cleat"), throat, 4.0 * size.half), *on_seat, *on_pack)
     if sleeve is not None:
         fittings = (*fittings, sleeve.fitting)
     return Connection(fittings, boltings, welds)
@@ -184,8 +188,10 @@ def _weld_length(face: Ground, size: _Size) -> float:
     return 4.0 * min(size.half, face.half)
 
 
-def _seat(face: Ground, web: Web, group: str, half: float, options: Connections) -> tuple[Fitting, float]:
-    """The plate that a cleat stands on where it would come down beside its carrier's face, and its thickness."""
+def _seat(
+    face: Ground, web: Web, group: str, half: float, options: Connections, *, packed: bool
+) -> tuple[Fitting, ...]:
+    """The plate that a cleat stands on where it would come down beside its carrier's face, over a pack or none."""
     thickness = options.cleats.thickness
     outer = face.beyond + _WELD_ROOM
     if not face.square or face.radius or face.tongue or outer > _STANDS_OUT:
@@ -195,7 +201,9 @@ def _seat(face: Ground, web: Web, group: str, half: float, options: Connections)
             allowed=f"a distance that moves the purlin by {face.beyond:.0f} mm or more",
         )  # fmt: skip
     room = face.depth - web.bottom - _SEAT_GAP
-    fitting = [t for t in _SEATS if t <= room]
+    # Under a purlin set down lower than usual the seat lies on the head itself.
+    pack = _PACK if packed and _SEATS[-1] + _PACK <= room else 0.0
+    fitting = [t for t in _SEATS if t + pack <= room]
     if not fitting:
         raise impossible(
             f"{group}.lift", "a seat plate for the cleat finds no room under the purlin",
@@ -203,15 +211,26 @@ def _seat(face: Ground, web: Web, group: str, half: float, options: Connections)
         )  # fmt: skip
     # It reaches from beyond the cleat back on to the carrier, on whichever side that is.
     depth = rounded_up(outer + _SEAT_HOLD)
-    first = web.face - _WELD_ROOM
+    first, hold = web.face - _WELD_ROOM, (outer, depth)
     if face.side > 0:
-        first = web.face + thickness + _WELD_ROOM - depth
-    low, high = first, first + depth
-    frame = frame_of(-web.up * face.depth, web.run, cross(web.up, web.run))
-    if float(frame[:, 1] @ web.out) < 0:
-        low, high = -high, -low
-    corners = ((-half, low), (half, low), (half, high), (-half, high))
-    return Fitting("seat", Role.SEAT, Plate(corners, fitting[0]), frame), fitting[0]
+        first, hold = web.face + thickness + _WELD_ROOM - depth, (0.0, depth - outer)
+    spans = [(first, first + depth), (first + hold[0], first + hold[1])]
+    x, y = web.run, cross(web.up, web.run)
+    if float(y @ web.out) < 0:
+        spans = [(-high, -low) for low, high in spans]
+
+    def plate(
+        name: str, role: Role, level: float, wide: float, span: tuple[float, float], t: float
+    ) -> Fitting:
+        """A plate of this thickness, its underside ``level`` above the head or face."""
+        low, high = span
+        corners = ((-wide, low), (wide, low), (wide, high), (-wide, high))
+        return Fitting(name, role, Plate(corners, t), frame_of(web.up * (level - face.depth), x, y))
+
+    seat = plate("seat", Role.SEAT, pack, half, spans[0], fitting[0])
+    if not pack:
+        return (seat,)
+    return (plate("pack", Role.PACK, 0.0, min(half, face.half), spans[1], pack), seat)
 
 
 def _through_both(

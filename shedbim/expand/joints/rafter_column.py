@@ -8,15 +8,17 @@ flanges and stiffeners. No resistance is computed.
 from __future__ import annotations
 
 from collections.abc import Sequence
+from itertools import product
 from math import floor
 
 from shedbim.description.connections import Connections
 from shedbim.description.connections.end_plates import RafterOptions
 from shedbim.errors import DescriptionError
 from shedbim.expand.impossible import impossible
-from shedbim.expand.joints.bolt_room import PlateLayout, Room, Zone, rows, sizes, spread
+from shedbim.expand.joints.bolt_room import PlateLayout, Room, Zone, beside, rows, sizes, spread
 from shedbim.expand.joints.column_side import Side, bolted, bracket, column_side, gap_left
 from shedbim.expand.joints.contract import Connection, Fitting, Joint, Met, Welding
+from shedbim.expand.joints.gusset_levels import gusset_levels
 from shedbim.expand.joints.haunch import Haunch, clear_of_posts, haunch_plates, plan
 from shedbim.expand.joints.standing import Line, flange, line_of
 from shedbim.expand.joints.stiffeners import stiffener_thickness, stiffeners
@@ -53,7 +55,8 @@ def rafter_column(joint: Joint, options: Connections) -> Connection:
     start = side.face + own.thickness
     haunch = _haunch(own, rafter, line, side, start, joint.neighbours)
     stiff = _stiffener(own, side, haunch)
-    layout = _layout(own, rafter, line, side, start, haunch, stiff)
+    gussets = gusset_levels(side, joint.neighbours, options)
+    layout = _layout(own, rafter, line, side, start, haunch, stiff, gussets)
     half, low, high = layout.half, layout.low, layout.high
     corners = [(-half, low), (half, low), (half, high), (-half, high)]
     fittings = [side.plane.facing("end plate", Role.END_PLATE, side.face, corners, own.thickness, 1)]
@@ -128,15 +131,16 @@ def _layout(
     start: float,
     haunch: Haunch | None,
     stiff: Zone | None,
+    gussets: list[Zone],
 ) -> PlateLayout:
-    """Plate and bolts, with the largest of the allowed bolts that fits."""
+    """Plate and bolts: the largest of the allowed bolts that keep clear of gussets, else the largest that fit."""
     high = min(line.top(side.back), line.top(start))
     lowest = line.bottom(start) if haunch is None else min(line.bottom(start), haunch.lowest)
     low = high - rounded_up(high - lowest + EXTENSION)
     widest = max(side.half_width, rafter.section.width / 2)
     web = max(rafter.section.profile.thickness, haunch.web if haunch else 0.0)
     weld_leg = leg(throat_for(min(own.thickness, flange(rafter.section)), rafter.grade))
-    for diameter in sizes(own.bolt, custom_size(rafter)):
+    for taken, diameter in product((gussets, []), sizes(own.bolt, custom_size(rafter))):
         room = Room(diameter)
         least = max(side.least_aside(room), web / 2 + room.from_wall(weld_leg))
         custom = GAUGE * min(rafter.section.width, 2 * side.half_width) / 2
@@ -146,8 +150,9 @@ def _layout(
             continue
         half = min(max(rounded_up(2 * max(aside + room.edge, rafter.section.width / 2)) / 2, 0.0), widest)
         zones = [
-            _shortened(zone, room, side, high, low, stiff)
+            part
             for zone in zones_between(rafter, line, start, haunch, room, weld_leg)
+            for part in beside(_shortened(zone, room, side, high, low, stiff), taken, room)
         ]
         levels = rows(zones, room)
         if len(levels) >= 2:

@@ -32,8 +32,8 @@ Array = NDArray[np.float64]
 _SPARE = 10.0
 #: Plate on the end of a bar that meets the web at a slant, and its two bolts, mm (common practice).
 _PLATE, _PLATE_BOLT = 6.0, 12.0
-#: Air between the bar and the bolt heads beside it, mm.
-_BESIDE = 5.0
+#: How far beyond a head the wrench on it reaches, mm (common practice, value from memory).
+_WRENCH = 10.0
 #: Air between what sits on two bars at one web, mm.
 _APART = 2.0
 #: Thread of sag bars: its class (value from memory).
@@ -111,8 +111,9 @@ def _on_plate(course: Met, bar: Met, arrival: _Arrival, options: Connections) ->
     web, d = course.section.profile.thickness, bar.section.profile.thickness
     fastener = bolt(_PLATE_BOLT, options.bolts.secondary_grade, _PLATE + web)
     head = -min(disc.start for disc in fastener.stack)
-    widest = max(disc.size for disc in fastener.stack if disc.end <= 0.0) / 2 * 2 / 3**0.5
-    aside = d / 2 / cos(arrival.slant) + head * tan(arrival.slant) + widest + _BESIDE
+    # The bar leans over one of the bolts: a wrench on its head passes beside it.
+    leans = (_PLATE + head + _WRENCH) * tan(arrival.slant)
+    aside = d / 2 / cos(arrival.slant) + leans + wrench_wall(_PLATE_BOLT)
     place = rounded_up(max(aside, wrench_pitch(_PLATE_BOLT) / 2), 5.0)
     reach = edge(_PLATE_BOLT)
     flat = flat_half(course.section) - off_middle(course, arrival.point)

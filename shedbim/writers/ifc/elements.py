@@ -63,7 +63,9 @@ def number_pieces(shed: Shed) -> Numbering:
     """
     for what, names in (
         ("pieces", shed.pieces.keys),
+        ("piece names", shed.pieces.names),
         ("assemblies", shed.assemblies.keys),
+        ("assembly names", shed.assemblies.names),
         ("parts", [part.mark for part in shed.parts]),
     ):
         if len(set(names)) < len(names):
@@ -73,7 +75,7 @@ def number_pieces(shed: Shed) -> Numbering:
     ranks[order] = np.arange(len(order))
     starts = np.concatenate([[0], np.cumsum(shed.quantities)]).tolist()
     in_order = [f"#{number}" for number in range(1, len(order) + 1)]
-    words = piece_words(shed.project.id, shed.pieces.keys)
+    words = piece_words(shed.project.id, shed.pieces.names)
     return Numbering(order, starts, in_order, [in_order[rank] for rank in ranks.tolist()], words)
 
 
@@ -83,7 +85,7 @@ def write_assemblies(step: StepFile, shed: Shed, storey: Storey) -> tuple[list[s
     if not len(groups):
         return [], []
     start, kind = write_placements(step, relative(groups.placement, groups.placement, groups.parent))
-    ids = step.ids([f"assembly/{key}" for key in groups.keys])
+    ids = step.ids([f"assembly/{name}" for name in groups.names])
     classes = [assembly_class(each) for each in shed.assembly_types]
     elements: list[str] = []
     placements: list[str] = []
@@ -220,7 +222,7 @@ def write_tree(
     step.fill(
         step.template("IfcRelAggregates", "RelatingObject", GlobalId=f"'{SLOT}'", RelatedObjects=f"({SLOT})"),
         numbered(step.reserve(len(filled)), len(filled)),
-        step.ids([f"aggregates/assembly/{shed.assemblies.keys[i]}" for i in filled]),
+        step.ids([f"aggregates/assembly/{shed.assemblies.names[i]}" for i in filled]),
         [assemblies[i] for i in filled],
         [",".join(inside[i]) for i in filled],
     )

@@ -83,6 +83,7 @@ def render_view(
     labels: str | None = None,
     highlight: Sequence[str] = (),
     caption: bool = True,
+    remark: str = "",
 ) -> bytes:
     """Give a view of ``VIEWS`` as the bytes of a picture of ``width`` x ``height`` pixels.
 
@@ -96,6 +97,7 @@ def render_view(
         labels: one of ``LABELS``; None for what the view has by default.
         highlight: keys, or patterns of keys, of pieces shown in a loud colour while all others go pale.
         caption: whether the project and the view are written in the corner.
+        remark: what is written after them.
 
     Raises:
         ViewError: when the name, the form, the labels, or what an argument asks for, does not exist.
@@ -113,7 +115,7 @@ def render_view(
         width=width,
         height=height,
         labels=VIEWS[name].labels if labels is None else labels,
-        caption=_caption(shed, name, argument) if caption else "",
+        caption=_caption(shed, name, argument, remark) if caption else "",
         emphasis=Emphasis(shed, np.unique(np.concatenate([np.zeros(0, np.int64), *loud])), chosen.named),
     )
     return FORMATS[form](composition)
@@ -130,10 +132,16 @@ def selected(shed: Shed, name: str, argument: str | None = None) -> Chosen:
     return VIEWS[name].choose(shed, argument)
 
 
-def _caption(shed: Shed, name: str, argument: str | None) -> str:
-    """Project and view in one line."""
+def _caption(shed: Shed, name: str, argument: str | None, remark: str) -> str:
+    """Project, view and remark in one line."""
     project = shed.project
-    words = (project.name, project.number, project.revision, f"{name} {argument}" if argument else name)
+    words = (
+        project.name,
+        project.number,
+        project.revision,
+        f"{name} {argument}" if argument else name,
+        remark,
+    )
     return " · ".join(word for word in words if word)
 
 

@@ -22,7 +22,7 @@ from shedbim.writers.schedules.table import Cell, Column, Table, Total
 
 K = TypeVar("K", bound=Hashable)
 
-__all__ = ["assemblies", "by_role", "by_section", "members", "stock_name", "totals"]
+__all__ = ["assemblies", "by_role", "by_section", "members", "revision_column", "stock_name", "totals"]
 
 _AMOUNTS = (
     Column("parts", decimals=0, summed=True),
@@ -51,8 +51,10 @@ def members(shed: Shed) -> Table:
         Column("surface total", "m2", 3, summed=True, product=("quantity", "surface each")),
         Column("finish"),
         Column("assemblies"),
+        *revision_column(shed),
     )
     rows: list[tuple[Cell, ...]] = []
+    issued = bool(revision_column(shed))
     for part, count, marks in zip(
         shed.parts, shed.quantities.tolist(), shed.part_assembly_marks, strict=True
     ):
@@ -63,6 +65,7 @@ def members(shed: Shed) -> Table:
         rows.append((
             part.mark, part.role.word, count, bar.section.designation, part.grade, bar.length,
             bar.mass, count * bar.mass, surface, count * surface, part.finish, ", ".join(marks),
+            *([part.revision] if issued else []),
         ))  # fmt: skip
     return Table("Members", columns, tuple(rows), (Total("Total"),))
 
@@ -81,7 +84,9 @@ def assemblies(shed: Shed) -> Table:
         Column("pieces in one", decimals=0),
         Column("mass each", "kg", 3),
         Column("mass total", "kg", 3, summed=True, product=("quantity", "mass each")),
+        *revision_column(shed),
     )
+    issued = bool(revision_column(shed))
     pieces, masses = _contents(shed)
     rows: list[tuple[Cell, ...]] = []
     for index, kind in enumerate(shed.assembly_types):
@@ -92,7 +97,8 @@ def assemblies(shed: Shed) -> Table:
         if np.ptp(held) > 0 or np.ptp(mass) > _SAME_MASS * mass.max():
             raise ModelError(f"assemblies with the mark {kind.mark!r} do not hold the same steel")
         each, count = float(mass[0]), len(held)
-        rows.append((kind.mark, kind.kind, kind.made, count, int(held[0]), each, count * each))
+        last = [kind.revision] if issued else []
+        rows.append((kind.mark, kind.kind, kind.made, count, int(held[0]), each, count * each, *last))
     # Shop assemblies may stand inside site assemblies, so the two are never added to one another.
     places = (("shop", "Made in the shop"), ("site", "Put together on site"))
     made = {row[2] for row in rows}
@@ -136,6 +142,11 @@ def totals(shed: Shed) -> Table:
     rows += [("role", "", "", *row) for row in by_role(shed).rows]
     rows.append(("everything", "", "", "", *_amounts(shed, range(len(shed.parts)))))
     return Table("Totals", columns, tuple(rows))
+
+
+def revision_column(shed: Shed) -> tuple[Column, ...]:
+    """Give the column of the revision in which each row last changed; none for a shed that was never issued."""
+    return (Column("revision"),) if any(part.revision for part in shed.parts) else ()
 
 
 def _grouped(shed: Shed, key: Callable[[Part], K]) -> dict[K, list[int]]:

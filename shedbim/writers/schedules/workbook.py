@@ -6,7 +6,7 @@ Totals and products are formulas with the values they give stored beside them; t
 from __future__ import annotations
 
 import io
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 from datetime import UTC
 
 import xlsxwriter
@@ -14,16 +14,20 @@ from xlsxwriter.utility import xl_col_to_name
 from xlsxwriter.workbook import Workbook
 from xlsxwriter.worksheet import Worksheet
 
-from shedbim.model.shed import Shed
+from shedbim.checks.finding import Finding
+from shedbim.model.shed import ProjectInfo, Shed
+from shedbim.revisions.change_groups import ChangeGroup
 from shedbim.writers.imprint import Imprint
 from shedbim.writers.schedules.about import about_lines
+from shedbim.writers.schedules.changes import grouped_changes
 from shedbim.writers.schedules.fasteners import anchors, bolts, welds
+from shedbim.writers.schedules.findings import findings_table
 from shedbim.writers.schedules.fittings import finishes, fittings, holes, part_lists
 from shedbim.writers.schedules.formats import Formats
 from shedbim.writers.schedules.table import Table, Total
 from shedbim.writers.schedules.tables import assemblies, by_role, by_section, members
 
-__all__ = ["SHEETS", "workbook_bytes"]
+__all__ = ["SHEETS", "changes_bytes", "workbook_bytes"]
 
 #: The sheets in order; a further schedule is one function and one row here.
 SHEETS: tuple[Callable[[Shed], Table], ...] = (
@@ -45,21 +49,56 @@ _WIDEST = 40  # characters; longer texts wrap
 _LONGEST_NAME = 80  # characters of the project's name in a footer, which holds 255 in all (from memory)
 
 
-def workbook_bytes(shed: Shed, imprint: Imprint) -> bytes:
-    """Give the workbook as bytes; equal input gives equal bytes."""
+def workbook_bytes(
+    shed: Shed,
+    imprint: Imprint,
+    findings: Iterable[Finding] | None = None,
+    groups: Iterable[ChangeGroup] | None = None,
+) -> bytes:
+    """Give the workbook as bytes; equal input gives equal bytes.
+
+    Args:
+        shed: the building.
+        imprint: where the workbook comes from.
+        findings: of the checks, on a sheet of their own; None where the shed was not checked.
+        groups: of what changed since the last issue, on a sheet of their own; None where nothing was issued.
+    """
+    tables = [schedule(shed) for schedule in SHEETS]
+    if findings is not None:
+        tables.append(findings_table(shed, findings))
+    if groups is not None:
+        tables.append(grouped_changes(groups))
+    return _bytes("Schedules", shed.project, tables, about_lines(shed, imprint), imprint)
+
+
+def changes_bytes(
+    project: ProjectInfo, tables: Iterable[Table], about: Iterable[tuple[str, str]], imprint: Imprint
+) -> bytes:
+    """Give the workbook of changes as bytes: a sheet for each table, and one that says what it is."""
+    return _bytes("Changes", project, tables, about, imprint)
+
+
+def _bytes(
+    what: str,
+    project: ProjectInfo,
+    tables: Iterable[Table],
+    about: Iterable[tuple[str, str]],
+    imprint: Imprint,
+) -> bytes:
+    """A workbook of tables with a last sheet of names and texts."""
     sink = io.BytesIO()
     workbook = xlsxwriter.Workbook(
         sink, {"in_memory": True, "strings_to_formulas": False, "strings_to_urls": False}
     )
     workbook.set_properties({
-        "title": f"Schedules of {shed.project.name}"[:255],
-        "comments": f"Revision {shed.project.revision}. Made by shedbim {imprint.version}."[:255],
+        "title": f"{what} of {project.name}"[:255],
+        "comments": f"Revision {project.revision}. Made by shedbim {imprint.version}."[:255],
         "created": imprint.timestamp.astimezone(UTC).replace(tzinfo=None),
     })  # fmt: skip
     formats = Formats(workbook)
-    for schedule in SHEETS:
-        _write_table(workbook, schedule(shed), formats, _footer(shed))
-    _write_about(workbook, shed, imprint, formats)
+    for table in tables:
+        _write_table(workbook, table, formats, _footer(project))
+    _write_about(workbook, about, formats, _footer(project))
     workbook.close()
     return sink.getvalue()
 
@@ -112,14 +151,14 @@ def _write_total(sheet: Worksheet, line: int, total: Total, table: Table, format
             sheet.write_blank(line, place, None, style)
 
 
-def _write_about(workbook: Workbook, shed: Shed, imprint: Imprint, formats: Formats) -> None:
+def _write_about(workbook: Workbook, about: Iterable[tuple[str, str]], formats: Formats, footer: str) -> None:
     sheet = workbook.add_worksheet("About")
     sheet.set_column(0, 0, 30)
     sheet.set_column(1, 1, 90)
-    for line, (name, text) in enumerate(about_lines(shed, imprint)):
+    for line, (name, text) in enumerate(about):
         sheet.write_string(line, 0, name, formats.label)
         sheet.write_string(line, 1, text, formats.wrapped)
-    _set_up_page(sheet, "About", _footer(shed))
+    _set_up_page(sheet, "About", footer)
 
 
 def _set_up_page(sheet: Worksheet, title: str, footer: str) -> None:
@@ -131,11 +170,11 @@ def _set_up_page(sheet: Worksheet, title: str, footer: str) -> None:
     sheet.set_footer(footer)
 
 
-def _footer(shed: Shed) -> str:
+def _footer(project: ProjectInfo) -> str:
     """Project left, page in the middle, revision right; a user's own ``&`` is doubled: it starts a code."""
-    project = f"{shed.project.number} {shed.project.name}".strip()[:_LONGEST_NAME].replace("&", "&&")
-    revision = shed.project.revision[:10].replace("&", "&&")
-    return f"&L{project}&CPage &P of &N&RRevision {revision}"
+    name = f"{project.number} {project.name}".strip()[:_LONGEST_NAME].replace("&", "&&")
+    revision = project.revision[:10].replace("&", "&&")
+    return f"&L{name}&CPage &P of &N&RRevision {revision}"
 
 
 def _width(table: Table, place: int) -> float:
