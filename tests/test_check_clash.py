@@ -13,7 +13,7 @@ import ifcopenshell
 import ifcopenshell.geom
 import numpy as np
 import pytest
-from cast import PRESETS, TINY, changed, shed_of
+from cast import PRESETS, TINY, changed, described, shed_of
 from manifold3d import Manifold
 from scipy.optimize import linprog
 
@@ -185,6 +185,15 @@ def test_a_plate_before_a_nut_is_in_the_way_as_far_off_as_it_is() -> None:
     hits = [each for each in found(moved) if each.code.name == "bolt-access"]
     values = [p.value for each in hits for p in each.places if p.pieces == (anchors, cleat)]
     assert values == [pytest.approx(15.0, abs=0.1)]
+
+
+@pytest.mark.parametrize(
+    "name", ["barn", "boat-hall", "goods-shed", "joinery-workshop", "packing-house", "seed-store"]
+)
+def test_joints_leave_room_for_wrenches_and_air_where_nothing_is_joined(name: str) -> None:
+    """Bolts beside fins of struts, gussets of braces and sag bars; caps and seats beside end plates."""
+    codes = {each.code.name for each in found(shed_of(name), described(name).checks.criteria)}
+    assert not codes & {"bolt-access", "contact-without-joint"}
 
 
 def test_a_chain_may_lead_over_a_plate_that_the_joint_does_not_name() -> None:

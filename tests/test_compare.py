@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+from collections import Counter
 from dataclasses import replace
 from functools import cache
 from pathlib import Path
@@ -15,6 +16,7 @@ import openpyxl
 import pytest
 from small_sheds import SMALL
 from typer.testing import CliRunner
+from view_data import data_text, unpacked
 
 from shedbim.cli.commands import app
 from shedbim.comparison import compared, write_comparison
@@ -36,7 +38,6 @@ from shedbim.writers.bcf import change_topics
 from shedbim.writers.ifc import write
 from shedbim.writers.schedules.fasteners import bolts, welds
 from shedbim.writers.schedules.fittings import finishes
-from shedbim.writers.view.changed import shown_changes
 
 RAFTERS, TRUSSES = SMALL["rafters"], SMALL["trusses"]
 #: Texts of two states: a bay longer, one put in between unequal ones, one taken out, other sections, another height.
@@ -202,7 +203,14 @@ def test_groups_and_rolls_tell_of_every_changed_piece_once(edit: str) -> None:
     for roll in rolled(there, "role"):
         assert roll.mass == pytest.approx((old.get(roll.name, (0, 0))[1], new.get(roll.name, (0, 0))[1]))
     places = [roll for by in ("frame", "bay") for roll in rolled(there, by)]
-    assert sum(roll.changed for roll in places) == len(there.changed)
+    # A piece counts where it is now; one that was removed, where it was.
+    counted = Counter(there.key(int(row)).split("/")[0] for row in there.changed)
+    assert {roll.name: roll.changed for roll in places} == counted
+    marks: Counter[str] = Counter()
+    for row in there.changed.tolist():
+        state, rows = (there.after, there.new) if there.new[row] >= 0 else (there.before, there.old)
+        marks[state.things[state.thing[rows[row]]].mark] += 1
+    assert {roll.name: roll.changed for roll in rolled(there, "mark")} == marks
 
 
 @EDIT
@@ -359,10 +367,12 @@ def spoiled(text: bytes, way: str) -> bytes:
         start, _, rest = line.partition(b"IFCLOCALPLACEMENT(")
         ring = start + b"IFCLOCALPLACEMENT(" + own + b"," + rest.split(b",", 1)[1]
         return text.replace(line, ring)
+    if way == "nowhere":  # a coordinate beyond all numbers
+        return text.replace(b"(1000.,0.,0.)", b"(1.E999,0.,0.)")
     return b"\x00\xff" * 500 if way == "bytes" else b""
 
 
-@pytest.mark.parametrize("way", ["cut short", "ring", "bytes", "empty"])
+@pytest.mark.parametrize("way", ["cut short", "ring", "nowhere", "bytes", "empty"])
 def test_a_hostile_model_is_one_plain_error(way: str, tmp_path: Path) -> None:
     good = foreign(tmp_path / "good.ifc", schema="IFC4", moved=0, depth=200, rating="R30", beams=2)
     bad = tmp_path / "bad.ifc"
@@ -407,11 +417,12 @@ def test_files_of_a_comparison(tmp_path: Path) -> None:
     assert book.sheetnames == ["Changes", "Quantities", "Frames and bays", "Marks", "Pieces", "About"]
     keys = [cell.value for cell in book["Pieces"]["A"]][1 : 1 + len(there.changed)]
     assert sorted(keys) == sorted(there.key(int(row)) for row in there.changed)
-    shown = shown_changes(comparison.shed, there, comparison.groups, comparison.drawn)
-    pieces = [piece for each in shown for piece in each.pieces]
-    assert len(pieces) == len(set(pieces)) == int((there.new[there.changed] >= 0).sum())
-    # The words are in the packed data of the page; that it colours by them is for the tests of the view.
-    assert paths["view.html"].stat().st_size > 100_000
+    texts, _ = unpacked(data_text(paths["view.html"].read_text(encoding="utf-8")))
+    coloured = {texts["keys"][piece]: word for word, pieces in texts["changes"] for piece in pieces}
+    assert sum(len(pieces) for _, pieces in texts["changes"]) == len(coloured)
+    assert coloured.keys() == {there.key(int(row)) for row in there.changed if there.new[row] >= 0}
+    assert coloured["2/rafter/A-B/1"] == "other section"
+    assert all(coloured[there.key(int(row))] == "added" for row in there.having(Kind.ADDED))
 
 
 def topics(path: Path) -> dict[str, set[str]]:

@@ -1,7 +1,8 @@
 """Rafters at the apex: an end plate on each, bolted together; a haunch below by option.
 
 The plates are flush with the rafters' faces above and below, and hardly wider: purlins and their sag bars, struts,
-braces and the heads of gable posts come close. No resistance is computed.
+braces and the heads of gable posts come close. Rows keep a wrench's distance from the fins of struts. No resistance is
+computed.
 """
 
 from __future__ import annotations

@@ -2,7 +2,7 @@
 
 The end plate is flush with the rafter's upper face: purlins and their cleats come close above. It is no wider
 than the wider of column and rafter: braces, rails and struts come close beside. Rows keep a wrench's distance from
-flanges and stiffeners. No resistance is computed.
+flanges, stiffeners and the gussets of roof braces. No resistance is computed.
 """
 
 from __future__ import annotations
