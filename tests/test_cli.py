@@ -23,6 +23,7 @@ import shedbim
 from shedbim import errors, outputs, pipeline
 from shedbim.checks.checking import check
 from shedbim.checks.finding import Finding
+from shedbim.checks.table import CHECKS
 from shedbim.cli import commands, main, speech
 from shedbim.cli.guard import EXIT_CODES
 from shedbim.cli.tables import show_table
@@ -272,7 +273,7 @@ def test_build_writes_every_output_and_tells_a_person_what_came_out(shell):
     assert set(made) == {
         "model.ifc", "model.glb", "members.csv", "plates.csv", "bolts.csv", "anchors.csv", "welds.csv", "holes.csv",
         "assemblies.csv", "part-lists.csv", "finishes.csv", "sections.csv", "schedule.xlsx", "view.html",
-        "findings.json", "findings.bcf", "findings-3.0.bcf", "summary.json",
+        "findings.json", "findings.bcf", "findings-3.0.bcf", "passages.csv", "summary.json",
     }  # fmt: skip
     told = json.loads(made["summary.json"])
     assert out.startswith("2417 Grün [bold]Store[/] =1+1, revision P01\n")  # a user's text is only text
@@ -306,7 +307,7 @@ def test_json_is_one_object_and_nothing_else(shell):
     assert told == json.loads((shell.folder / files["summary"]).read_text(encoding="utf-8"))
     assert list(files) == [
         "members", "plates", "bolts", "anchors", "welds", "holes", "assemblies", "part-lists", "finishes",
-        "sections", "workbook", "summary",
+        "sections", "passages", "workbook", "summary",
     ]  # fmt: skip
     assert all((shell.folder / path).exists() for path in files.values())
 
@@ -385,9 +386,16 @@ def test_progress_is_shown_to_a_person_at_a_terminal_only(shell, monkeypatch):
     stages = []
     monkeypatch.setattr("shedbim.cli.build_command.stage_line", lambda *each: stages.append(each))
     monkeypatch.setattr("shedbim.cli.build_command._watched", lambda: True)
-    shell.ok("build", "barn.yaml", "--only", "members,summary")
+    shell.ok("build", "barn.yaml", "--only", "members,summary", "--no-checks")
     assert stages == [
         ("reading the description", 0, 4), ("expanding", 1, 4), ("writing members.csv", 2, 4),
+        ("writing summary.json", 3, 4), ("done", 4, 4),
+    ]  # fmt: skip
+    stages.clear()
+    shell.ok("build", "barn.yaml", "--only", "summary")
+    assert stages == [
+        ("reading the description", 0, 4), ("expanding", 1, 4),
+        *((f"checking {row.name}", 2, 4) for row in CHECKS),
         ("writing summary.json", 3, 4), ("done", 4, 4),
     ]  # fmt: skip
     stages.clear()
