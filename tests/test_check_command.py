@@ -106,6 +106,14 @@ def test_a_model_that_cannot_be_read_is_told_of_and_the_rest_is_checked(shell: S
     assert "Traceback" not in out
 
 
+def test_what_if_is_checked_in_a_folder_of_its_own(shell: Shell) -> None:
+    (shell.folder / "a.yaml").write_text(FLAT)
+    code, out, _ = shell("check", "a.yaml", "--set", "purlins.spacing=2.6 m")
+    assert code == 0
+    assert "purlins-far-apart" in out
+    assert [path.name for path in (shell.folder / "outputs").iterdir()] == ["a-what-if"]
+
+
 def test_issues_follow_one_another_and_the_register_keeps_ids_and_marks(shell: Shell) -> None:
     file = shell.folder / "a.yaml"
     file.write_text(FLAT)

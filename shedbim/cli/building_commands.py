@@ -86,6 +86,7 @@ def check(
     against: list[Path] = typer.Option(
         None, metavar="FILE", help="IFC model of another trade; may be repeated."
     ),
+    settings: list[str] = typer.Option(None, "--set", metavar="FIELD=VALUE", help=SET_HELP),
     out: Path = typer.Option(
         None, metavar="DIR", help="Folder for the files with findings.  [default: outputs/<file stem>]"
     ),
@@ -102,13 +103,14 @@ def check(
     Examples:
       shedbim check store.yaml
       shedbim check store.yaml --against services.ifc --against sprinklers.ifc
+      shedbim check store.yaml --set bracing.bays=rule
       shedbim check store.yaml --json
     """
     moment = moment_of(time_stamp) if time_stamp else None
     with guard():
         from shedbim.cli.check_command import run as run_check
 
-        run_check(file, out, tuple(against or ()), moment, as_json=json, quiet=quiet)
+        run_check(file, out, tuple(against or ()), tuple(settings or ()), moment, as_json=json, quiet=quiet)
 
 
 def watch(

@@ -28,6 +28,7 @@ def run(
     file: Path,
     out: Path | None,
     against: Sequence[Path],
+    settings: Sequence[str],
     moment: datetime | None,
     *,
     as_json: bool,
@@ -39,6 +40,7 @@ def run(
         file: the description.
         out: folder of the files with findings; that of the outputs where not given.
         against: models of other trades.
+        settings: fields set for this run.
         moment: the time stamp of the files; now where not given.
 
     Raises:
@@ -50,6 +52,7 @@ def run(
         out,
         outputs=_OUTPUTS,
         against=against,
+        settings=settings,
         timestamp=moment or datetime.now(UTC),
         progress=stage_line if sys.stderr.isatty() and not quiet and not as_json else None,
     )

@@ -1,6 +1,5 @@
 """The command line put together: a row for each command, whose options and help are in the module of its kind."""
 
-
 from __future__ import annotations
 
 from collections.abc import Callable
