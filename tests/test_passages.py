@@ -94,7 +94,7 @@ def test_openings_are_those_of_the_steel_as_a_general_library_sees_it() -> None:
     rings = [ring for part in shapely.get_parts(seen) for ring in part.interiors]
     circles = [shapely.maximum_inscribed_circle(Polygon(ring), tolerance=0.05) for ring in rings]
     exact = sorted(2 * each.length for each in circles if 2 * each.length >= 100.0)
-    found = sorted(each.opening for each in passages(shed, criteria()))
+    found = sorted(each.opening for each in passages(shed, criteria()) if "2" in each.lines)
     np.testing.assert_allclose(found, exact, atol=2 * FINENESS)
 
 
@@ -149,7 +149,8 @@ def test_the_schedule_has_a_row_for_each_panel_and_obeys_the_limits_of_the_descr
     shed = shed_of("lopsided")
     table = schedule(shed)
     assert table.column("panel") == tuple(each.panel for each in passages(shed, criteria()))
-    assert set(table.column("lines")) == {"2, 3"}
+    # Line 2 stands beside a braced bay, whose gussets its end plates keep clear of: another truss than that on 3.
+    assert set(table.column("lines")) == {"2", "3"}
     assert set(table.column("clearance")) == {50.0}
     wide = schedule(shed, criteria({"clear_of_ducts": 70.0}))
     assert set(wide.column("clearance")) == {70.0}
