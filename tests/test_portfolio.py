@@ -189,6 +189,8 @@ def test_who_stops_listening_ends_the_processes(tmp_path):
 def test_an_interrupt_leaves_every_folder_whole_and_tells_what_is_done(desk):
     """The whole group hears it, as at a terminal; no process prints a traceback."""
     code = (
+        # A run in the background of a shell hears no interrupt; this one stands for a person at a terminal.
+        "import signal; signal.signal(signal.SIGINT, signal.default_int_handler)\n"
         "from pathlib import Path; from played_builds import play\n"
         "from shedbim.cli import portfolio_command as command\n"
         "command.build = play\n"
