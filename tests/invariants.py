@@ -342,8 +342,8 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
         JointKind.BRACE_GUSSET: ridge,
         JointKind.STRUT_END: ridge,
         # The work point lies on the axis of the purlin or rail, which is lifted off its carrier.
-        # Over the 20 mm end plate of a rafter the cleat is on the column beside it.
-        JointKind.PURLIN_CLEAT: float(np.hypot(purlins.lift + purlins.section.height / 2 + nest, 20.0)),
+        # Over the 20 mm end plate of a rafter the cleat is on the column beside it, 7 mm inside the face of a tube.
+        JointKind.PURLIN_CLEAT: float(np.hypot(purlins.lift + purlins.section.height / 2 + nest, 27.0)),
         # A stay lies beside the web of its purlin.
         JointKind.FLANGE_STAY: description.connections.stays.section.width / 2,
         # Where the roof steel is wider than a corner column, rails stand off the column by as much more.
