@@ -330,6 +330,7 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
     ) / np.cos(_steepest(description))
     # Rafters end 20 mm short of a ridge, measured level.
     ridge = 20.0
+    beyond = _end_gap(description) / 2 / np.cos(_steepest(description))
     # The two angles of a pair are on either side of the plane of their truss, and end 5 mm short of the ridge.
     between = getattr(description.frames.roof, "gusset", 0.0) / 2
     reach = {
@@ -342,8 +343,11 @@ def carriers_are_near(shed: Shed, description: Description) -> Iterator[str]:
         JointKind.BRACE_GUSSET: ridge,
         JointKind.STRUT_END: ridge,
         # The work point lies on the axis of the purlin or rail, which is lifted off its carrier.
-        # Over the 20 mm end plate of a rafter the cleat is on the column beside it, 7 mm inside the face of a tube.
-        JointKind.PURLIN_CLEAT: float(np.hypot(purlins.lift + purlins.section.height / 2 + nest, 27.0)),
+        # Over the gap between a column and what is bolted to it a purlin is on the nearer of the two: beyond the end
+        # of a rafter by half the gap at most, measured level. At a flange the gap is 20 mm, at a tube a bracket's.
+        JointKind.PURLIN_CLEAT: float(
+            np.hypot(purlins.lift + purlins.section.height / 2 + nest, max(20.0, beyond))
+        ),
         # A stay lies beside the web of its purlin.
         JointKind.FLANGE_STAY: description.connections.stays.section.width / 2,
         # Where the roof steel is wider than a corner column, rails stand off the column by as much more.
